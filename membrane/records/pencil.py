@@ -1,0 +1,69 @@
+"""The pencil: stiffness and mass as sums of named parts on one space."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Any
+
+from membrane.records.arrays import Floats, Ints
+from membrane.records.mesh import Mesh
+
+
+@dataclass(frozen=True)
+class Space:
+    """Continuous piecewise polynomials on a mesh.
+
+    degree : of the polynomials
+    element_dofs : (n_local, n_triangles), ordered as ``membrane.triangle.nodes(degree)``
+    locations : (2, n_dofs), metres
+    free : (n_free,), the dofs that no fixed edge holds
+    """
+
+    mesh: Mesh
+    degree: int
+    element_dofs: Ints
+    locations: Floats
+    free: Ints
+
+    @property
+    def dofs(self) -> int:
+        """How many dofs there are, held ones included."""
+        return int(self.locations.shape[1])
+
+
+@dataclass(frozen=True)
+class Part:
+    """A matrix on the free dofs and the study key that scales it.
+
+    matrix : (n_free, n_free) sparse, symmetric, for the key at 1 SI unit
+    """
+
+    key: str
+    scale: float
+    matrix: Any
+
+
+@dataclass(frozen=True)
+class Pencil:
+    """K = sum of stiffness parts, M = sum of mass parts; K u = lambda M u."""
+
+    space: Space
+    stiffness: tuple[Part, ...]
+    mass: tuple[Part, ...]
+    moves_rigidly: bool
+
+    @cached_property
+    def K(self) -> Any:
+        """(n_free, n_free) CSC, N/m: symmetric, positive (semi)definite."""
+        return _combine(self.stiffness)
+
+    @cached_property
+    def M(self) -> Any:
+        """(n_free, n_free) CSC, kg: symmetric, positive definite."""
+        return _combine(self.mass)
+
+
+def _combine(parts: tuple[Part, ...]) -> Any:
+    first, *others = parts
+    return sum((p.scale * p.matrix for p in others), first.scale * first.matrix).tocsc()

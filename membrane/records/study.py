@@ -1,0 +1,186 @@
+"""The study: what the user asked for, validated, frozen and in SI units."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from enum import StrEnum
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+
+from membrane.records.arrays import Floats
+
+
+class Support(StrEnum):
+    """How an edge is held."""
+
+    FIXED = "fixed"
+    FREE = "free"
+    ELASTIC = "elastic"
+
+
+@dataclass(frozen=True)
+class Shape:
+    """A geometry plugin, its own parameters, and where the shape is put.
+
+    plugin : registered name, or the path of a geometry script
+    options : the plugin's frozen ``Options``
+    at : (x, y), metres; the shape's own origin is moved there
+    rotate : radians, counter-clockwise about the shape's own origin
+    """
+
+    plugin: str
+    options: Any
+    at: tuple[float, float] = (0.0, 0.0)
+    rotate: float = 0.0
+
+
+@dataclass(frozen=True)
+class TensionPart:
+    """One number of a tension and the unit tensor that it scales.
+
+    key : the number's own key under ``tension`` ("" for a plain number)
+    magnitude : N/m
+    direction : (2, 2) symmetric, dimensionless
+    """
+
+    key: str
+    magnitude: float
+    direction: Floats
+
+
+@dataclass(frozen=True)
+class Tension:
+    """A constant tension tensor, T = sum of magnitude x direction, N/m."""
+
+    parts: tuple[TensionPart, ...]
+
+    @classmethod
+    def uniform(cls, tension: float) -> Tension:
+        """The same tension in all directions, N/m."""
+        return cls((TensionPart("", tension, np.eye(2)),))
+
+    @classmethod
+    def woven(cls, along: float, across: float, angle: float) -> Tension:
+        """A woven head: ``along`` at ``angle`` (rad) from +x, ``across`` square to it."""
+        warp = np.array([np.cos(angle), np.sin(angle)])
+        weft = np.array([-np.sin(angle), np.cos(angle)])
+        return cls(
+            (
+                TensionPart("along", along, np.outer(warp, warp)),
+                TensionPart("across", across, np.outer(weft, weft)),
+            )
+        )
+
+    @classmethod
+    def full(cls, xx: float, xy: float, yy: float) -> Tension:
+        """The tensor's own components, N/m."""
+        return cls(
+            (
+                TensionPart("xx", xx, np.diag([1.0, 0.0])),
+                TensionPart("xy", xy, np.array([[0.0, 1.0], [1.0, 0.0]])),
+                TensionPart("yy", yy, np.diag([0.0, 1.0])),
+            )
+        )
+
+    def tensor(self) -> Floats:
+        """The (2, 2) tension tensor, N/m."""
+        return np.asarray(sum(p.magnitude * p.direction for p in self.parts), dtype=float)
+
+
+@dataclass(frozen=True)
+class Patch:
+    """A shape on the head with properties of its own; it becomes a region.
+
+    ``areal_density`` (kg/m^2), ``tension`` and ``bedding`` (N/m^3) replace what lies
+    below; ``added_density`` (kg/m^2) adds to it. A later patch lies over an earlier one.
+    """
+
+    name: str
+    shape: Shape
+    areal_density: float | None = None
+    added_density: float | None = None
+    tension: Tension | None = None
+    bedding: float | None = None
+
+
+@dataclass(frozen=True)
+class Edge:
+    """A named edge: its support, stiffness (N/m^2) and mass (kg/m)."""
+
+    support: Support = Support.FIXED
+    stiffness: float = 0.0
+    mass: float = 0.0
+
+
+@dataclass(frozen=True)
+class Hole:
+    """A shape cut out of the head; the new edge bears its name."""
+
+    name: str
+    shape: Shape
+
+
+@dataclass(frozen=True)
+class Head:
+    """The head itself: areal density (kg/m^2), tension (N/m), bedding (N/m^3)."""
+
+    areal_density: float
+    tension: Tension
+    bedding: float = 0.0
+
+
+@dataclass(frozen=True)
+class ModesWanted:
+    """Which modes, how exactly, and how they are named.
+
+    count : how many modes; ignored where ``up_to`` is given
+    up_to : Hz; every mode up to this frequency
+    accuracy : cents
+    degree : of the finite elements; None lets the accuracy choose
+    eigensolver : registered plugin name
+    ratio_to : number of the mode that has ratio 1; None takes the first above 0 Hz
+    reference_pitch : Hz of the note A4
+    """
+
+    count: int = 20
+    up_to: float | None = None
+    accuracy: float = 0.01
+    degree: int | None = None
+    eigensolver: str = "shift_invert"
+    ratio_to: int | None = None
+    reference_pitch: float = 440.0
+
+
+@dataclass(frozen=True)
+class ProductsWanted:
+    """Names of the products to write, and the frozen options of each."""
+
+    write: tuple[str, ...] = ("table", "vtu")
+    options: Mapping[str, Any] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class Study:
+    """A whole study. ``edges`` holds the holes' edges too, by the hole's name.
+
+    terms : frozen options of each further physical term, by plugin name
+    source : the same study as plain data in the study file's own keys, SI numbers
+    """
+
+    title: str
+    outline: Shape
+    head: Head
+    patches: tuple[Patch, ...] = ()
+    holes: tuple[Hole, ...] = ()
+    edges: Mapping[str, Edge] = field(default_factory=dict)
+    modes: ModesWanted = ModesWanted()
+    products: ProductsWanted = ProductsWanted()
+    terms: Mapping[str, Any] = field(default_factory=dict)
+    source: Mapping[str, Any] = field(default_factory=dict)
+
+    def edge(self, name: str) -> Edge:
+        """The edge of that name; an edge not mentioned is fixed."""
+        return self.edges.get(name, Edge())
