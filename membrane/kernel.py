@@ -1,0 +1,204 @@
+"""The kernel: the one owner of gmsh's process state, for curves, cuts and raw meshes."""
+
+from __future__ import annotations
+
+import threading
+from collections.abc import Iterable, Iterator, Mapping
+from contextlib import contextmanager
+from typing import Any
+
+import numpy as np
+
+from membrane.errors import MeshError
+from membrane.records.arrays import Floats, Ints
+from membrane.records.outline import Outline
+from membrane.records.raw_mesh import RawMesh
+
+SEGMENTS_PER_CIRCLE = 8
+
+# gmsh keeps everything in one place per process, so one session at a time.
+_lock = threading.RLock()
+
+# Set afresh for every mesh, so that nothing but these and the sizes shapes a mesh.
+_MESH_OPTIONS = {
+    "Mesh.Algorithm": 6,  # frontal Delaunay
+    "Mesh.MeshSizeFactor": 1.0,
+    "Mesh.MeshSizeMin": 0.0,
+    "Mesh.MeshSizeMax": 1e22,
+    "Mesh.MeshSizeFromPoints": 0,
+    "Mesh.MeshSizeExtendFromBoundary": 1,
+    "Mesh.RandomSeed": 1,
+    "Mesh.ElementOrder": 1,
+    "Mesh.Optimize": 1,
+    "Mesh.Smoothing": 5,
+    "General.NumThreads": 1,
+}
+
+
+class Kernel:
+    """An open gmsh session; ``geometry`` is what geometry scripts draw with."""
+
+    def __init__(self, gmsh: Any, geometry: Any) -> None:
+        self._gmsh = gmsh
+        self.geometry = geometry
+
+    @classmethod
+    @contextmanager
+    def session(cls) -> Iterator[Kernel]:
+        """Open gmsh with nothing but its defaults, and close it whatever happens.
+
+        Other threads wait for their turn. Raises MeshError where gmsh is open already.
+        """
+        import gmsh
+        import pygmsh.occ
+
+        with _lock:
+            if gmsh.isInitialized():
+                raise MeshError("gmsh is already open in this process; close it first.")
+            # interruptible=False leaves the signals alone, and works off the main thread.
+            gmsh.initialize([], readConfigFiles=False, run=False, interruptible=False)
+            try:
+                gmsh.option.setNumber("General.Terminal", 0)
+                gmsh.model.add("head")
+                yield cls(gmsh, pygmsh.occ.Geometry())
+            finally:
+                gmsh.finalize()
+
+    # Curves
+
+    def evaluate(self, curve: int, parameters: Floats) -> Floats:
+        """Points (2, n) of a curve at its ``parameters`` (n,), metres."""
+        return self._plane(self._gmsh.model.getValue(1, curve, np.ravel(parameters)))
+
+    def tangent(self, curve: int, parameters: Floats) -> Floats:
+        """Derivative (2, n) of a curve by its parameter, metres."""
+        return self._plane(self._gmsh.model.getDerivative(1, curve, np.ravel(parameters)))
+
+    def curvature(self, curve: int, parameters: Floats) -> Floats:
+        """Curvature (n,) of a curve, per metre, never negative."""
+        found = self._gmsh.model.getCurvature(1, curve, np.ravel(parameters))
+        return np.asarray(found, dtype=float)
+
+    def bounds(self, curve: int) -> tuple[float, float]:
+        """First and last parameter of a curve."""
+        first, last = self._gmsh.model.getParametrizationBounds(1, curve)
+        return float(first[0]), float(last[0])
+
+    @staticmethod
+    def _plane(coordinates: Iterable[float]) -> Floats:
+        return np.reshape(np.asarray(coordinates, dtype=float), (-1, 3))[:, :2].T.copy()
+
+    # Mesh
+
+    def triangulate(
+        self,
+        outline: Outline,
+        sizes: Mapping[str, float],
+        segments_per_circle: int = SEGMENTS_PER_CIRCLE,
+    ) -> RawMesh:
+        """Cover the outline with straight triangles, the same ones every time.
+
+        sizes : region name -> longest wanted edge, metres
+        segments_per_circle : how many segments a full circle gets at the least
+
+        Raises MeshError where gmsh fails or its mesh is not sound.
+        """
+        self._set_sizes(outline, sizes, segments_per_circle)
+        model = self._gmsh.model
+        model.mesh.clear()
+        with _gmsh_failures("gmsh could not cover the outline with triangles"):
+            model.mesh.generate(2)
+        triangles, face = self._triangles(outline)
+        segments, curve, parameters = self._segments(outline)
+        used, corners = np.unique(triangles, return_inverse=True)
+        raw = RawMesh(
+            self._places(used),
+            corners.reshape(3, -1),
+            face,
+            np.searchsorted(used, segments),
+            curve,
+            parameters,
+        )
+        _check(raw, outline, used, segments)
+        return raw
+
+    def _places(self, nodes: Ints) -> Floats:
+        numbers, coordinates, _ = self._gmsh.model.mesh.getNodes()
+        order = np.argsort(numbers)
+        return self._plane(coordinates)[:, order[np.searchsorted(numbers[order], nodes)]]
+
+    def _set_sizes(
+        self, outline: Outline, sizes: Mapping[str, float], segments_per_circle: int
+    ) -> None:
+        for name, value in _MESH_OPTIONS.items():
+            self._gmsh.option.setNumber(name, value)
+        self._gmsh.option.setNumber("Mesh.MeshSizeFromCurvature", segments_per_circle)
+        fields = self._gmsh.model.mesh.field
+        for tag in fields.list():
+            fields.remove(tag)
+        of_regions = []
+        for region in outline.regions:
+            tag = fields.add("Constant")
+            fields.setNumber(tag, "VIn", sizes[region.name])
+            fields.setNumbers(tag, "SurfacesList", region.faces)
+            of_regions.append(tag)
+        least = fields.add("Min")
+        fields.setNumbers(least, "FieldsList", of_regions)
+        fields.setAsBackgroundMesh(least)
+
+    def _triangles(self, outline: Outline) -> tuple[Ints, Ints]:
+        corners, faces = [], []
+        for face in (face for region in outline.regions for face in region.faces):
+            _, numbers = self._gmsh.model.mesh.getElementsByType(2, face)
+            if len(numbers) == 0:
+                raise MeshError("gmsh left a part of the outline without triangles.")
+            corners.append(np.reshape(numbers.astype(np.int64), (-1, 3)).T)
+            faces.append(np.full(corners[-1].shape[1], face, dtype=np.int64))
+        return np.hstack(corners), np.hstack(faces)
+
+    def _segments(self, outline: Outline) -> tuple[Ints, Ints, Floats]:
+        pairs, tags, parameters = [], [], []
+        for curve in outline.curves:
+            chain, along = self._chain(curve.tag)
+            pairs.append(np.vstack([chain[:-1], chain[1:]]))
+            parameters.append(np.vstack([along[:-1], along[1:]]))
+            tags.append(np.full(along.size - 1, curve.tag, dtype=np.int64))
+        return np.hstack(pairs), np.hstack(tags), np.hstack(parameters)
+
+    def _chain(self, curve: int) -> tuple[Ints, Floats]:
+        """Node numbers along a curve and the parameter of each, both rising."""
+        mesh = self._gmsh.model.mesh
+        inner, _, along = mesh.getNodes(1, curve)
+        order = np.argsort(along)
+        ends = [self._corner_node(tag) for tag in self._ends(curve)]
+        first, last = self.bounds(curve)
+        chain = np.concatenate([ends[:1], inner[order].astype(np.int64), ends[1:]])
+        return chain, np.concatenate([[first], np.asarray(along)[order], [last]])
+
+    def _ends(self, curve: int) -> tuple[int, int]:
+        (_, first), (_, last) = self._gmsh.model.getBoundary([(1, curve)], combined=False)
+        return first, last
+
+    def _corner_node(self, point: int) -> int:
+        numbers, _, _ = self._gmsh.model.mesh.getNodes(0, point)
+        return int(numbers[0])
+
+
+def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:
+    if not np.all(raw.areas > 0.0):
+        raise MeshError("gmsh made a triangle that is turned over or flat.")
+    if not np.isin(segments, used).all():
+        raise MeshError("gmsh left a curve of the outline without triangles.")
+    if not 0.5 < raw.areas.sum() / outline.area < 1.5:
+        raise MeshError("The triangles do not cover the outline.")
+
+
+@contextmanager
+def _gmsh_failures(sentence: str) -> Iterator[None]:
+    """Turn gmsh's failures, which are plain Exceptions, into a MeshError."""
+    try:
+        yield
+    except Exception as failure:
+        if type(failure) is not Exception:
+            raise
+        raise MeshError(f"{sentence}: {failure}.") from failure
