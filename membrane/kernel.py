@@ -3,21 +3,24 @@
 from __future__ import annotations
 
 import threading
-from collections.abc import Iterable, Iterator, Mapping
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from typing import Any
 
 import numpy as np
 
-from membrane.errors import MeshError
+from membrane.errors import MembraneError, MeshError, OutlineError
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
-from membrane.records.raw_mesh import RawMesh
+from membrane.records.raw_mesh import RawMesh, signed_areas
 
 SEGMENTS_PER_CIRCLE = 8
 
 # gmsh keeps everything in one place per process, so one session at a time.
 _lock = threading.RLock()
+
+# Gauss points by which lengths are measured; the kernel's own lengths are coarse.
+_PANELS, _PER_PANEL = 12, 12
 
 # Set afresh for every mesh, so that nothing but these and the sizes shapes a mesh.
 _MESH_OPTIONS = {
@@ -88,6 +91,76 @@ class Kernel:
     def _plane(coordinates: Iterable[float]) -> Floats:
         return np.reshape(np.asarray(coordinates, dtype=float), (-1, 3))[:, :2].T.copy()
 
+    def length(self, curve: int) -> float:
+        """Length of a curve, metres."""
+        first, last = self.bounds(curve)
+        starts, step = np.linspace(first, last, _PANELS, endpoint=False, retstep=True)
+        points, weights = np.polynomial.legendre.leggauss(_PER_PANEL)
+        at = (starts[:, None] + 0.5 * step * (points + 1.0)).ravel()
+        speeds = np.hypot(*self.tangent(curve, at)).reshape(_PANELS, -1)
+        return float(0.5 * step * (speeds @ weights).sum())
+
+    def distance(self, points: Floats, curve: int) -> float:
+        """Largest distance, metres, from ``points`` (2, n) to a curve."""
+        deep = np.vstack([points, np.zeros(points.shape[1])]).T.ravel()
+        nearest, _ = self._gmsh.model.getClosestPoint(1, curve, deep)
+        return float(np.hypot(*(self._plane(nearest) - points)).max())
+
+    # Faces
+
+    def area(self, face: int) -> float:
+        """Area of a face, square metres."""
+        return float(self._gmsh.model.occ.getMass(2, face))
+
+    def border(self, face: int) -> list[int]:
+        """Curves around a face, those of its holes included."""
+        _, loops = self._gmsh.model.occ.getCurveLoops(face)
+        return [abs(int(curve)) for loop in loops for curve in loop]
+
+    def copies(self, curves: Iterable[int]) -> list[int]:
+        """Copies of curves that no later cut or move of the originals touches."""
+        occ = self._gmsh.model.occ
+        return [tag for curve in curves for _, tag in occ.copy([(1, curve)])]
+
+    def place(
+        self, face: int, curves: Iterable[int], rotate: float, at: tuple[float, float]
+    ) -> None:
+        """Turn a face and loose curves about the origin (radians), then shift them."""
+        things = [(2, face), *((1, curve) for curve in curves)]
+        if rotate != 0.0:
+            self._gmsh.model.occ.rotate(things, 0, 0, 0, 0, 0, 1, rotate)
+        if at != (0.0, 0.0):
+            self._gmsh.model.occ.translate(things, *at, 0)
+
+    def fragment(self, faces: Sequence[int]) -> list[set[int]]:
+        """Cut faces by each other: for each, the new faces that cover it.
+
+        Raises OutlineError where the kernel cannot cut them.
+        """
+        if len(faces) > 1:
+            first, *others = ((2, face) for face in faces)
+            with _gmsh_failures(OutlineError, "The shapes could not be cut by each other"):
+                _, covers = self._gmsh.model.occ.fragment([first], others)
+        else:
+            covers = [[(2, face)] for face in faces]
+        self._gmsh.model.occ.synchronize()
+        return [{tag for dim, tag in cover if dim == 2} for cover in covers]
+
+    def neighbours(self, curve: int) -> list[int]:
+        """Faces that a curve bounds."""
+        return [int(face) for face in self._gmsh.model.getAdjacencies(1, curve)[0]]
+
+    def keep_only(self, faces: Iterable[int]) -> None:
+        """Remove all faces but these, and every curve and point that bounds none."""
+        model = self._gmsh.model
+        kept = {(2, face) for face in faces}
+        model.occ.remove([face for face in model.getEntities(2) if face not in kept], True)
+        for dim in (1, 0):
+            model.occ.synchronize()
+            loose = [e for e in model.getEntities(dim) if not len(model.getAdjacencies(*e)[0])]
+            model.occ.remove(loose, True)
+        model.occ.synchronize()
+
     # Mesh
 
     def triangulate(
@@ -106,7 +179,7 @@ class Kernel:
         self._set_sizes(outline, sizes, segments_per_circle)
         model = self._gmsh.model
         model.mesh.clear()
-        with _gmsh_failures("gmsh could not cover the outline with triangles"):
+        with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
             model.mesh.generate(2)
         triangles, face = self._triangles(outline)
         segments, curve, parameters = self._segments(outline)
@@ -152,9 +225,14 @@ class Kernel:
             _, numbers = self._gmsh.model.mesh.getElementsByType(2, face)
             if len(numbers) == 0:
                 raise MeshError("gmsh left a part of the outline without triangles.")
-            corners.append(np.reshape(numbers.astype(np.int64), (-1, 3)).T)
+            corners.append(self._counter_clockwise(np.reshape(numbers, (-1, 3)).T))
             faces.append(np.full(corners[-1].shape[1], face, dtype=np.int64))
         return np.hstack(corners), np.hstack(faces)
+
+    def _counter_clockwise(self, corners: Ints) -> Ints:
+        """The triangles of one face, turned over where the face looks down."""
+        areas = signed_areas(self._places(corners.ravel()).reshape(2, 3, -1))
+        return (corners if areas.sum() > 0.0 else corners[[0, 2, 1]]).astype(np.int64)
 
     def _segments(self, outline: Outline) -> tuple[Ints, Ints, Floats]:
         pairs, tags, parameters = [], [], []
@@ -194,11 +272,11 @@ def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:
 
 
 @contextmanager
-def _gmsh_failures(sentence: str) -> Iterator[None]:
-    """Turn gmsh's failures, which are plain Exceptions, into a MeshError."""
+def _gmsh_failures(kind: type[MembraneError], sentence: str) -> Iterator[None]:
+    """Turn gmsh's failures, which are plain Exceptions, into errors with a sentence."""
     try:
         yield
     except Exception as failure:
         if type(failure) is not Exception:
             raise
-        raise MeshError(f"{sentence}: {failure}.") from failure
+        raise kind(f"{sentence}: {failure}.") from failure

@@ -36,6 +36,11 @@ class RawMesh:
     @property
     def areas(self) -> Floats:
         """(n_triangles,), square metres, of the straight triangles; positive."""
-        (x0, x1, x2), (y0, y1, y2) = self.vertices[:, self.triangles]
-        areas: Floats = 0.5 * ((x1 - x0) * (y2 - y0) - (x2 - x0) * (y1 - y0))
-        return areas
+        return signed_areas(self.vertices[:, self.triangles])
+
+
+def signed_areas(corners: Floats) -> Floats:
+    """Areas (n,) of triangles with ``corners`` (2, 3, n), positive counter-clockwise."""
+    (x0, x1, x2), (y0, y1, y2) = corners
+    areas: Floats = 0.5 * ((x1 - x0) * (y2 - y0) - (x2 - x0) * (y1 - y0))
+    return areas

@@ -1,0 +1,1 @@
+"""Geometry scripts: each draws one outline and names its edges."""

@@ -1,0 +1,89 @@
+"""The head cut by its patches and holes: which faces remain, and what covers each."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from itertools import combinations
+
+from membrane.errors import OutlineError
+from membrane.kernel import Kernel
+
+# Less than this share of a shape may stick out: rounding where it follows the edge.
+_ROUNDING = 1e-7
+
+
+@dataclass(frozen=True)
+class Cut:
+    """The faces after the cut.
+
+    patches : face that remains -> names of the patches over it, lowest first
+    holes : face that is cut away -> name of the hole
+    """
+
+    patches: Mapping[int, tuple[str, ...]]
+    holes: Mapping[int, str]
+
+
+def cut(
+    kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping[str, int]
+) -> Cut:
+    """Cut an outline's face by the faces of patches and holes.
+
+    Raises OutlineError for shapes that do not fit together.
+    """
+    head, *others = kernel.fragment([outline, *patches.values(), *holes.values()])
+    over = dict(zip(patches, others[: len(patches)], strict=True))
+    away = dict(zip(holes, others[len(patches) :], strict=True))
+    for kind, covers in (("patch", over), ("hole", away)):
+        for name, cover in covers.items():
+            _check_inside(kernel, f"The {kind} {name}", cover, head)
+    _check_apart(kernel, away)
+    removed = {face: name for name, cover in away.items() for face in cover}
+    _check_left(over, head, removed)
+    return Cut(
+        {
+            face: tuple(name for name, cover in over.items() if face in cover)
+            for face in sorted(head - removed.keys())
+        },
+        removed,
+    )
+
+
+def _area(kernel: Kernel, faces: set[int]) -> float:
+    return sum(kernel.area(face) for face in sorted(faces))
+
+
+def _check_inside(kernel: Kernel, shape: str, cover: set[int], head: set[int]) -> None:
+    whole, outside = _area(kernel, cover), _area(kernel, cover - head)
+    if not cover & head:
+        raise OutlineError(f"{shape} lies wholly outside the outline; move it onto the head.")
+    if outside > _ROUNDING * whole:
+        raise OutlineError(
+            f"{shape} reaches over the edge of the outline by {1e6 * outside:.3g} mm^2 "
+            f"({outside / whole:.2%} of it); move it inwards or make it smaller."
+        )
+
+
+def _check_apart(kernel: Kernel, holes: Mapping[str, set[int]]) -> None:
+    for (one, first), (other, second) in combinations(holes.items(), 2):
+        if first & second:
+            shared = 1e6 * _area(kernel, first & second)
+            raise OutlineError(
+                f"The holes {one} and {other} overlap by {shared:.3g} mm^2; "
+                "move them apart or draw them as one hole."
+            )
+
+
+def _check_left(
+    patches: Mapping[str, set[int]], head: set[int], removed: Mapping[int, str]
+) -> None:
+    if not head - removed.keys():
+        raise OutlineError("The holes leave nothing of the head; make them smaller.")
+    for name, cover in patches.items():
+        if not cover - removed.keys():
+            holes = " and ".join(sorted({removed[face] for face in cover}))
+            raise OutlineError(
+                f"Nothing is left of the patch {name} within {holes}; "
+                "leave the patch out or move it."
+            )

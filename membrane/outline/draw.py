@@ -1,0 +1,39 @@
+"""From a study to its outline: shapes drawn, placed, cut and named."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+
+from membrane.kernel import Kernel
+from membrane.outline.curves import curves
+from membrane.outline.cut import Cut, cut
+from membrane.outline.place import place
+from membrane.records.outline import HEAD, Outline, Region
+from membrane.records.study import Hole, Patch, Study
+
+
+def draw(kernel: Kernel, study: Study) -> Outline:
+    """Draw a study's outline, patches and holes in an open kernel session.
+
+    Raises OutlineError for shapes that do not fit together.
+    """
+    outline = place(kernel, study.outline)
+    patches, holes = _faces(kernel, study.patches), _faces(kernel, study.holes)
+    pieces = cut(kernel, outline.face, patches, holes)
+    named = curves(kernel, pieces, outline.edges)
+    kernel.keep_only(pieces.patches)
+    return Outline(_regions(kernel, pieces), named)
+
+
+def _faces(kernel: Kernel, shapes: Iterable[Patch | Hole]) -> dict[str, int]:
+    return {shape.name: place(kernel, shape.shape).face for shape in shapes}
+
+
+def _regions(kernel: Kernel, pieces: Cut) -> tuple[Region, ...]:
+    faces: dict[tuple[str, ...], list[int]] = {}
+    for face, patches in sorted(pieces.patches.items(), key=lambda item: (len(item[1]), item[0])):
+        faces.setdefault(patches, []).append(face)
+    return tuple(
+        Region("+".join(patches) or HEAD, patches, tuple(tags), sum(map(kernel.area, tags)))
+        for patches, tags in faces.items()
+    )
