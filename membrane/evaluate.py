@@ -49,7 +49,7 @@ def gradients_at(space: Space, vectors: Floats, points: Floats) -> Floats:
 def locate(mesh: Mesh, points: Floats) -> Located:
     """The triangle and the reference coordinates of each of ``points`` (2, m)."""
     point, triangle = _candidates(mesh, points)
-    reference = _invert(mesh, triangle, points[:, point])
+    reference = invert(mesh, triangle, points[:, point])
     depth = np.minimum(reference.min(axis=0), 1 - reference.sum(axis=0))
     order = np.lexsort((-depth, point))
     best = order[np.unique(point[order], return_index=True)[1]]
@@ -76,7 +76,7 @@ def _candidates(mesh: Mesh, points: Floats, chunk: int = 4096) -> tuple[Ints, In
     return point, triangle
 
 
-def _invert(mesh: Mesh, triangle: Ints, points: Floats, steps: int = 25) -> Floats:
+def invert(mesh: Mesh, triangle: Ints, points: Floats, steps: int = 25) -> Floats:
     """Newton's method for the reference coordinates; NaN-free, diverged ones lie far out."""
     reference = np.full(points.shape, 1 / 3)
     for _ in range(steps):

@@ -1,0 +1,67 @@
+"""Checks that a curved mesh covers its outline once and nowhere folds."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from membrane.errors import MeshError
+from membrane.records.arrays import Floats
+from membrane.records.mesh import Mesh
+from membrane.records.outline import Outline
+from membrane.triangle import lattice, shapes
+
+FLATTEST = 0.02
+"""Least jacobian allowed, relative to the triangle's own mean."""
+
+AREA = 1e-5
+"""Largest relative error allowed in the area of a region."""
+
+
+def check_mesh(mesh: Mesh, outline: Outline) -> None:
+    """Raise MeshError where a triangle folds, an area is wrong or a tag is missing."""
+    jacobian = jacobians(mesh)
+    mean = jacobian.mean(axis=0)
+    if np.any(jacobian.min(axis=0) < FLATTEST * np.abs(mean)):
+        raise MeshError("a curved triangle folds over")
+    if np.any(mesh.region < 0):
+        raise MeshError("a triangle belongs to no region")
+    for number, region in enumerate(outline.regions):
+        covered = _areas(mesh)[mesh.region == number].sum()
+        if abs(covered - region.area) > AREA * outline.area:
+            raise MeshError(f'region "{region.name}" is covered by {covered:.6g} m^2, '
+                            f"not by its {region.area:.6g} m^2")
+    for name in outline.edges:
+        if mesh.edges[name].shape[1] == 0:
+            raise MeshError(f'edge "{name}" has no sides of triangles')
+
+
+def jacobians(mesh: Mesh) -> Floats:
+    """|det dx/dX| at a lattice of points of every triangle, (n_points, n_triangles), m^2.
+
+    Signed so that a triangle that does not fold has no negative value.
+    """
+    _, slopes = shapes(lattice(2 * mesh.order).points, mesh.order)
+    return _oriented(mesh, slopes)
+
+
+def _oriented(mesh: Mesh, slopes: Floats) -> Floats:
+    (a, b), (c, d) = np.einsum("dit,kin->dknt", mesh.nodes, slopes)
+    determinant = a * d - b * c
+    return np.asarray(determinant * np.sign(determinant.mean(axis=0)))
+
+
+def _areas(mesh: Mesh) -> Floats:
+    """(n_triangles,) by Green's theorem along the sides, exact for the curved geometry."""
+    from scipy.special import roots_legendre
+
+    points, weights = roots_legendre(mesh.order + 1)
+    s = (1 + points) / 2
+    loops = [np.array([s, 0 * s]), np.array([1 - s, s]), np.array([0 * s, 1 - s])]
+    directions = np.array([[1.0, 0.0], [-1.0, 1.0], [0.0, -1.0]])
+    total = np.zeros(mesh.size)
+    for loop, direction in zip(loops, directions, strict=True):
+        values, slopes = shapes(loop, mesh.order)
+        x, y = np.einsum("dit,in->dnt", mesh.nodes, values)
+        dx, dy = np.einsum("dit,kin,k->dnt", mesh.nodes, slopes, direction)
+        total += np.einsum("n,nt->t", weights / 4, x * dy - y * dx)
+    return np.abs(total)

@@ -1,0 +1,56 @@
+"""From outline to mesh: triangulate, grade the corners, curve the sides, check."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+from membrane.errors import MeshError
+from membrane.kernel import Kernel
+from membrane.mesh.checks import check_mesh
+from membrane.mesh.corners import corners
+from membrane.mesh.curve import curved
+from membrane.mesh.grade import graded
+from membrane.mesh.resolution import Resolution, region_sizes
+from membrane.records.membrane import Membrane
+from membrane.records.mesh import Mesh
+from membrane.records.outline import Outline
+from membrane.records.study import ModesWanted
+
+ATTEMPTS = 6
+"""How often a mesh whose curved triangles fold is tried again, each time finer."""
+
+
+def make_mesh(
+    kernel: Kernel,
+    outline: Outline,
+    membrane: Membrane,
+    wanted: ModesWanted,
+    resolution: Resolution,
+) -> Mesh:
+    """A valid curved mesh of the outline in the open kernel session.
+
+    Raises MeshError where no valid mesh is found.
+    """
+    sizes = region_sizes(outline, membrane, wanted, resolution.phase)
+    for attempt in range(ATTEMPTS):
+        finer = {name: size * 0.7**attempt for name, size in sizes.items()}
+        try:
+            return _attempt(kernel, outline, membrane, finer, resolution)
+        except MeshError as failure:
+            last = failure
+    raise MeshError(f"no valid mesh after {ATTEMPTS} attempts; the last one: {last}")
+
+
+def _attempt(
+    kernel: Kernel,
+    outline: Outline,
+    membrane: Membrane,
+    sizes: Mapping[str, float],
+    resolution: Resolution,
+) -> Mesh:
+    raw = kernel.triangulate(outline, sizes)
+    found = corners(kernel, outline, membrane, raw)
+    raw = graded(kernel, raw, found, resolution.tolerance)
+    mesh = curved(kernel, outline, raw, resolution.degree)
+    check_mesh(mesh, outline)
+    return mesh

@@ -1,0 +1,103 @@
+"""How fine a mesh must be: element degree, edge lengths, and depth at the corners."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from math import factorial, pi, sqrt
+
+import numpy as np
+
+from membrane.records.membrane import Field, Membrane
+from membrane.records.outline import Outline
+from membrane.records.study import ModesWanted
+
+CENTS_PER_UNIT = 600.0 / np.log(2.0)
+"""Cents per relative change of an eigenvalue: half of 1200 / ln 2."""
+
+COARSER_BY = 2
+"""How many degrees lower the second solve is that measures the error."""
+
+
+@dataclass(frozen=True)
+class Resolution:
+    """A mesh and a degree to solve on.
+
+    degree : of the elements; the geometry follows it
+    phase : longest edge times the highest wanted wave number, dimensionless
+    tolerance : relative error of an eigenvalue that the corners may leave
+    """
+
+    degree: int
+    phase: float
+    tolerance: float
+
+    @property
+    def coarser_degree(self) -> int:
+        """Degree of the second solve, which measures the error of the first."""
+        return self.degree - COARSER_BY
+
+    def finer(self, excess: float) -> Resolution:
+        """The next to try, where the measured error was ``excess`` times the wanted one."""
+        order = 2 * self.coarser_degree
+        shrink = float(np.clip(0.9 * excess ** (-1.0 / order), 0.45, 0.85))
+        drop = max(0.1 / excess, 1e-3)
+        return replace(self, phase=shrink * self.phase, tolerance=drop * self.tolerance)
+
+
+def first_resolution(wanted: ModesWanted) -> Resolution:
+    """What should be fine enough for the wanted accuracy at the first try."""
+    relative = wanted.accuracy / CENTS_PER_UNIT
+    degree = wanted.degree or _degree_for(relative)
+    return Resolution(degree, _phase_for(relative, degree - COARSER_BY), 0.003 * relative)
+
+
+def _degree_for(relative: float) -> int:
+    """Two degrees more for every three digits: found by trying, see scripts/bench."""
+    digits = -np.log10(relative)
+    return int(np.clip(2 * round((digits + 4.0) / 3.0), 4, 12))
+
+
+def _phase_for(relative: float, degree: int) -> float:
+    """Edge length times wave number at which the dispersion error is as wanted.
+
+    In one dimension an eigenvalue is off by (p!/(2p)!)^2 (kh)^(2p) / (2p + 1), relative:
+    M. Ainsworth, SIAM J. Numer. Anal. 42 (2004) 553 (from memory). On triangles the same
+    figure comes out within a factor of about three.
+    """
+    constant = (factorial(degree) / factorial(2 * degree)) ** 2 / (2 * degree + 1)
+    return float((0.5 * relative / constant) ** (1.0 / (2 * degree)))
+
+
+def region_sizes(
+    outline: Outline, membrane: Membrane, wanted: ModesWanted, phase: float
+) -> dict[str, float]:
+    """Longest edge in each region, metres: ``phase`` over the local wave number."""
+    omega = 2 * pi * wanted.up_to if wanted.up_to else _weyl(outline, membrane, wanted.count)
+    return {r.name: phase / (omega * _slowness(membrane, r.name)) for r in outline.regions}
+
+
+def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
+    """Angular frequency of the mode number ``count``, rad/s, by Weyl's two-term law.
+
+    count = A w^2/(4 pi) - L w/(4 pi), with area and fixed perimeter measured in travel
+    time; H. Weyl 1911, second term after Ivrii 1980.
+    """
+    area = sum(
+        r.area * membrane.total(Field.AREAL_DENSITY, r.name) / _root_det(membrane, r.name)
+        for r in outline.regions
+    )
+    slowest = max(_slowness(membrane, region.name) for region in outline.regions)
+    length = slowest * sum(outline.edge_length(name) for name in membrane.fixed_edges)
+    length = min(length, 2.0 * sqrt(pi * count * area))  # a comb's perimeter says nothing
+    return float(length + sqrt(length**2 + 16 * pi * area * count)) / float(2 * area)
+
+
+def _slowness(membrane: Membrane, region: str) -> float:
+    """Seconds per metre of the slowest wave in a region."""
+    tension = membrane.total(Field.TENSION, region)
+    density = membrane.total(Field.AREAL_DENSITY, region)
+    return float(np.sqrt(density / np.linalg.eigvalsh(tension)[0]))
+
+
+def _root_det(membrane: Membrane, region: str) -> float:
+    return float(np.sqrt(np.linalg.det(membrane.total(Field.TENSION, region))))

@@ -1,0 +1,5 @@
+"""The stage from the pencil to its lowest modes, counted and put in order."""
+
+from membrane.modes.extract import count_up_to, extract
+
+__all__ = ["count_up_to", "extract"]

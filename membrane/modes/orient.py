@@ -1,0 +1,33 @@
+"""Repeatable signs, and repeatable shapes within a cluster."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from membrane.records.arrays import Floats, Ints
+from membrane.records.pencil import Pencil
+
+
+def oriented(pencil: Pencil, vectors: Floats, clusters: Ints) -> Floats:
+    """The same modes, (n_free, n), free of the solver's arbitrary signs and rotations.
+
+    Within a cluster the shapes are those that are extreme in the energy weighted by
+    exp(x), which is even in y: on a head symmetric about the x axis they come out
+    symmetric and antisymmetric. The sign makes the mean weighted by exp(x + y/3) positive.
+    """
+    x, y = _unit_coordinates(pencil)
+    chosen = np.empty_like(vectors)
+    for cluster in np.unique(clusters):
+        members = vectors[:, clusters == cluster]
+        weighted = members.T @ (pencil.M @ (np.exp(x)[:, None] * members))
+        _, turn = np.linalg.eigh(weighted + weighted.T)
+        chosen[:, clusters == cluster] = members @ turn[:, ::-1]
+    means = np.exp(x + y / 3) @ (pencil.M @ chosen)
+    return np.asarray(chosen * np.where(means < 0.0, -1.0, 1.0))
+
+
+def _unit_coordinates(pencil: Pencil) -> Floats:
+    """(2, n_free), the dofs' places over the head's half width, about its middle."""
+    places = pencil.space.locations[:, pencil.space.free]
+    low, high = places.min(axis=1), places.max(axis=1)
+    return np.asarray((places - (low + high)[:, None] / 2) / (np.max(high - low) / 2))

@@ -1,0 +1,61 @@
+"""The stage from modes to the rows of the table."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from membrane.errors import StudyError
+from membrane.pitch import note
+from membrane.records.arrays import Floats
+from membrane.records.modes import Modes
+from membrane.records.spectrum import NodalPattern, Partial
+from membrane.records.study import ModesWanted
+
+CENTS = 1200.0
+
+
+def partials(
+    modes: Modes, error: Floats, patterns: Sequence[NodalPattern], wanted: ModesWanted
+) -> tuple[Partial, ...]:
+    """One row for each mode.
+
+    error : (n,) cents, how far off each frequency may be, up or down
+    Raises StudyError where the mode chosen for the ratios is not among them.
+    """
+    frequencies = modes.frequencies
+    reference = _reference(frequencies, wanted.ratio_to)
+    rows = []
+    for index, (frequency, cents) in enumerate(zip(frequencies, error, strict=True)):
+        spread = 2.0 ** (cents / CENTS)
+        moves = frequency > 0.0
+        name, above = note(frequency, wanted.reference_pitch) if moves else (None, None)
+        rows.append(
+            Partial(
+                number=index + 1,
+                frequency=float(frequency),
+                low=float(frequency / spread),
+                high=float(frequency * spread),
+                bracket="estimated",
+                bracket_cents=float(2 * cents) if moves else None,
+                ratio=float(frequency / reference),
+                note=name,
+                note_cents=above,
+                cluster=int(modes.clusters[index]),
+                nodal=patterns[index],
+            )
+        )
+    return tuple(rows)
+
+
+def _reference(frequencies: Floats, number: int | None) -> float:
+    """The frequency of ratio 1: the mode asked for, or the first above 0 Hz."""
+    if number is None:
+        return float(frequencies[np.argmax(frequencies > 0.0)])
+    if number > len(frequencies) or frequencies[number - 1] == 0.0:
+        raise StudyError(
+            f"modes.ratio_to: mode {number} is not among the {len(frequencies)} found "
+            "with a pitch; name another one"
+        )
+    return float(frequencies[number - 1])

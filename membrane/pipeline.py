@@ -1,0 +1,140 @@
+"""The order of the stages: the one place that knows it."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass
+from pathlib import Path
+from time import perf_counter
+
+import numpy as np
+
+from membrane import plugins
+from membrane.accuracy import Estimate, estimate
+from membrane.coefficients import coefficients
+from membrane.kernel import Kernel
+from membrane.mesh import Resolution, first_resolution, make_mesh
+from membrane.modes import count_up_to, extract
+from membrane.modes.extract import Eigensolver
+from membrane.nodal import nodal_patterns
+from membrane.outline import draw
+from membrane.partials import partials
+from membrane.pencil import assemble
+from membrane.records.membrane import Membrane
+from membrane.records.mesh import Mesh
+from membrane.records.modes import Modes
+from membrane.records.pencil import Pencil
+from membrane.records.spectrum import Spectrum
+from membrane.records.study import ModesWanted, Study
+
+Progress = Callable[[str], None]
+
+MESHES = 6
+"""How many meshes are tried, each finer, before the accuracy reached is reported as it is."""
+
+ALWAYS_WRITTEN = ("summary", "modes_csv")
+"""Products of every run; the study's ``products.write`` names the others."""
+
+
+@dataclass(frozen=True)
+class _Solution:
+    """One mesh with its modes and their estimated error."""
+
+    mesh: Mesh
+    pencil: Pencil
+    modes: Modes
+    error: Estimate
+
+
+class _Clock:
+    """Seconds by stage, and word to the user of each stage as it starts."""
+
+    def __init__(self, progress: Progress) -> None:
+        self.progress = progress
+        self.seconds: dict[str, float] = {}
+
+    @contextmanager
+    def stage(self, name: str) -> Iterator[None]:
+        self.progress(name)
+        start = perf_counter()
+        try:
+            yield
+        finally:
+            self.seconds[name] = self.seconds.get(name, 0.0) + perf_counter() - start
+
+
+def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
+    """Solve a study.
+
+    progress : called with the name of each stage as it starts
+    Raises OutlineError, MeshError, SolveError or PluginError, each with its sentence.
+    """
+    clock = _Clock(progress)
+    solution = _solve(study, clock)
+    with clock.stage("nodal lines"):
+        patterns = nodal_patterns(solution.modes, study.edges)
+    rows = partials(solution.modes, solution.error.cents, patterns, study.modes)
+    return Spectrum(
+        study=study,
+        modes=solution.modes,
+        partials=rows,
+        complete=solution.modes.complete,
+        mesh_facts=_facts(solution),
+        timings=clock.seconds,
+    )
+
+
+def write(spectrum: Spectrum, folder: Path) -> None:
+    """Write a spectrum's products into an existing folder."""
+    wanted = spectrum.study.products
+    for name in (*ALWAYS_WRITTEN, *wanted.write):
+        product = plugins.load("product", name)
+        product.write(spectrum, folder, wanted.options.get(name) or product.Options())
+
+
+def _solve(study: Study, clock: _Clock) -> _Solution:
+    """Mesh and solve, finer each time, until the estimated error is within the wanted one."""
+    solver = plugins.load("eigensolver", study.modes.eigensolver).solve
+    resolution = first_resolution(study.modes)
+    with Kernel.session() as kernel:
+        with clock.stage("outline"):
+            outline = draw(kernel, study)
+            membrane = coefficients(study, outline)
+        for attempt in range(MESHES):
+            with clock.stage("mesh"):
+                mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
+            solution = _solve_on(mesh, membrane, resolution, study.modes, solver, clock)
+            if solution.error.excess <= 1.0 or attempt == MESHES - 1:
+                break
+            resolution = resolution.finer(solution.error.excess)
+    return solution
+
+
+def _solve_on(
+    mesh: Mesh,
+    membrane: Membrane,
+    resolution: Resolution,
+    wanted: ModesWanted,
+    solver: Eigensolver,
+    clock: _Clock,
+) -> _Solution:
+    with clock.stage("assembly"):
+        fine = assemble(membrane, mesh, resolution.degree)
+        coarse = assemble(membrane, mesh, resolution.coarser_degree)
+    with clock.stage("modes"):
+        count = count_up_to(fine, wanted.up_to) if wanted.up_to else wanted.count
+        modes = extract(fine, count, solver, wanted.accuracy)
+        check = extract(coarse, len(modes.eigenvalues), solver, wanted.accuracy)
+    return _Solution(mesh, fine, modes, estimate(modes, check, wanted.accuracy))
+
+
+def _facts(solution: _Solution) -> dict[str, float]:
+    return {
+        "triangles": solution.mesh.size,
+        "degree": solution.modes.space.degree,
+        "geometry_order": solution.mesh.order,
+        "unknowns": len(solution.modes.space.free),
+        "accuracy_met": bool(solution.error.excess <= 1.0),
+        "worst_estimate_cents": float(np.max(solution.error.cents)),
+    }
