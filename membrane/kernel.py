@@ -13,8 +13,7 @@ from membrane.errors import MembraneError, MeshError, OutlineError
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh, signed_areas
-
-SEGMENTS_PER_CIRCLE = 8
+from membrane.sizes import Bend, size_map
 
 # gmsh keeps everything in one place per process, so one session at a time.
 _lock = threading.RLock()
@@ -29,7 +28,8 @@ _MESH_OPTIONS = {
     "Mesh.MeshSizeMin": 0.0,
     "Mesh.MeshSizeMax": 1e22,
     "Mesh.MeshSizeFromPoints": 0,
-    "Mesh.MeshSizeExtendFromBoundary": 1,
+    "Mesh.MeshSizeExtendFromBoundary": 0,
+    "Mesh.LcIntegrationPrecision": 1e-3,
     "Mesh.RandomSeed": 1,
     "Mesh.ElementOrder": 1,
     "Mesh.Optimize": 1,
@@ -167,16 +167,16 @@ class Kernel:
         self,
         outline: Outline,
         sizes: Mapping[str, float],
-        segments_per_circle: int = SEGMENTS_PER_CIRCLE,
+        bend: Bend = Bend(),
     ) -> RawMesh:
         """Cover the outline with straight triangles, the same ones every time.
 
         sizes : region name -> longest wanted edge, metres
-        segments_per_circle : how many segments a full circle gets at the least
+        bend : how edges shorten along bent curves and beside gaps
 
         Raises MeshError where gmsh fails or its mesh is not sound.
         """
-        self._set_sizes(outline, sizes, segments_per_circle)
+        self._set_sizes(outline, sizes, bend)
         model = self._gmsh.model
         model.mesh.clear()
         with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
@@ -200,24 +200,25 @@ class Kernel:
         order = np.argsort(numbers)
         return self._plane(coordinates)[:, order[np.searchsorted(numbers[order], nodes)]]
 
-    def _set_sizes(
-        self, outline: Outline, sizes: Mapping[str, float], segments_per_circle: int
-    ) -> None:
+    def _set_sizes(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> None:
         for name, value in _MESH_OPTIONS.items():
             self._gmsh.option.setNumber(name, value)
-        self._gmsh.option.setNumber("Mesh.MeshSizeFromCurvature", segments_per_circle)
-        fields = self._gmsh.model.mesh.field
-        for tag in fields.list():
-            fields.remove(tag)
-        of_regions = []
-        for region in outline.regions:
-            tag = fields.add("Constant")
-            fields.setNumber(tag, "VIn", sizes[region.name])
-            fields.setNumbers(tag, "SurfacesList", region.faces)
-            of_regions.append(tag)
-        least = fields.add("Min")
-        fields.setNumbers(least, "FieldsList", of_regions)
-        fields.setAsBackgroundMesh(least)
+        wanted = {f: sizes[region.name] for region in outline.regions for f in region.faces}
+        along = {
+            curve.tag: min(wanted[face] for face in self.neighbours(curve.tag))
+            for curve in outline.curves
+        }
+        nearby = size_map(self, along, self._joined(along), bend)
+
+        def size(dim: int, tag: int, x: float, y: float, z: float, default: float) -> float:
+            return min(nearby.at(x, y), wanted[tag] if dim == 2 else default)
+
+        self._gmsh.model.mesh.setSizeCallback(size)
+
+    def _joined(self, curves: Iterable[int]) -> dict[int, list[int]]:
+        """For each curve the curves that share an end with it."""
+        ends = {curve: set(self._ends(curve)) for curve in curves}
+        return {c: [o for o, theirs in ends.items() if theirs & ends[c]] for c in ends}
 
     def _triangles(self, outline: Outline) -> tuple[Ints, Ints]:
         corners, faces = [], []
