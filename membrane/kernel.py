@@ -9,6 +9,7 @@ from typing import Any
 
 import numpy as np
 
+from membrane.bent_corners import spoilt
 from membrane.errors import MembraneError, MeshError, OutlineError
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
@@ -20,6 +21,9 @@ _lock = threading.RLock()
 
 # Gauss points by which lengths are measured; the kernel's own lengths are coarse.
 _PANELS, _PER_PANEL = 12, 12
+
+# How much more closely curves are followed, try by try.
+_CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0)
 
 # Set afresh for every mesh, so that nothing but these and the sizes shapes a mesh.
 _MESH_OPTIONS = {
@@ -164,23 +168,32 @@ class Kernel:
     # Mesh
 
     def triangulate(
-        self,
-        outline: Outline,
-        sizes: Mapping[str, float],
-        bend: Bend = Bend(),
+        self, outline: Outline, sizes: Mapping[str, float], bend: Bend = Bend()
     ) -> RawMesh:
         """Cover the outline with straight triangles, the same ones every time.
 
         sizes : region name -> longest wanted edge, metres
-        bend : how edges shorten along bent curves and beside gaps
+        bend : how edges shorten along bent curves and beside gaps; followed more
+            closely where a triangle could not take the shape of its curves
 
         Raises MeshError where gmsh fails or its mesh is not sound.
         """
+        for closer in _CLOSER:
+            raw = self._straight_mesh(outline, sizes, bend.closer(closer))
+            if not spoilt(raw, self._tangents(raw)).any():
+                return raw
+        raise MeshError(
+            "No mesh follows the curves of the outline; "
+            "move apart or leave out shapes that all but touch."
+        )
+
+    def _straight_mesh(
+        self, outline: Outline, sizes: Mapping[str, float], bend: Bend
+    ) -> RawMesh:
         self._set_sizes(outline, sizes, bend)
-        model = self._gmsh.model
-        model.mesh.clear()
+        self._gmsh.model.mesh.clear()
         with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
-            model.mesh.generate(2)
+            self._gmsh.model.mesh.generate(2)
         triangles, face = self._triangles(outline)
         segments, curve, parameters = self._segments(outline)
         used, corners = np.unique(triangles, return_inverse=True)
@@ -194,6 +207,15 @@ class Kernel:
         )
         _check(raw, outline, used, segments)
         return raw
+
+    def _tangents(self, raw: RawMesh) -> Floats:
+        """(2, 2, n_segments): derivatives at the first and last end of each segment."""
+        found = np.empty((2, *raw.segment_parameters.shape))
+        for curve in np.unique(raw.segment_curve):
+            of_curve = raw.segment_curve == curve
+            ends = raw.segment_parameters[:, of_curve]
+            found[:, :, of_curve] = self.tangent(curve, ends.ravel()).reshape(2, *ends.shape)
+        return found
 
     def _places(self, nodes: Ints) -> Floats:
         numbers, coordinates, _ = self._gmsh.model.mesh.getNodes()

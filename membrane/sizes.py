@@ -35,6 +35,10 @@ class Bend:
     per_gap: float = 1.5
     growth: float = 0.7
 
+    def closer(self, factor: float) -> Bend:
+        """Shorter edges along bends and beside gaps, by a factor."""
+        return Bend(factor * self.per_circle, self.per_gap / factor, self.growth)
+
 
 @dataclass(frozen=True)
 class SizeMap:
