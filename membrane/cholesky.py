@@ -25,6 +25,12 @@ SIMPLICIAL, SUPERNODAL = 0, 2
 DIAGONAL = 6
 """CHOLMOD's number for the system D x = b."""
 
+_ZERO_PIVOT = "the count of modes met a zero pivot; move the limit slightly"
+_NOT_FACTORED = {
+    SIMPLICIAL: _ZERO_PIVOT,
+    SUPERNODAL: "the stiffness matrix is not positive definite",
+}
+
 
 def factorised(A: Any) -> Solve:
     """A function that solves A x = b for a sparse, symmetric, positive definite A.
@@ -42,7 +48,7 @@ def negative_count(A: Any) -> int:
     """
     pivots = _cholmod_pivots(A) if _cholmod() else _superlu_pivots(A)
     if not np.all(np.isfinite(pivots)) or np.any(pivots == 0.0):
-        raise SolveError("the count of modes met a zero pivot; move the limit slightly")
+        raise SolveError(_ZERO_PIVOT)
     return int(np.count_nonzero(pivots < 0.0))
 
 
@@ -77,7 +83,7 @@ def _cholmod_factor(A: Any, kind: int) -> Any:
         factor = cholmod.symbolic(low)
         cholmod.numeric(low, factor)
     except ArithmeticError as failure:
-        raise SolveError("the stiffness matrix is not positive definite") from failure
+        raise SolveError(_NOT_FACTORED[kind]) from failure
     finally:
         cholmod.options["supernodal"] = before
     return factor
@@ -108,12 +114,11 @@ def _cholmod_pivots(A: Any) -> Floats:
 def _superlu(A: Any) -> Any:
     # without these options SuperLU pivots freely and orders for unsymmetric matrices
     options = {"SymmetricMode": True}
-    ordering = "MMD_AT_PLUS_A"
-    return splu(A.tocsc(), permc_spec=ordering, diag_pivot_thresh=0.0, options=options)
+    return splu(A.tocsc(), permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options=options)
 
 
 def _superlu_pivots(A: Any) -> Floats:
     factor = _superlu(A)
     if not np.array_equal(factor.perm_r, factor.perm_c):
-        raise SolveError("the count of modes met a zero pivot; move the limit slightly")
+        raise SolveError(_ZERO_PIVOT)
     return np.asarray(factor.U.diagonal(), dtype=float)

@@ -28,8 +28,10 @@ def check_mesh(mesh: Mesh, outline: Outline) -> None:
     for number, region in enumerate(outline.regions):
         covered = _areas(mesh)[mesh.region == number].sum()
         if abs(covered - region.area) > AREA * outline.area:
-            raise MeshError(f'region "{region.name}" is covered by {covered:.6g} m^2, '
-                            f"not by its {region.area:.6g} m^2")
+            raise MeshError(
+                f'region "{region.name}" is covered by {covered:.6g} m^2, '
+                f"not by its {region.area:.6g} m^2"
+            )
     for name in outline.edges:
         if mesh.edges[name].shape[1] == 0:
             raise MeshError(f'edge "{name}" has no sides of triangles')

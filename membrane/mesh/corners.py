@@ -103,6 +103,8 @@ def _ray(
     chord = raw.vertices[:, there] - raw.vertices[:, here]
     side = np.sign(tangent[0] * chord[1] - tangent[1] * chord[0])
     bend = float(side * kernel.curvature(curve, parameter)[0])
+    if abs(bend) * np.linalg.norm(chord) < WHOLE:
+        bend = 0.0  # a straight line, up to the kernel's rounding
     return Ray(_direction(chord), _direction(tangent), bend, curve, edge_of[curve])
 
 
@@ -116,9 +118,8 @@ def _passes_smoothly(rays: list[Ray], membrane: Membrane) -> bool:
         return False
     first, second = rays
     turn = (second.tangent - first.tangent) % (2 * pi)
-    scale = max(abs(first.bend), abs(second.bend), 1e-300)
     # leaving the vertex both ways, a steady curve bends to the left once, to the right once
-    steady = abs(first.bend + second.bend) <= 1e-6 * scale or scale == 1e-300
+    steady = abs(first.bend + second.bend) <= 1e-6 * abs(first.bend)
     alike = (first.edge in membrane.fixed_edges) == (second.edge in membrane.fixed_edges)
     return abs(turn - pi) < WHOLE and steady and alike
 

@@ -48,7 +48,7 @@ def _nodes(
     """Geometry nodes (2, n, n_triangles): straight ones, moved where a side is curved."""
     x, y = nodes(order)
     barycentric = np.array([1 - x - y, x, y])
-    placed = np.einsum("dvt,vn->dnt", raw.vertices[:, triangles], barycentric)
+    placed: Floats = np.einsum("dvt,vn->dnt", raw.vertices[:, triangles], barycentric)
     if order == 1:
         return placed
     segment, triangle, local = sides
@@ -78,9 +78,7 @@ def _blend(
     return _departure(kernel, curve, parameters, ends, s[None]) * weight[:, None]
 
 
-def _departure(
-    kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: Floats
-) -> Floats:
+def _departure(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: Floats) -> Floats:
     """Curve minus chord, (2, n_s, n_segments), at fractions ``s`` (1, n_s) of segments.
 
     parameters : (2, n_segments) and ends (2, 2, n_segments), from lower to higher vertex

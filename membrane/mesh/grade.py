@@ -27,9 +27,7 @@ def layers(exponent: float, tolerance: float) -> int:
     return min(ceil(log(tolerance) / (2 * exponent * log(RATIO))), DEEPEST)
 
 
-def graded(
-    kernel: Kernel, raw: RawMesh, corners: tuple[Corner, ...], tolerance: float
-) -> RawMesh:
+def graded(kernel: Kernel, raw: RawMesh, corners: tuple[Corner, ...], tolerance: float) -> RawMesh:
     """The mesh with every corner's triangles cut into layers that shrink towards it."""
     growing = _Growing(kernel, raw)
     for corner in corners:
@@ -70,7 +68,7 @@ class _Growing:
 
     def _chain(self, corner: int, end: int, depth: int) -> list[int]:
         """Vertices from ``end`` to ``corner``, each RATIO times closer than the last."""
-        fractions = RATIO ** np.arange(1, depth + 1)
+        fractions = np.power(RATIO, np.arange(1.0, depth + 1))
         segment = self._pop_segment(corner, end)
         chain = [end, *range(len(self.places), len(self.places) + depth), corner]
         if segment is None:

@@ -1,7 +1,7 @@
 """The weak forms of a membrane, as the mathematics writes them.
 
-    integral of T grad u . grad v + kappa u v over the head + beta u v along its edges
-        = lambda (integral of rho u v over the head + mu u v along its edges)
+integral of T grad u . grad v + kappa u v over the head + beta u v along its edges
+    = lambda (integral of rho u v over the head + mu u v along its edges)
 """
 
 from __future__ import annotations

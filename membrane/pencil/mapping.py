@@ -36,9 +36,8 @@ class CurvedMapping(Mapping):
         if self._last is None or self._last[0] is not X or self._last[1] is not tind:
             _, slopes = self._shapes(X)
             form = "dit,kin->dktn" if X.ndim == 2 else "dit,kitn->dktn"
-            jacobian = np.einsum(form, self._nodes(tind), slopes, optimize=True)
-            self._last = (X, tind, jacobian)
-        return self._last[2]
+            self._last = (X, tind, np.einsum(form, self._nodes(tind), slopes, optimize=True))
+        return np.asarray(self._last[2])
 
     def detDF(self, X: Floats, tind: Ints | None = None) -> Floats:
         """Determinant of the jacobian, (n_triangles, n)."""

@@ -26,7 +26,7 @@ class Lattice:
 @cache
 def lattice(parts: int) -> Lattice:
     """The lattice with ``parts`` pieces along each edge."""
-    index = {}
+    index: dict[tuple[int, int], int] = {}
     for j in range(parts + 1):
         for i in range(parts + 1 - j):
             index[i, j] = len(index)

@@ -25,4 +25,4 @@ def shapes(points: Floats, degree: int) -> tuple[Floats, Floats]:
 @cache
 def _to_nodal(degree: int) -> Floats:
     values, _ = orthonormal(nodes(degree), degree)
-    return np.linalg.inv(values)
+    return np.asarray(np.linalg.inv(values), dtype=float)

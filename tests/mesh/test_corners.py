@@ -1,7 +1,5 @@
 """Singular corners are found, and their strength is the textbook's."""
 
-
-
 import numpy as np
 import pytest
 

@@ -47,7 +47,9 @@ def test_nearest_vertices_are_as_close_as_asked():
 def test_every_side_is_shared_by_two_triangles_or_on_an_edge():
     _, _, after = meshes(zoo.L_SHAPE)
     sides = Counter(
-        frozenset((int(t[i]), int(t[j]))) for t in after.triangles.T for i, j in ((0, 1), (1, 2), (2, 0))
+        frozenset((int(t[i]), int(t[j])))
+        for t in after.triangles.T
+        for i, j in ((0, 1), (1, 2), (2, 0))
     )
     outer = {frozenset(map(int, pair)) for pair in after.segments.T}
     assert {side for side, count in sides.items() if count == 1} == outer
@@ -56,7 +58,7 @@ def test_every_side_is_shared_by_two_triangles_or_on_an_edge():
 
 def test_two_corners_of_one_triangle():
     """Every vertex of a coarse triangle may be singular; each is graded in turn."""
-    with zoo.drawn(zoo.SQUARE) as (kernel, study, outline, membrane):
+    with zoo.drawn(zoo.SQUARE) as (kernel, _study, outline, _membrane):
         raw = kernel.triangulate(outline, {"head": 2.0})
         every = tuple(Corner(v, 0.5) for v in range(raw.vertices.shape[1]))
         after = graded(kernel, raw, every, 1e-4)

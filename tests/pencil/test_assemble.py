@@ -63,7 +63,7 @@ def test_edge_mass_and_scale(disc):
         contribution(Field.EDGE_MASS, ("rim",), scale=5.0),
     )
     pencil = assemble(fields, disc, 6)
-    edge, head = pencil.mass
+    edge, _head = pencil.mass
     ones = np.ones(pencil.space.dofs)
     assert (edge.key, edge.scale) == ("key.edge_mass", 5.0)
     assert abs(energy(edge.matrix, ones) / (2 * np.pi) - 1) < 1e-9

@@ -90,12 +90,8 @@ CASES: dict[str, dict[str, Any]] = {
     "composite_patch_0p4_9p77": heavy_centre((0.4, 9.77)),
     "composite_3zone_8_3_1": heavy_centre((0.6, 3.0), (0.3, 8.0)),
     "lshape_fixed": case(polygon((0, 0), (1, 0), (1, 1), (-1, 1), (-1, -1), (0, -1))),
-    "gww1_fixed": case(
-        polygon((0, 0), (2, 0), (2, 2), (4, 2), (6, 4), (4, 4), (4, 6), (0, 2))
-    ),
-    "gww2_fixed": case(
-        polygon((2, 2), (4, 2), (6, 4), (4, 6), (4, 4), (0, 4), (0, 2), (2, 0))
-    ),
+    "gww1_fixed": case(polygon((0, 0), (2, 0), (2, 2), (4, 2), (6, 4), (4, 4), (4, 6), (0, 2))),
+    "gww2_fixed": case(polygon((2, 2), (4, 2), (6, 4), (4, 6), (4, 4), (0, 4), (0, 2), (2, 0))),
     "regular_5gon_fixed": regular(5),
     "regular_6gon_fixed": regular(6),
     "regular_8gon_fixed": regular(8),
