@@ -13,7 +13,7 @@ from membrane.records.arrays import Floats
 from membrane.triangle import nodes, shapes
 
 
-class ElementTriNodal(ElementH1):
+class ElementTriNodal(ElementH1):  # type: ignore[misc]  # scikit-fem is untyped
     """Lagrange element on ``membrane.triangle.nodes(degree)``.
 
     Facet dofs run from the lower to the higher vertex, so the mesh's triangles must have

@@ -13,7 +13,7 @@ from membrane.records.mesh import Mesh
 from membrane.triangle import EDGES, nodes, shapes
 
 
-class CurvedMapping(Mapping):
+class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
     """x = sum of the geometry nodes times the nodal shapes of the geometry's order.
 
     Points X are (2, n), the same in all triangles, or (2, n_triangles, n).
