@@ -5,8 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from membrane.records.outline import Drawing
 from membrane.units import PositiveLength
+
+from membrane.records.outline import Drawing
 
 
 @dataclass(frozen=True)

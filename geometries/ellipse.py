@@ -6,8 +6,9 @@ from dataclasses import dataclass
 from math import pi
 from typing import Any
 
-from membrane.records.outline import Drawing
 from membrane.units import PositiveLength
+
+from membrane.records.outline import Drawing
 
 
 @dataclass(frozen=True)

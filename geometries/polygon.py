@@ -6,8 +6,9 @@ from dataclasses import dataclass
 from itertools import combinations, pairwise
 from typing import Any
 
-from membrane.records.outline import Drawing
 from membrane.units import Point
+
+from membrane.records.outline import Drawing
 
 
 @dataclass(frozen=True)

@@ -6,8 +6,9 @@ from dataclasses import dataclass
 from math import cos, pi, sin
 from typing import Any
 
-from membrane.records.outline import Drawing
 from membrane.units import PositiveLength
+
+from membrane.records.outline import Drawing
 
 
 @dataclass(frozen=True)
@@ -28,6 +29,8 @@ def edges(options: Options) -> tuple[str, ...]:
 
 def build(geometry: Any, options: Options) -> Drawing:
     angles = [2 * pi * k / options.sides for k in range(options.sides)]
-    shape = geometry.add_polygon([[options.radius * cos(a), options.radius * sin(a)] for a in angles])
+    shape = geometry.add_polygon(
+        [[options.radius * cos(a), options.radius * sin(a)] for a in angles]
+    )
     sides = ([line] for line in shape.lines)
     return Drawing(shape, dict(zip(edges(options), sides, strict=True)))

@@ -7,8 +7,9 @@ from itertools import pairwise
 from math import ceil, cos, isclose, pi, sin
 from typing import Any
 
-from membrane.records.outline import Drawing
 from membrane.units import Angle, PositiveLength
+
+from membrane.records.outline import Drawing
 
 
 @dataclass(frozen=True)

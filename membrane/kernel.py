@@ -14,7 +14,7 @@ from membrane.errors import MembraneError, MeshError, OutlineError
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh, signed_areas
-from membrane.sizes import Bend, size_map
+from membrane.sizes import USUAL, Bend, size_map
 
 # gmsh keeps everything in one place per process, so one session at a time.
 _lock = threading.RLock()
@@ -23,7 +23,7 @@ _lock = threading.RLock()
 _PANELS, _PER_PANEL = 12, 12
 
 # How much more closely curves are followed, try by try.
-_CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0)
+_CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0, 16.0)
 
 # Set afresh for every mesh, so that nothing but these and the sizes shapes a mesh.
 _MESH_OPTIONS = {
@@ -104,6 +104,11 @@ class Kernel:
         speeds = np.hypot(*self.tangent(curve, at)).reshape(_PANELS, -1)
         return float(0.5 * step * (speeds @ weights).sum())
 
+    def ends(self, curve: int) -> tuple[int, int]:
+        """The kernel's points at the first and the last parameter of a curve."""
+        (_, first), (_, last) = self._gmsh.model.getBoundary([(1, curve)], combined=False)
+        return first, last
+
     def distance(self, points: Floats, curve: int) -> float:
         """Largest distance, metres, from ``points`` (2, n) to a curve."""
         deep = np.vstack([points, np.zeros(points.shape[1])]).T.ravel()
@@ -154,6 +159,10 @@ class Kernel:
         """Faces that a curve bounds."""
         return [int(face) for face in self._gmsh.model.getAdjacencies(1, curve)[0]]
 
+    def is_inside(self, face: int, point: Floats) -> bool:
+        """Whether a point (2,), metres, lies in a face."""
+        return bool(self._gmsh.model.isInside(2, face, [*point, 0.0]))
+
     def keep_only(self, faces: Iterable[int]) -> None:
         """Remove all faces but these, and every curve and point that bounds none."""
         model = self._gmsh.model
@@ -168,7 +177,7 @@ class Kernel:
     # Mesh
 
     def triangulate(
-        self, outline: Outline, sizes: Mapping[str, float], bend: Bend = Bend()
+        self, outline: Outline, sizes: Mapping[str, float], bend: Bend = USUAL
     ) -> RawMesh:
         """Cover the outline with straight triangles, the same ones every time.
 
@@ -187,9 +196,7 @@ class Kernel:
             "move apart or leave out shapes that all but touch."
         )
 
-    def _straight_mesh(
-        self, outline: Outline, sizes: Mapping[str, float], bend: Bend
-    ) -> RawMesh:
+    def _straight_mesh(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> RawMesh:
         self._set_sizes(outline, sizes, bend)
         self._gmsh.model.mesh.clear()
         with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
@@ -239,7 +246,7 @@ class Kernel:
 
     def _joined(self, curves: Iterable[int]) -> dict[int, list[int]]:
         """For each curve the curves that share an end with it."""
-        ends = {curve: set(self._ends(curve)) for curve in curves}
+        ends = {curve: set(self.ends(curve)) for curve in curves}
         return {c: [o for o, theirs in ends.items() if theirs & ends[c]] for c in ends}
 
     def _triangles(self, outline: Outline) -> tuple[Ints, Ints]:
@@ -271,14 +278,10 @@ class Kernel:
         mesh = self._gmsh.model.mesh
         inner, _, along = mesh.getNodes(1, curve)
         order = np.argsort(along)
-        ends = [self._corner_node(tag) for tag in self._ends(curve)]
+        ends = [self._corner_node(tag) for tag in self.ends(curve)]
         first, last = self.bounds(curve)
         chain = np.concatenate([ends[:1], inner[order].astype(np.int64), ends[1:]])
         return chain, np.concatenate([[first], np.asarray(along)[order], [last]])
-
-    def _ends(self, curve: int) -> tuple[int, int]:
-        (_, first), (_, last) = self._gmsh.model.getBoundary([(1, curve)], combined=False)
-        return first, last
 
     def _corner_node(self, point: int) -> int:
         numbers, _, _ = self._gmsh.model.mesh.getNodes(0, point)

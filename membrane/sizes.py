@@ -40,6 +40,9 @@ class Bend:
         return Bend(factor * self.per_circle, self.per_gap / factor, self.growth)
 
 
+USUAL = Bend()
+
+
 @dataclass(frozen=True)
 class SizeMap:
     """Edge length = the least of size + growth x distance over all samples.
@@ -91,9 +94,7 @@ def size_map(
     return _thinned(SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth))
 
 
-def _sample(
-    kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend
-) -> _Sampled:
+def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend) -> _Sampled:
     bent = kernel.curvature(curve, parameters)
     around = 2.0 * np.pi / bend.per_circle / np.maximum(bent, 1e-300)
     points = kernel.evaluate(curve, parameters)

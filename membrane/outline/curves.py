@@ -33,9 +33,7 @@ def curves(kernel: Kernel, cut: Cut, edges: Mapping[str, tuple[int, ...]]) -> tu
     return tuple(sorted(found, key=lambda c: (order.get(c.edge or "", len(order)), c.tag)))
 
 
-def _edge(
-    kernel: Kernel, cut: Cut, edges: Mapping[str, tuple[int, ...]], tag: int
-) -> str | None:
+def _edge(kernel: Kernel, cut: Cut, edges: Mapping[str, tuple[int, ...]], tag: int) -> str | None:
     faces = kernel.neighbours(tag)
     if sum(face in cut.patches for face in faces) == 2:
         return None

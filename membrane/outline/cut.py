@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from itertools import combinations
 
@@ -11,6 +11,10 @@ from membrane.kernel import Kernel
 
 # Less than this share of a shape may stick out: rounding where it follows the edge.
 _ROUNDING = 1e-7
+# Area that a cut may gain or lose, as a share of the outline's.
+_LOST = 1e-9
+# Metres; the kernel takes points closer than 1e-7 m for one.
+_SMALLEST = 1e-4
 
 
 @dataclass(frozen=True)
@@ -25,14 +29,20 @@ class Cut:
     holes: Mapping[int, str]
 
 
-def cut(
-    kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping[str, int]
-) -> Cut:
+def cut(kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping[str, int]) -> Cut:
     """Cut an outline's face by the faces of patches and holes.
 
     Raises OutlineError for shapes that do not fit together.
     """
-    head, *others = kernel.fragment([outline, *patches.values(), *holes.values()])
+    faces = [outline, *patches.values(), *holes.values()]
+    areas = [kernel.area(face) for face in faces]
+    if len(faces) > 1 and areas[0] < _SMALLEST**2:
+        raise OutlineError(
+            f"The outline is too small to be cut by patches and holes: {1e6 * areas[0]:.3g} mm^2; "
+            f"the geometry kernel needs {1e6 * _SMALLEST**2:.3g} mm^2."
+        )
+    head, *others = covers = kernel.fragment(faces)
+    _check_kept(kernel, areas, covers)
     over = dict(zip(patches, others[: len(patches)], strict=True))
     away = dict(zip(holes, others[len(patches) :], strict=True))
     for kind, covers in (("patch", over), ("hole", away)):
@@ -52,6 +62,16 @@ def cut(
 
 def _area(kernel: Kernel, faces: set[int]) -> float:
     return sum(kernel.area(face) for face in sorted(faces))
+
+
+def _check_kept(kernel: Kernel, areas: Sequence[float], covers: Sequence[set[int]]) -> None:
+    """A cut moves no area; where it does, the kernel has failed without saying so."""
+    for area, cover in zip(areas, covers, strict=True):
+        if abs(_area(kernel, cover) - area) > _LOST * areas[0]:
+            raise OutlineError(
+                "The shapes could not be cut by each other exactly; "
+                "move apart or leave out shapes that all but touch or are finer than 1 µm."
+            )
 
 
 def _check_inside(kernel: Kernel, shape: str, cover: set[int], head: set[int]) -> None:

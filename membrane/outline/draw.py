@@ -8,6 +8,7 @@ from membrane.kernel import Kernel
 from membrane.outline.curves import curves
 from membrane.outline.cut import Cut, cut
 from membrane.outline.place import place
+from membrane.outline.soundness import check_slivers, check_whole
 from membrane.records.outline import HEAD, Outline, Region
 from membrane.records.study import Hole, Patch, Study
 
@@ -21,6 +22,8 @@ def draw(kernel: Kernel, study: Study) -> Outline:
     patches, holes = _faces(kernel, study.patches), _faces(kernel, study.holes)
     pieces = cut(kernel, outline.face, patches, holes)
     named = curves(kernel, pieces, outline.edges)
+    check_whole(kernel, named, pieces.patches)
+    check_slivers(kernel, named, pieces.patches)
     kernel.keep_only(pieces.patches)
     return Outline(_regions(kernel, pieces), named)
 
