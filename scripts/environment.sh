@@ -74,7 +74,8 @@ debian_packages() {
 
 apt_install() {
     apt-get update -qq
-    DEBIAN_FRONTEND=noninteractive apt-get install -qq --yes --no-install-recommends "$@" >/dev/null
+    DEBIAN_FRONTEND=noninteractive DEBCONF_NOWARNINGS=yes \
+        apt-get install -qq --yes --no-install-recommends "$@" >/dev/null
 }
 
 stop() {
