@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from itertools import combinations, pairwise
+from itertools import combinations
 from typing import Any
 
 from membrane.units import Point
@@ -24,7 +24,7 @@ class Options:
         for k, m in combinations(range(len(corners)), 2):
             if corners[k] == corners[m]:
                 raise ValueError(f"corners {k + 1} and {m + 1} are the same point; leave one out.")
-        if _twice_area(corners) ** 2 <= 1e-18 * _size(corners) ** 4:
+        if _on_one_line(corners):
             raise ValueError("the corners lie on one line; give corners that enclose an area.")
         for k, m in combinations(range(len(corners)), 2):
             if _meet(corners, k, m):
@@ -44,13 +44,11 @@ def build(geometry: Any, options: Options) -> Drawing:
     return Drawing(shape, dict(zip(edges(options), sides, strict=True)))
 
 
-def _size(corners: tuple[Point, ...]) -> float:
-    return max(max(axis) - min(axis) for axis in zip(*corners, strict=True))
-
-
-def _twice_area(corners: tuple[Point, ...]) -> float:
-    closed = (*corners, corners[0])
-    return sum(a[0] * b[1] - a[1] * b[0] for a, b in pairwise(closed))
+def _on_one_line(corners: tuple[Point, ...]) -> bool:
+    first = corners[0]
+    far = max(corners, key=lambda c: (c[0] - first[0]) ** 2 + (c[1] - first[1]) ** 2)
+    reach = (far[0] - first[0]) ** 2 + (far[1] - first[1]) ** 2
+    return all(abs(_turn(first, far, corner)) <= 1e-9 * reach for corner in corners)
 
 
 def _meet(corners: tuple[Point, ...], k: int, m: int) -> bool:

@@ -21,7 +21,8 @@ def spoilt(raw: RawMesh, tangents: Floats) -> Bools:
     straight = _directions(raw)
     bent = _along_curves(raw, straight, tangents)
     before, after = _between(straight), _between(bent)
-    return np.any((after < _LEAST_SHARE * before) | (after > _WIDEST), axis=0)
+    wrong: Bools = ((after < _LEAST_SHARE * before) | (after > _WIDEST)).any(axis=0)
+    return wrong
 
 
 def _directions(raw: RawMesh) -> Floats:
@@ -48,4 +49,5 @@ def _along_curves(raw: RawMesh, straight: Floats, tangents: Floats) -> Floats:
 def _between(directions: Floats) -> Floats:
     """Angles (3, n_triangles), -pi to pi, counter-clockwise from the first to the second."""
     (ux, vx), (uy, vy) = directions.transpose(0, 2, 1, 3)
-    return np.arctan2(ux * vy - uy * vx, ux * vx + uy * vy)
+    angles: Floats = np.arctan2(ux * vy - uy * vx, ux * vx + uy * vy)
+    return angles

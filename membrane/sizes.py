@@ -91,7 +91,7 @@ def size_map(
             break
         parameters = finer
     points = np.hstack([one.points for one in sampled])
-    return _thinned(SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth))
+    return thinned(SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth))
 
 
 def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend) -> _Sampled:
@@ -121,7 +121,7 @@ def _bisected(one: _Sampled) -> Floats:
     return np.sort(np.concatenate([one.parameters, halves]))
 
 
-def _thinned(sizes: SizeMap) -> SizeMap:
+def thinned(sizes: SizeMap) -> SizeMap:
     """Without the samples that others overrule everywhere."""
     kept: list[int] = []
     order = np.argsort(sizes.sizes, kind="stable")

@@ -13,8 +13,8 @@ from membrane.kernel import Kernel
 _ROUNDING = 1e-7
 # Area that a cut may gain or lose, as a share of the outline's.
 _LOST = 1e-9
-# Metres; the kernel takes points closer than 1e-7 m for one.
-_SMALLEST = 1e-4
+# Square metres; the kernel takes points closer than 1e-7 m for one.
+_SMALLEST = 1e-8
 
 
 @dataclass(frozen=True)
@@ -34,30 +34,31 @@ def cut(kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping
 
     Raises OutlineError for shapes that do not fit together.
     """
-    faces = [outline, *patches.values(), *holes.values()]
-    areas = [kernel.area(face) for face in faces]
-    if len(faces) > 1 and areas[0] < _SMALLEST**2:
-        raise OutlineError(
-            f"The outline is too small to be cut by patches and holes: {1e6 * areas[0]:.3g} mm^2; "
-            f"the geometry kernel needs {1e6 * _SMALLEST**2:.3g} mm^2."
-        )
-    head, *others = covers = kernel.fragment(faces)
-    _check_kept(kernel, areas, covers)
+    head, *others = _fragments(kernel, [outline, *patches.values(), *holes.values()])
     over = dict(zip(patches, others[: len(patches)], strict=True))
     away = dict(zip(holes, others[len(patches) :], strict=True))
-    for kind, covers in (("patch", over), ("hole", away)):
-        for name, cover in covers.items():
-            _check_inside(kernel, f"The {kind} {name}", cover, head)
+    for name, cover in over.items():
+        _check_inside(kernel, f"The patch {name}", cover, head)
+    for name, cover in away.items():
+        _check_inside(kernel, f"The hole {name}", cover, head)
     _check_apart(kernel, away)
     removed = {face: name for name, cover in away.items() for face in cover}
     _check_left(over, head, removed)
-    return Cut(
-        {
-            face: tuple(name for name, cover in over.items() if face in cover)
-            for face in sorted(head - removed.keys())
-        },
-        removed,
-    )
+    left = sorted(head - removed.keys())
+    return Cut({face: tuple(n for n in over if face in over[n]) for face in left}, removed)
+
+
+def _fragments(kernel: Kernel, faces: Sequence[int]) -> list[set[int]]:
+    """For each face the faces that cover it after all are cut by each other."""
+    areas = [kernel.area(face) for face in faces]
+    if len(faces) > 1 and areas[0] < _SMALLEST:
+        raise OutlineError(
+            f"The outline is too small to be cut by patches and holes: {1e6 * areas[0]:.3g} mm^2; "
+            f"the geometry kernel needs {1e6 * _SMALLEST:.3g} mm^2."
+        )
+    covers = kernel.fragment(faces)
+    _check_kept(kernel, areas, covers)
+    return covers
 
 
 def _area(kernel: Kernel, faces: set[int]) -> float:

@@ -83,8 +83,8 @@ def _along(kernel: Kernel, ray: _Ray, reach: float) -> Floats:
 
 def _sentence(one: _Ray, other: _Ray) -> str:
     names = " and ".join(ray.curve.edge or "the border of a patch" for ray in (one, other))
-    x, y = 1e3 * one.point
+    x, y = (round(1e3 * float(value), 6) + 0.0 for value in one.point)
     return (
-        f"Near x = {x:.6g} mm, y = {y:.6g} mm a sliver is left between {names}; "
+        f"Near x = {x:g} mm, y = {y:g} mm a sliver is left between {names}; "
         "move the shapes apart or let them overlap."
     )

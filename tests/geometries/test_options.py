@@ -1,0 +1,56 @@
+"""Shapes that cannot be drawn are refused in one sentence."""
+
+import numpy as np
+import pytest
+from membrane.geometries import polygon, regular_polygon, sector
+
+SQUARE = ((0.0, 0.0), (1.0, 0.0), (1.0, 1.0), (0.0, 1.0))
+
+
+@pytest.mark.parametrize(
+    ("corners", "sentence"),
+    [
+        (SQUARE[:2], "at least 3 corners, not 2"),
+        ((*SQUARE, SQUARE[0]), "corners 1 and 5 are the same point"),
+        ((SQUARE[0], SQUARE[0], *SQUARE[1:]), "corners 1 and 2 are the same point"),
+        (((0.0, 0.0), (1.0, 1.0), (2.0, 2.0)), "lie on one line"),
+        ((SQUARE[0], SQUARE[2], SQUARE[1], SQUARE[3]), "side1 and side3 meet"),
+        (((0.0, 0.0), (2.0, 0.0), (2.0, 1.0), (1.0, 0.0), (0.0, 1.0)), "side1 and side3 meet"),
+        (((0.0, 0.0), (2.0, 0.0), (1.0, 0.0), (1.0, 1.0)), "side1 and side2 meet"),
+    ],
+)
+def test_a_bad_polygon(corners, sentence):
+    with pytest.raises(ValueError, match=sentence):
+        polygon.Options(corners)
+
+
+def test_good_polygons_of_any_size_and_sense():
+    for scale in (1e-4, 1.0, 100.0):
+        corners = tuple((scale * x, scale * y) for x, y in SQUARE)
+        assert polygon.Options(corners).corners == corners
+        assert polygon.Options(corners[::-1]).corners == corners[::-1]
+
+
+def test_a_polygon_far_from_the_origin_is_not_taken_for_flat():
+    polygon.Options(tuple((x + 1e3, y - 1e3) for x, y in SQUARE))
+
+
+def test_a_flat_polygon_far_from_the_origin_is_found():
+    with pytest.raises(ValueError, match="lie on one line"):
+        polygon.Options(((1e3, 1e3), (1e3 + 1, 1e3 + 1), (1e3 + 2, 1e3 + 2)))
+
+
+def test_two_sides_are_no_polygon():
+    with pytest.raises(ValueError, match="at least 3 sides, not 2"):
+        regular_polygon.Options(sides=2, radius=1.0)
+
+
+def test_a_slit_disc_is_not_available_yet():
+    with pytest.raises(ValueError, match="not available yet"):
+        sector.Options(radius=1.0, angle=2 * np.pi)
+
+
+@pytest.mark.parametrize("angle", [0.0, -1.0, 7.0])
+def test_an_angle_out_of_range(angle):
+    with pytest.raises(ValueError, match="between 0 deg and 360 deg"):
+        sector.Options(radius=1.0, angle=angle)

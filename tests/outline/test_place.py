@@ -1,0 +1,39 @@
+"""A shape is drawn by its plugin, and what is not a shape is refused."""
+
+from types import SimpleNamespace
+
+import numpy as np
+import pytest
+
+from membrane.errors import OutlineError
+from membrane.kernel import Kernel
+from membrane.outline import place as place_module
+from membrane.outline.place import place
+from membrane.records.outline import Drawing
+from tests.outline.studies import box, shape
+
+
+def test_loose_copies_move_with_the_face():
+    with Kernel.session() as kernel:
+        placed = place(kernel, box(0.4, 0.2, 0.3, 0.1, rotate=0.5))
+        kernel.fragment([placed.face])
+        for copies, own in zip(placed.edges.values(), (3, 1, 0, 2), strict=True):
+            (copy,) = copies
+            middle = kernel.evaluate(copy, np.array([np.mean(kernel.bounds(copy))]))
+            assert kernel.distance(middle, kernel.border(placed.face)[own]) < 1e-12
+
+
+@pytest.mark.parametrize(
+    ("handed_back", "sentence"),
+    [
+        (lambda disk, point: Drawing(point, {"rim": ()}), "not a surface"),
+        (lambda disk, point: Drawing(disk, {"rim": [disk]}), "not a curve"),
+    ],
+)
+def test_a_script_that_hands_back_the_wrong_thing(monkeypatch, handed_back, sentence):
+    def build(geometry, options):
+        return handed_back(geometry.add_disk([0.0, 0.0], 1.0), geometry.add_point([0.0, 0.0]))
+
+    monkeypatch.setattr(place_module, "load", lambda kind, name: SimpleNamespace(build=build))
+    with Kernel.session() as kernel, pytest.raises(OutlineError, match=sentence):
+        place(kernel, shape("disc", diameter=1.0))
