@@ -51,15 +51,18 @@ pip_install() {
 # gmsh comes with all but the system's graphics libraries, which it needs even to mesh.
 provide_libraries() {
     local packages
-    packages=$(missing_libraries | debian_packages)
+    packages=$(missing_packages)
     [[ -n $packages ]] || return 0
     if [[ $(id -u) == 0 ]] && command -v apt-get >/dev/null; then
-        echo "Installing libraries that gmsh needs:" $packages >&2
-        apt_install $packages
+        apt_install "$packages"
+        packages=$(missing_packages)
     fi
-    packages=$(missing_libraries | debian_packages)
     [[ -z $packages ]] || stop "gmsh lacks system libraries; please run this line, then try again:
-sudo apt-get update && sudo apt-get install --yes" $packages
+sudo apt-get update && sudo apt-get install --yes $packages"
+}
+
+missing_packages() {
+    missing_libraries | debian_names | sort -u | paste --serial --delimiters=' '
 }
 
 missing_libraries() {
@@ -68,14 +71,15 @@ missing_libraries() {
 }
 
 # The Debian Policy Manual, section 8.1, names a package after the library that it holds.
-debian_packages() {
-    sed -E -e 's/([0-9])\.so\./\1-/; s/\.so(\.|$)//; y/_/-/; s/(.*)/\L&/' | sort -u
+debian_names() {
+    sed -E -e 's/([0-9])\.so\./\1-/; s/\.so(\.|$)//; y/_/-/; s/(.*)/\L&/'
 }
 
 apt_install() {
+    echo "Installing libraries that gmsh needs: $1" >&2
+    export DEBIAN_FRONTEND=noninteractive DEBCONF_NOWARNINGS=yes
     apt-get update -qq
-    DEBIAN_FRONTEND=noninteractive DEBCONF_NOWARNINGS=yes \
-        apt-get install -qq --yes --no-install-recommends "$@" >/dev/null
+    xargs apt-get install -qq --yes --no-install-recommends <<<"$1" >/dev/null
 }
 
 stop() {
