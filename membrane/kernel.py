@@ -5,6 +5,7 @@ from __future__ import annotations
 import threading
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
+from functools import cache
 from typing import Any
 
 import numpy as np
@@ -99,7 +100,7 @@ class Kernel:
         """Length of a curve, metres."""
         first, last = self.bounds(curve)
         starts, step = np.linspace(first, last, _PANELS, endpoint=False, retstep=True)
-        points, weights = np.polynomial.legendre.leggauss(_PER_PANEL)
+        points, weights = _gauss()
         at = (starts[:, None] + 0.5 * step * (points + 1.0)).ravel()
         speeds = np.hypot(*self.tangent(curve, at)).reshape(_PANELS, -1)
         return float(0.5 * step * (speeds @ weights).sum())
@@ -108,6 +109,11 @@ class Kernel:
         """The kernel's points at the first and the last parameter of a curve."""
         (_, first), (_, last) = self._gmsh.model.getBoundary([(1, curve)], combined=False)
         return first, last
+
+    def box(self, curve: int) -> tuple[Floats, Floats]:
+        """Lower left and upper right corner (2,) of a box around a curve, metres."""
+        box = np.array(self._gmsh.model.getBoundingBox(1, curve))
+        return box[:2], box[3:5]
 
     def distance(self, points: Floats, curve: int) -> float:
         """Largest distance, metres, from ``points`` (2, n) to a curve."""
@@ -295,6 +301,11 @@ def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:
         raise MeshError("gmsh left a curve of the outline without triangles.")
     if not 0.5 < raw.areas.sum() / outline.area < 1.5:
         raise MeshError("The triangles do not cover the outline.")
+
+
+@cache
+def _gauss() -> tuple[Floats, Floats]:
+    return np.polynomial.legendre.leggauss(_PER_PANEL)
 
 
 @contextmanager
