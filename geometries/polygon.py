@@ -6,9 +6,8 @@ from dataclasses import dataclass
 from itertools import combinations
 from typing import Any
 
-from membrane.units import Point
-
 from membrane.records.outline import Drawing
+from membrane.units import Point
 
 
 @dataclass(frozen=True)

@@ -6,9 +6,8 @@ from dataclasses import dataclass
 from math import cos, pi, sin
 from typing import Any
 
-from membrane.units import PositiveLength
-
 from membrane.records.outline import Drawing
+from membrane.units import PositiveLength
 
 
 @dataclass(frozen=True)

@@ -7,9 +7,8 @@ from itertools import pairwise
 from math import ceil, cos, isclose, pi, sin
 from typing import Any
 
-from membrane.units import Angle, PositiveLength
-
 from membrane.records.outline import Drawing
+from membrane.units import Angle, PositiveLength
 
 
 @dataclass(frozen=True)

@@ -5,9 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from membrane.units import PositiveLength
-
 from membrane.records.outline import Drawing
+from membrane.units import PositiveLength
 
 
 @dataclass(frozen=True)

@@ -26,6 +26,9 @@ _PANELS, _PER_PANEL = 12, 12
 # How much more closely curves are followed, try by try.
 _CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0, 16.0)
 
+# How far a vertex may lie off its curve, as a share of the outline's size.
+_JOINED = 1e-9
+
 # Set afresh for every mesh, so that nothing but these and the sizes shapes a mesh.
 _MESH_OPTIONS = {
     "Mesh.Algorithm": 6,  # frontal Delaunay
@@ -219,6 +222,7 @@ class Kernel:
             parameters,
         )
         _check(raw, outline, used, segments)
+        self._check_ends(raw, outline)
         return raw
 
     def _tangents(self, raw: RawMesh) -> Floats:
@@ -229,6 +233,14 @@ class Kernel:
             ends = raw.segment_parameters[:, of_curve]
             found[:, :, of_curve] = self.tangent(curve, ends.ravel()).reshape(2, *ends.shape)
         return found
+
+    def _check_ends(self, raw: RawMesh, outline: Outline) -> None:
+        for curve in outline.curves:
+            mine = raw.segment_curve == curve.tag
+            exact = self.evaluate(curve.tag, raw.segment_parameters[:, mine])
+            off = np.abs(exact - raw.vertices[:, raw.segments[:, mine].ravel()]).max()
+            if off > _JOINED * np.sqrt(outline.area):
+                raise MeshError(f"Curves that should meet are {off:.1e} m apart.")
 
     def _places(self, nodes: Ints) -> Floats:
         numbers, coordinates, _ = self._gmsh.model.mesh.getNodes()

@@ -7,6 +7,7 @@ import sys
 from collections import Counter
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import fields
+from pathlib import Path
 
 import gmsh
 import numpy as np
@@ -122,6 +123,7 @@ def test_the_users_gmsh_settings_change_nothing(tmp_path):
         capture_output=True,
         text=True,
         check=True,
+        cwd=Path(__file__).parents[1],
     )
     count, factor = run.stdout.split()[-2:]
     assert float(factor) == 0.25  # the settings are found, and would count
@@ -237,3 +239,16 @@ def test_what_gmsh_says_when_it_fails_reaches_the_user(monkeypatch):
     monkeypatch.setattr(gmsh.model.mesh, "generate", fail)
     with pytest.raises(MeshError, match=r"could not cover .* edges intersect"):
         meshed(study(disc(2.0)), 0.5)
+
+
+def test_a_vertex_off_its_curve_is_found(monkeypatch):
+    exact = Kernel.evaluate
+
+    def shifted(self, curve, parameters):
+        return exact(self, curve, parameters) + 1e-6
+
+    with Kernel.session() as kernel:
+        outline = draw(kernel, study(disc(2.0)))
+        monkeypatch.setattr(Kernel, "evaluate", shifted)
+        with pytest.raises(MeshError, match=r"are 1.0e-06 m apart"):
+            kernel.triangulate(outline, {"head": 0.5})

@@ -2,6 +2,7 @@
 
 import numpy as np
 import pytest
+
 from membrane.geometries import polygon, regular_polygon, sector
 
 SQUARE = ((0.0, 0.0), (1.0, 0.0), (1.0, 1.0), (0.0, 1.0))
