@@ -38,7 +38,8 @@ def place(kernel: Kernel, shape: Shape) -> Placed:
 
 
 def _tag(drawn: Any, dim: int, plugin: str) -> int:
-    found, tag = drawn.dim_tag
+    """The kernel's tag of a pygmsh entity."""
+    found, tag = getattr(drawn, "dim_tag", (None, None))
     if found != dim:
         kind = "surface" if dim == 2 else "curve"
         raise OutlineError(f"The shape {plugin} hands back something that is not a {kind}.")

@@ -7,10 +7,12 @@ import pytest
 
 from membrane.errors import OutlineError
 from membrane.kernel import Kernel
+from membrane.outline import draw
 from membrane.outline import place as place_module
 from membrane.outline.place import place
 from membrane.records.outline import Drawing
-from tests.outline.studies import box, shape
+from membrane.records.study import Shape
+from tests.outline.studies import box, shape, study
 
 
 def test_loose_copies_move_with_the_face():
@@ -27,6 +29,7 @@ def test_loose_copies_move_with_the_face():
     ("handed_back", "sentence"),
     [
         (lambda disk, point: Drawing(point, {"rim": ()}), "not a surface"),
+        (lambda disk, point: Drawing([disk], {"rim": ()}), "not a surface"),
         (lambda disk, point: Drawing(disk, {"rim": [disk]}), "not a curve"),
     ],
 )
@@ -37,3 +40,32 @@ def test_a_script_that_hands_back_the_wrong_thing(monkeypatch, handed_back, sent
     monkeypatch.setattr(place_module, "load", lambda kind, name: SimpleNamespace(build=build))
     with Kernel.session() as kernel, pytest.raises(OutlineError, match=sentence):
         place(kernel, shape("disc", diameter=1.0))
+
+
+def keyhole(geometry, options):
+    disk = geometry.add_disk([0.0, 0.0], 1.0)
+    slot = geometry.add_rectangle([0.0, -0.5, 0.0], 2.0, 1.0)
+    (surface,) = geometry.boolean_union([disk, slot])
+    return Drawing(surface, {"rim": ()})
+
+
+def ring(geometry, options):
+    geometry.add_disk([5.0, 5.0], 0.5)  # left over, and no part of the outline
+    whole, middle = geometry.add_disk([0.0, 0.0], 1.0), geometry.add_disk([0.0, 0.0], 0.5)
+    (surface,) = geometry.boolean_difference(whole, middle)
+    return Drawing(surface, {"rim": ()})
+
+
+# The keyhole: a disc, and a box less its part in the disc, up to the chord at x = cos 30 deg.
+KEYHOLE = 5 * np.pi / 6 + np.sqrt(3) / 4 + 2.0 - np.sqrt(3) / 2
+
+
+@pytest.mark.parametrize(("build", "area"), [(keyhole, KEYHOLE), (ring, 0.75 * np.pi)])
+def test_a_script_may_use_booleans(monkeypatch, build, area):
+    monkeypatch.setattr(place_module, "load", lambda kind, name: SimpleNamespace(build=build))
+    with Kernel.session() as kernel:
+        outline = draw(kernel, study(Shape("own", None)))
+        raw = kernel.triangulate(outline, {"head": 0.1})
+    assert outline.area == pytest.approx(area, rel=1e-10)
+    assert outline.edges == ("rim",)
+    assert raw.areas.sum() == pytest.approx(area, rel=5e-3)
