@@ -1,0 +1,125 @@
+"""Options: a frozen dataclass filled from the keys of a study, each value checked."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import MISSING, Field, fields, is_dataclass
+from enum import Enum
+from functools import lru_cache
+from pathlib import PurePath
+from types import UnionType
+from typing import Annotated, Any, TypeVar, Union, get_args, get_origin, get_type_hints
+
+from membrane.errors import PluginError, Problem, StudyError
+from membrane.plugins.sentences import sentence
+from membrane.wording import nearest
+
+T = TypeVar("T")
+
+
+def read_options(kind: type[T], keys: Mapping[str, Any]) -> T:
+    """An instance of the dataclass ``kind`` from a table of a study.
+
+    Unknown keys, missing keys and bad values are all reported in one StudyError, with
+    paths relative to the table; so is a ValueError of the dataclass's own
+    ``__post_init__``. Raises PluginError where ``kind`` is not a dataclass with hints.
+    """
+    known = _hints(kind)  # type: ignore[arg-type]  # every class is hashable
+    problems = [_unknown(key, tuple(known)) for key in keys if key not in known]
+    problems += [_missing(f) for f in _fields(kind) if f.name not in keys and _required(f)]
+    values: dict[str, Any] = {}
+    for key in known.keys() & keys.keys():
+        problems += _read_into(values, key, known[key], keys[key])
+    if not problems:
+        try:
+            return kind(**values)
+        except ValueError as failure:
+            problems = [Problem("", str(failure))]
+    raise StudyError(sorted(problems, key=lambda problem: _place(problem, known)))
+
+
+def plain(options: Any) -> Any:
+    """Options as plain data in the study file's own keys; what is None is left out."""
+    if is_dataclass(options):
+        pairs = ((f.name, getattr(options, f.name)) for f in fields(options))
+        return {name: plain(value) for name, value in pairs if value is not None}
+    if isinstance(options, Mapping):
+        return {str(key): plain(value) for key, value in options.items()}
+    if isinstance(options, Enum):
+        return options.value
+    if isinstance(options, PurePath):
+        return str(options)
+    if isinstance(options, list | tuple | set | frozenset):
+        return [plain(value) for value in options]
+    return options
+
+
+def _read_into(values: dict[str, Any], key: str, hint: Any, value: Any) -> list[Problem]:
+    from pydantic import ValidationError
+
+    try:
+        values[key] = _adapter(hint).validate_python(value)
+    except ValidationError as failure:
+        return [Problem(*sentence(key, error)) for error in failure.errors()]
+    return []
+
+
+@lru_cache(maxsize=512)
+def _adapter(hint: Any) -> Any:
+    from pydantic import TypeAdapter
+
+    return TypeAdapter(_strict(hint))
+
+
+def _strict(hint: Any) -> Any:
+    """The same type, with a bool or a string no longer taken for a number."""
+    from pydantic import Strict
+
+    if hint in (int, float, str, bool):
+        return Annotated[hint, Strict()]
+    origin, inner = get_origin(hint), get_args(hint)
+    if origin is UnionType or origin is Union:
+        return Union[tuple(_strict(part) for part in inner)]  # noqa: UP007 (made at run time)
+    if origin in (tuple, list):
+        return origin[tuple(part if part is ... else _strict(part) for part in inner)]
+    return hint
+
+
+@lru_cache(maxsize=256)
+def _hints(kind: type) -> dict[str, Any]:
+    """Field name -> type, with its units, for the fields that a study can set."""
+    if not (isinstance(kind, type) and is_dataclass(kind)):
+        raise PluginError(f"The options {kind!r} must be a frozen dataclass.")
+    try:
+        hints = get_type_hints(kind, include_extras=True)
+    except NameError as failure:
+        raise PluginError(f"The options of {kind.__module__} cannot be read: {failure}.") from None
+    return {f.name: hints[f.name] for f in _fields(kind)}
+
+
+def _fields(kind: type) -> list[Field[Any]]:
+    return [f for f in fields(kind) if f.init]
+
+
+def _required(field: Field[Any]) -> bool:
+    return field.default is MISSING and field.default_factory is MISSING
+
+
+def _missing(field: Field[Any]) -> Problem:
+    return Problem(field.name, "is missing; give it a value.")
+
+
+def _unknown(key: str, known: tuple[str, ...]) -> Problem:
+    hint = nearest(key, known)
+    return Problem(key, f"unknown key{hint if hint != '.' else _allowed(known)}")
+
+
+def _allowed(known: tuple[str, ...]) -> str:
+    return f"; known here are {', '.join(known)}." if known else "; no keys are known here."
+
+
+def _place(problem: Problem, known: Mapping[str, Any]) -> tuple[int, str]:
+    """Problems come in the order of the fields, unknown keys first."""
+    order = list(known)
+    key = problem.path.split("[")[0].split(".")[0]
+    return (order.index(key) + 1 if key in order else 0, problem.path)

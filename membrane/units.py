@@ -1,0 +1,208 @@
+"""Physical quantities: field types that take "356 mm" or a bare SI number and give a float.
+
+Each type is a float for type checkers; pydantic calls its ``Quantity`` to read a value.
+Inside the program every quantity is in SI units, an angle in radians, an interval in cents.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import dataclass
+from enum import Enum
+from fractions import Fraction
+from functools import lru_cache
+from math import inf, isclose, isfinite, pi
+from numbers import Real
+from typing import Annotated, Any, TypeAlias
+
+from membrane.wording import nearest, shown
+
+_NUMBER_AND_UNIT = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*")
+_UNIT = re.compile(r"[^\W\d_][\w °·*/^().+-]*|°")
+_TURN = 2.0 * pi * (1.0 + 1e-9)
+
+_COMMON_UNITS = (
+    *("m", "mm", "cm", "um", "in", "inch", "ft", "meter", "metre", "millimeter", "millimetre"),
+    *("centimeter", "centimetre", "rad", "deg", "degree", "radian", "kg", "g", "kilogram", "gram"),
+    *("N", "kN", "mN", "lbf", "newton", "Hz", "kHz", "hertz", "kilohertz", "cent", "Pa", "kPa"),
+    *("kg/m^2", "g/m^2", "kg/m", "g/m", "N/m", "kN/m", "N/mm", "N/m^2", "N/m^3", "kg/m^3"),
+)
+"""Spellings offered where a unit is unknown."""
+
+
+class Sign(Enum):
+    """Which numbers a quantity may have."""
+
+    ANY = "any"
+    NOT_NEGATIVE = "not negative"
+    POSITIVE = "positive"
+
+    def allows(self, number: float) -> bool:
+        """Whether a number has this sign."""
+        if self is Sign.POSITIVE:
+            return number > 0.0
+        return self is Sign.ANY or number >= 0.0
+
+    def worded(self, noun: str) -> str:
+        """ "a length" as "a positive length"."""
+        if self is Sign.POSITIVE:
+            return f"a positive {noun.split(' ', 1)[1]}"
+        return noun if self is Sign.ANY else f"{noun} of zero or more"
+
+
+@dataclass(frozen=True)
+class Quantity:
+    """What a field measures.
+
+    noun : with its article, such as "a length"
+    unit : the SI unit, as pint spells it
+    example : a value that a user could write
+    """
+
+    noun: str
+    unit: str
+    example: str
+    sign: Sign = Sign.ANY
+
+    def read(self, value: Any) -> float:
+        """The SI number of "356 mm", or of a bare SI number.
+
+        Raises ValueError with a sentence.
+        """
+        if isinstance(value, str):
+            number = self._from_text(value)
+        elif isinstance(value, Real) and not isinstance(value, bool):
+            number = float(value)
+        elif isinstance(value, dict) and "formula" in value:
+            raise ValueError("a formula is not available yet; give a number with its unit.")
+        else:
+            raise ValueError(self._expected(f"got {shown(value)}."))
+        self._check(number, value)
+        return number
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: Any) -> Any:
+        from pydantic_core import core_schema
+
+        return core_schema.no_info_plain_validator_function(self.read)
+
+    def _from_text(self, text: str) -> float:
+        found = _NUMBER_AND_UNIT.fullmatch(text)
+        if not found:
+            raise ValueError(self._expected(f"got {shown(text)}."))
+        number, unit = found.groups()
+        if not unit:
+            raise ValueError(self._expected(f"got {shown(text)}, which has no unit."))
+        factor = self._factor(unit, text)
+        if not isfinite(float(number)) or float(number) == 0.0:
+            return float(number)
+        try:
+            return float(Fraction(number) * factor)
+        except OverflowError:
+            return inf
+
+    def _factor(self, unit: str, text: str) -> Fraction:
+        """How many SI units one ``unit`` is, as exactly as its definition."""
+        try:
+            factor, root = _root(unit)
+        except ValueError:
+            hint = nearest(unit, _COMMON_UNITS)
+            reason = f"got {shown(text)}, whose unit is unknown{hint}"
+            raise ValueError(self._expected(reason)) from None
+        own_factor, own_root = _root(self.unit)
+        if root != own_root:
+            raise ValueError(self._expected(f"got {shown(text)}."))
+        return _exact(factor / own_factor)
+
+    def _check(self, number: float, value: Any) -> None:
+        if not isfinite(number):
+            raise ValueError(self._expected(f"got {shown(value)}, which is not finite."))
+        if not self.sign.allows(number):
+            raise ValueError(self._expected(f"got {shown(value)}."))
+
+    def _expected(self, reason: str) -> str:
+        return f"expected {self.sign.worded(self.noun)} such as {shown(self.example)}, {reason}"
+
+
+@dataclass(frozen=True)
+class _Angle(Quantity):
+    """An angle within one turn, so that degrees given as bare numbers are noticed."""
+
+    def _check(self, number: float, value: Any) -> None:
+        super()._check(number, value)
+        if abs(number) > _TURN:
+            hint = "" if isinstance(value, str) else f"; write {shown(f'{value:g} deg')}"
+            raise ValueError(f"expected an angle within one turn, got {shown(value)}{hint}.")
+
+
+@lru_cache(maxsize=256)
+def _root(unit: str) -> tuple[float, str]:
+    """Factor and name of pint's root unit. Raises ValueError for an unknown unit."""
+    import pint
+
+    if not _UNIT.fullmatch(unit):
+        raise ValueError(unit)
+    registry = _registry()
+    try:
+        factor, root = registry.get_root_units(registry.parse_units(unit))
+    except (pint.PintError, AssertionError, TypeError, AttributeError) as failure:
+        raise ValueError(unit) from failure
+    return float(factor), str(root)
+
+
+@lru_cache(maxsize=1)
+def _registry() -> Any:
+    """Pint's units and the cent; read from pint's cache where there is a sound one."""
+    from pickle import UnpicklingError
+
+    import pint
+
+    registry: Any
+    try:
+        registry = pint.UnitRegistry(cache_folder=":auto:")
+    except (OSError, EOFError, UnpicklingError):
+        registry = pint.UnitRegistry(cache_folder=None)
+    registry.define("cent = [pitch_interval]")
+    return registry
+
+
+def _exact(factor: float) -> Fraction:
+    """0.001 as 1/1000, so that "356 mm" is the number that 0.356 is."""
+    short = f"{factor:.12g}"
+    return Fraction(short) if isclose(float(short), factor, rel_tol=1e-15) else Fraction(factor)
+
+
+def _positive(quantity: Quantity) -> Quantity:
+    return Quantity(quantity.noun, quantity.unit, quantity.example, Sign.POSITIVE)
+
+
+_LENGTH = Quantity("a length", "m", "356 mm")
+_ANGLE = _Angle("an angle", "rad", "30 deg")
+_AREAL_DENSITY = Quantity("an areal density", "kg/m^2", "0.26 kg/m^2", Sign.NOT_NEGATIVE)
+_LINE_TENSION = Quantity("a tension per length", "N/m", "3 kN/m")
+_BEDDING = Quantity("a bedding", "N/m^3", "1e5 N/m^3", Sign.NOT_NEGATIVE)
+_LINE_STIFFNESS = Quantity("a stiffness per length", "N/m^2", "2e4 N/m^2", Sign.NOT_NEGATIVE)
+_LINE_DENSITY = Quantity("a mass per length", "kg/m", "0.02 kg/m", Sign.NOT_NEGATIVE)
+_FREQUENCY = Quantity("a frequency", "Hz", "440 Hz", Sign.NOT_NEGATIVE)
+_CENTS = Quantity("an interval", "cent", "0.01 cent")
+_DENSITY = Quantity("a density", "kg/m^3", "1390 kg/m^3", Sign.NOT_NEGATIVE)
+_PRESSURE = Quantity("a pressure", "Pa", "101 kPa")
+
+Length: TypeAlias = Annotated[float, _LENGTH]
+PositiveLength: TypeAlias = Annotated[float, _positive(_LENGTH)]
+Point: TypeAlias = tuple[Length, Length]
+Angle: TypeAlias = Annotated[float, _ANGLE]
+ArealDensity: TypeAlias = Annotated[float, _AREAL_DENSITY]
+PositiveArealDensity: TypeAlias = Annotated[float, _positive(_AREAL_DENSITY)]
+LineTension: TypeAlias = Annotated[float, _LINE_TENSION]
+PositiveLineTension: TypeAlias = Annotated[float, _positive(_LINE_TENSION)]
+Bedding: TypeAlias = Annotated[float, _BEDDING]
+LineStiffness: TypeAlias = Annotated[float, _LINE_STIFFNESS]
+PositiveLineStiffness: TypeAlias = Annotated[float, _positive(_LINE_STIFFNESS)]
+LineDensity: TypeAlias = Annotated[float, _LINE_DENSITY]
+Frequency: TypeAlias = Annotated[float, _FREQUENCY]
+PositiveFrequency: TypeAlias = Annotated[float, _positive(_FREQUENCY)]
+Cents: TypeAlias = Annotated[float, _CENTS]
+PositiveCents: TypeAlias = Annotated[float, _positive(_CENTS)]
+Density: TypeAlias = Annotated[float, _DENSITY]
+PositiveDensity: TypeAlias = Annotated[float, _positive(_DENSITY)]
+Pressure: TypeAlias = Annotated[float, _PRESSURE]
