@@ -1,0 +1,83 @@
+"""The command ``check``: what a study would solve, in a few lines."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from membrane.plugins.options import plain
+from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support, Tension
+from membrane.study import read_study
+
+
+def describe_study(file: Path) -> str:
+    """The lines that ``membrane check`` prints. Raises StudyError."""
+    study = read_study(file)
+    pairs = [pair for pairs in (_shapes(study), _physics(study), _wanted(study)) for pair in pairs]
+    width = max(len(label) for label, _ in pairs)
+    return "\n".join(f"{label:<{width}}  {text}" for label, text in pairs)
+
+
+def _shapes(study: Study) -> list[tuple[str, str]]:
+    patches = [(f"patch {patch.name}", _patch(patch)) for patch in study.patches]
+    holes = [(f"hole {hole.name}", _shape(hole.shape)) for hole in study.holes]
+    title = [("title", study.title)] if study.title else []
+    return [*title, ("outline", _shape(study.outline)), *patches, *holes]
+
+
+def _physics(study: Study) -> list[tuple[str, str]]:
+    head = study.head
+    bed = f", bedding {head.bedding:g} N/m^3" if head.bedding else ""
+    text = f"areal density {head.areal_density:g} kg/m^2, {_tension(head.tension)}{bed}"
+    terms = [(f"term {name}", _options(options)) for name, options in study.terms.items()]
+    edges = [(f"edge {name}", _edge(edge)) for name, edge in study.edges.items()]
+    return [("head", text), *terms, *edges]
+
+
+def _wanted(study: Study) -> list[tuple[str, str]]:
+    products = ", ".join(study.products.write) or "the summary only"
+    return [("modes", _modes(study.modes)), ("products", products)]
+
+
+def _shape(shape: Shape) -> str:
+    x, y = shape.at
+    at = f", at ({x:g}, {y:g}) m" if shape.at != (0.0, 0.0) else ""
+    turned = f", turned by {shape.rotate:g} rad" if shape.rotate else ""
+    return f"{shape.plugin}: {_options(shape.options)}{at}{turned}"
+
+
+def _options(options: object) -> str:
+    pairs = plain(options).items()
+    return ", ".join(f"{key} {_value(value)}" for key, value in pairs) or "no options"
+
+
+def _value(value: object) -> str:
+    if isinstance(value, list):
+        return f"[{', '.join(_value(item) for item in value)}]"
+    return f"{value:g}" if isinstance(value, float) else str(value)
+
+
+def _patch(patch: Patch) -> str:
+    parts = [
+        patch.areal_density is not None and f"areal density {patch.areal_density:g} kg/m^2",
+        patch.added_density is not None and f"added density {patch.added_density:g} kg/m^2",
+        patch.tension is not None and _tension(patch.tension),
+        patch.bedding is not None and f"bedding {patch.bedding:g} N/m^3",
+    ]
+    return "; ".join([_shape(patch.shape), *(part for part in parts if part)])
+
+
+def _tension(tension: Tension) -> str:
+    parts = ", ".join(f"{part.key} {part.magnitude:g}".strip() for part in tension.parts)
+    return f"tension {parts} N/m"
+
+
+def _edge(edge: Edge) -> str:
+    stiffness = f", {edge.stiffness:g} N/m^2" if edge.support is Support.ELASTIC else ""
+    mass = f", with {edge.mass:g} kg/m" if edge.mass else ""
+    return f"{edge.support}{stiffness}{mass}"
+
+
+def _modes(modes: ModesWanted) -> str:
+    which = f"{modes.count} lowest" if modes.up_to is None else f"all up to {modes.up_to:g} Hz"
+    degree = f", degree {modes.degree}" if modes.degree else ""
+    return f"{which}, to {modes.accuracy:g} cent, by {modes.eigensolver}{degree}"
