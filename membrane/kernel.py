@@ -52,6 +52,7 @@ class Kernel:
     def __init__(self, gmsh: Any, geometry: Any) -> None:
         self._gmsh = gmsh
         self.geometry = geometry
+        self._stop: KeyboardInterrupt | None = None
 
     @classmethod
     @contextmanager
@@ -210,6 +211,8 @@ class Kernel:
         self._gmsh.model.mesh.clear()
         with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
             self._gmsh.model.mesh.generate(2)
+        if self._stop:
+            raise self._stop
         triangles, face = self._triangles(outline)
         segments, curve, parameters = self._segments(outline)
         used, corners = np.unique(triangles, return_inverse=True)
@@ -258,7 +261,11 @@ class Kernel:
         nearby = size_map(self, along, self._joined(along), bend)
 
         def size(dim: int, tag: int, x: float, y: float, z: float, default: float) -> float:
-            return min(nearby.at(x, y), wanted[tag] if dim == 2 else default)
+            try:
+                return min(nearby.at(x, y), wanted[tag] if dim == 2 else default)
+            except KeyboardInterrupt as stop:  # which gmsh would swallow
+                self._stop = stop
+                return default
 
         self._gmsh.model.mesh.setSizeCallback(size)
 

@@ -252,3 +252,15 @@ def test_a_vertex_off_its_curve_is_found(monkeypatch):
         monkeypatch.setattr(Kernel, "evaluate", shifted)
         with pytest.raises(MeshError, match=r"are 1.0e-06 m apart"):
             kernel.triangulate(outline, {"head": 0.5})
+
+
+def test_an_interrupt_while_sizes_are_asked_for_is_not_lost(monkeypatch):
+    def interrupted(self, x, y):
+        raise KeyboardInterrupt
+
+    with Kernel.session() as kernel:
+        outline = draw(kernel, study(disc(2.0)))
+        monkeypatch.setattr("membrane.sizes.SizeMap.at", interrupted)
+        monkeypatch.setattr("membrane.sizes.thinned", lambda sizes: sizes)
+        with pytest.raises(KeyboardInterrupt):
+            kernel.triangulate(outline, {"head": 0.5})

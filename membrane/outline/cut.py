@@ -14,7 +14,7 @@ _ROUNDING = 1e-7
 # Area that a cut may gain or lose, as a share of the outline's.
 _LOST = 1e-9
 # Square metres; the kernel takes points closer than 1e-7 m for one.
-_SMALLEST = 1e-8
+_SMALLEST = 5e-9
 
 
 @dataclass(frozen=True)

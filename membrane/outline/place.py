@@ -39,7 +39,7 @@ def place(kernel: Kernel, shape: Shape) -> Placed:
 
 def _tag(drawn: Any, dim: int, plugin: str) -> int:
     """The kernel's tag of a pygmsh entity."""
-    found, tag = getattr(drawn, "dim_tag", (None, None))
+    found, tag = getattr(drawn, "dim_tag", (None, 0))
     if found != dim:
         kind = "surface" if dim == 2 else "curve"
         raise OutlineError(f"The shape {plugin} hands back something that is not a {kind}.")

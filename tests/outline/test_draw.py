@@ -127,7 +127,7 @@ def test_the_outline_itself_may_be_turned_and_moved():
     np.testing.assert_allclose(points["right"][1], 2.4, atol=1e-12)
 
 
-@pytest.mark.parametrize("scale", [1e-4, 0.3, 100.0])
+@pytest.mark.parametrize("scale", [5e-5, 1e-4, 0.3, 100.0])
 def test_cuts_are_exact_at_any_scale(scale):
     patches = {"a": disc(scale, 0.2 * scale), "b": box(0.3 * scale, 0.2 * scale, 0, 0, 0.5)}
     outline = drawn(disc(2 * scale), patches, {"port": disc(0.1 * scale, -0.6 * scale)})
