@@ -31,8 +31,8 @@ class Bend:
     growth : how much longer an edge may be per length away from a shorter one
     """
 
-    per_circle: float = 8.0
-    per_gap: float = 1.5
+    per_circle: float = 10.0
+    per_gap: float = 1.0
     growth: float = 0.7
 
     def closer(self, factor: float) -> Bend:

@@ -18,8 +18,8 @@ from tests.reference.cases import CASES
 SPECTRA = json.loads(Path(__file__).with_name("spectra.json").read_text())["cases"]
 WANTED = 20
 
-SMOOTH = 1e-8
-SINGULAR = 1e-7
+SMOOTH = 1e-9
+SINGULAR = 1e-8
 """Bars for the relative error of an eigenvalue, with no mesh or degree option set."""
 
 AT_REENTRANT_CORNERS = {"sector270_fixed", "lshape_fixed", "gww1_fixed", "gww2_fixed"}
