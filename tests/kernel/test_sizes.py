@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from membrane.sizes import Bend, SizeMap, size_map, thinned
+from membrane.kernel.sizes import Bend, SizeMap, size_map, thinned
 
 
 class Circles:

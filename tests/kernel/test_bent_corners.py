@@ -2,7 +2,7 @@
 
 import numpy as np
 
-from membrane.bent_corners import spoilt
+from membrane.kernel.bent_corners import spoilt
 from membrane.records.raw_mesh import RawMesh
 
 

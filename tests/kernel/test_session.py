@@ -17,7 +17,7 @@ from scipy.special import ellipe
 from membrane.errors import MeshError
 from membrane.kernel import Kernel
 from membrane.outline import draw
-from membrane.sizes import Bend
+from membrane.kernel.sizes import Bend
 from tests.outline.studies import box, disc, shape, study
 
 LOADED = study(
@@ -106,7 +106,7 @@ def test_options_do_not_leak_from_one_session_to_the_next():
 
 COUNT = """
 import gmsh
-from tests.test_kernel import meshed, study, disc
+from tests.kernel.test_session import meshed, study, disc
 print(meshed(study(disc(2.0)), 0.4)[1].size)
 gmsh.initialize([], interruptible=False)
 print(gmsh.option.getNumber("Mesh.MeshSizeFactor"))
@@ -260,7 +260,7 @@ def test_an_interrupt_while_sizes_are_asked_for_is_not_lost(monkeypatch):
 
     with Kernel.session() as kernel:
         outline = draw(kernel, study(disc(2.0)))
-        monkeypatch.setattr("membrane.sizes.SizeMap.at", interrupted)
-        monkeypatch.setattr("membrane.sizes.thinned", lambda sizes: sizes)
+        monkeypatch.setattr("membrane.kernel.sizes.SizeMap.at", interrupted)
+        monkeypatch.setattr("membrane.kernel.sizes.thinned", lambda sizes: sizes)
         with pytest.raises(KeyboardInterrupt):
             kernel.triangulate(outline, {"head": 0.5})
