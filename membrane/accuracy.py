@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from membrane.pitch import cents_between
+from membrane.pitch import CENTS_PER_OCTAVE
 
 from membrane.records.arrays import Floats
 from membrane.records.modes import Modes
@@ -38,6 +38,6 @@ def estimate(fine: Modes, coarse: Modes, wanted: float) -> Estimate:
     known = coarse.frequencies[: len(fine.eigenvalues)]
     moving = fine.frequencies > 0.0
     cents = np.zeros(len(moving))
-    apart = cents_between(fine.frequencies[moving], known[moving])
+    apart = CENTS_PER_OCTAVE * np.log2(fine.frequencies[moving] / known[moving])
     cents[moving] = np.maximum(np.abs(apart), ROUNDING)
     return Estimate(cents, float(2 * cents.max() / wanted))

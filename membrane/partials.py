@@ -5,15 +5,13 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 import numpy as np
-from membrane.pitch import note
+from membrane.pitch import CENTS_PER_OCTAVE, note
 
 from membrane.errors import StudyError
 from membrane.records.arrays import Floats
 from membrane.records.modes import Modes
 from membrane.records.spectrum import NodalPattern, Partial
 from membrane.records.study import ModesWanted
-
-CENTS = 1200.0
 
 
 def partials(
@@ -28,9 +26,8 @@ def partials(
     reference = _reference(frequencies, wanted.ratio_to)
     rows = []
     for index, (frequency, cents) in enumerate(zip(frequencies, error, strict=True)):
-        spread = 2.0 ** (cents / CENTS)
-        moves = frequency > 0.0
-        name, above = note(frequency, wanted.reference_pitch) if moves else (None, None)
+        spread = 2.0 ** (cents / CENTS_PER_OCTAVE)
+        name, above = note(float(frequency), wanted.reference_pitch)
         rows.append(
             Partial(
                 number=index + 1,
@@ -38,7 +35,7 @@ def partials(
                 low=float(frequency / spread),
                 high=float(frequency * spread),
                 bracket="estimated",
-                bracket_cents=float(2 * cents) if moves else None,
+                bracket_cents=None if name is None else float(2 * cents),
                 ratio=float(frequency / reference),
                 note=name,
                 note_cents=above,
