@@ -18,7 +18,9 @@ from typing import Annotated, Any, TypeAlias
 from membrane.wording import nearest, shown
 
 _NUMBER_AND_UNIT = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*")
-_UNIT = re.compile(r"[^\W\d_][\w °·*/^().+-]*|°")
+_NAME_AND_POWER = r"(?:[^\W\d_]\w*|°)(?:(?:\^|\*\*)-?\d)?"
+_UNIT = re.compile(rf"{_NAME_AND_POWER}(?:(?:\s*[*·/]\s*|\s+){_NAME_AND_POWER}){{0,9}}")
+_LONGEST_UNIT = 60
 _TURN = 2.0 * pi * (1.0 + 1e-9)
 
 _COMMON_UNITS = (
@@ -117,10 +119,13 @@ class Quantity:
         if not isfinite(number):
             raise ValueError(self._expected(f"got {shown(value)}, which is not finite."))
         if not self.sign.allows(number):
-            raise ValueError(self._expected(f"got {shown(value)}."))
+            wanted = self.sign.worded(self.noun)
+            raise ValueError(
+                f"expected {wanted} such as {shown(self.example)}, got {shown(value)}."
+            )
 
     def _expected(self, reason: str) -> str:
-        return f"expected {self.sign.worded(self.noun)} such as {shown(self.example)}, {reason}"
+        return f"expected {self.noun} such as {shown(self.example)}, {reason}"
 
 
 @dataclass(frozen=True)
@@ -139,12 +144,12 @@ def _root(unit: str) -> tuple[float, str]:
     """Factor and name of pint's root unit. Raises ValueError for an unknown unit."""
     import pint
 
-    if not _UNIT.fullmatch(unit):
+    if len(unit) > _LONGEST_UNIT or not _UNIT.fullmatch(unit):
         raise ValueError(unit)
     registry = _registry()
     try:
         factor, root = registry.get_root_units(registry.parse_units(unit))
-    except (pint.PintError, AssertionError, TypeError, AttributeError) as failure:
+    except (pint.PintError, AssertionError, TypeError, ArithmeticError) as failure:
         raise ValueError(unit) from failure
     return float(factor), str(root)
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from pathlib import Path
 
-from membrane.plugins.options import plain
+from membrane.plugins.options import plain, unit_of
 from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support, Tension
 from membrane.study import read_study
 
@@ -47,7 +47,8 @@ def _shape(shape: Shape) -> str:
 
 def _options(options: object) -> str:
     pairs = plain(options).items()
-    return ", ".join(f"{key} {_value(value)}" for key, value in pairs) or "no options"
+    worded = (f"{key} {_value(value)} {unit_of(options, key)}".rstrip() for key, value in pairs)
+    return ", ".join(worded) or "no options"
 
 
 def _value(value: object) -> str:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import MISSING, Field, fields, is_dataclass
 from enum import Enum
 from functools import lru_cache
@@ -12,21 +12,28 @@ from typing import Annotated, Any, TypeVar, Union, get_args, get_origin, get_typ
 
 from membrane.errors import PluginError, Problem, StudyError
 from membrane.plugins.sentences import sentence
-from membrane.wording import nearest
+from membrane.units import Quantity
+from membrane.wording import nearest, shown
 
 T = TypeVar("T")
 
 
-def read_options(kind: type[T], keys: Mapping[str, Any]) -> T:
+def read_options(kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] = ()) -> T:
     """An instance of the dataclass ``kind`` from a table of a study.
+
+    beside : other keys of the table, which an unknown key may have been meant for
 
     Unknown keys, missing keys and bad values are all reported in one StudyError, with
     paths relative to the table; so is a ValueError of the dataclass's own
     ``__post_init__``. Raises PluginError where ``kind`` is not a dataclass with hints.
     """
-    known = _hints(kind)  # type: ignore[arg-type]  # every class is hashable
-    problems = [_unknown(key, tuple(known)) for key in keys if key not in known]
-    problems += [_missing(f) for f in _fields(kind) if f.name not in keys and _required(f)]
+    known = _hints(kind)
+    problems = [_unknown(key, (*known, *beside)) for key in keys if key not in known]
+    problems += [
+        _missing(f.name, known[f.name])
+        for f in _fields(kind)
+        if f.name not in keys and _required(f)
+    ]
     values: dict[str, Any] = {}
     for key in known.keys() & keys.keys():
         problems += _read_into(values, key, known[key], keys[key])
@@ -52,6 +59,12 @@ def plain(options: Any) -> Any:
     if isinstance(options, list | tuple | set | frozenset):
         return [plain(value) for value in options]
     return options
+
+
+def unit_of(options: Any, name: str) -> str:
+    """The SI unit of a field of options, "" where it has none."""
+    quantity = _quantity(_hints(type(options))[name])
+    return quantity.unit if quantity else ""
 
 
 def _read_into(values: dict[str, Any], key: str, hint: Any, value: Any) -> list[Problem]:
@@ -85,7 +98,6 @@ def _strict(hint: Any) -> Any:
     return hint
 
 
-@lru_cache(maxsize=256)
 def _hints(kind: type) -> dict[str, Any]:
     """Field name -> type, with its units, for the fields that a study can set."""
     if not (isinstance(kind, type) and is_dataclass(kind)):
@@ -105,8 +117,15 @@ def _required(field: Field[Any]) -> bool:
     return field.default is MISSING and field.default_factory is MISSING
 
 
-def _missing(field: Field[Any]) -> Problem:
-    return Problem(field.name, "is missing; give it a value.")
+def _missing(name: str, hint: Any) -> Problem:
+    quantity = _quantity(hint)
+    example = f" such as {shown(quantity.example)}" if quantity else ""
+    return Problem(name, f"is missing; give it a value{example}.")
+
+
+def _quantity(hint: Any) -> Quantity | None:
+    found = (item for item in getattr(hint, "__metadata__", ()) if isinstance(item, Quantity))
+    return next(found, None)
 
 
 def _unknown(key: str, known: tuple[str, ...]) -> Problem:

@@ -17,7 +17,6 @@ _EXPECTED = {
     "list_type": "expected a list",
     "dict_type": "expected a table",
     "dataclass_type": "expected a table",
-    "missing": "is missing; give it a value",
 }
 
 
@@ -39,7 +38,7 @@ def _sentence(error: Mapping[str, Any]) -> str:
     if kind == "enum" or kind == "literal_error":
         return f"expected {_choices(context['expected'])}, got {shown(given)}."
     if kind == "missing":
-        return "is missing; give as many numbers as are expected."
+        return "is missing; give it a value."
     if kind == "too_long":
         return f"expected {context['max_length']} entries, got {context['actual_length']}."
     if kind == "too_short":

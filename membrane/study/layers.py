@@ -30,12 +30,6 @@ class _HeadKeys:
 class _Name:
     name: str
 
-    def __post_init__(self) -> None:
-        if not _NAME.fullmatch(self.name):
-            raise ValueError(
-                f"expected a name of letters, digits, _ and -, got {shown(self.name)}."
-            )
-
 
 @dataclass(frozen=True)
 class _PatchKeys:
@@ -50,7 +44,7 @@ class _PatchKeys:
 
 def read_head(table: Table) -> Head | None:
     """The head's own table."""
-    keys = table.read(_HeadKeys, table.without(KEY))
+    keys = table.read(_HeadKeys, table.without(KEY), (KEY,))
     if KEY not in table.keys:
         table.refuse(KEY, 'is missing; give it a value such as "3 kN/m".')
         return None
@@ -86,6 +80,10 @@ def read_hole(table: Table, base: Path) -> tuple[Hole | None, Edge | None]:
 def read_name(table: Table) -> str | None:
     """The name of a patch or a hole."""
     keys = table.read(_Name, table.only(("name",)))
+    if keys is not None and not _NAME.fullmatch(keys.name):
+        given = shown(keys.name)
+        table.refuse("name", f"expected a name of letters, digits, _ and -, got {given}.")
+        return None
     return None if keys is None else keys.name
 
 

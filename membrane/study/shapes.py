@@ -46,9 +46,10 @@ def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | No
     name = None if which is None else _plugin(table, which, base)
     if name is None:
         return None
+    others = (*_OWN_KEYS, *besides)
     try:
         module = plugins.load("outline", name)
-        options = table.read(module.Options, table.without(*_OWN_KEYS, *besides))
+        options = table.read(module.Options, table.without(*others), others)
     except PluginError as error:
         table.refuse(_key(which), str(error))
         return None

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any, TypeVar
 
@@ -30,10 +30,13 @@ class Table:
         """Note that something is wrong with a key of this table."""
         self.problems.add(joined(self.path, key), sentence)
 
-    def read(self, kind: type[T], keys: Mapping[str, Any]) -> T | None:
-        """A dataclass from some of the keys; None where one of them is wrong."""
+    def read(self, kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] = ()) -> T | None:
+        """A dataclass from some of the keys; None where one of them is wrong.
+
+        beside : the other keys that the table may have
+        """
         try:
-            found = read_options(kind, keys)
+            found = read_options(kind, keys, beside)
         except StudyError as error:
             self.problems.add_all(self.path, error.problems)
             return None

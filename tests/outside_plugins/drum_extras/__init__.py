@@ -1,0 +1,1 @@
+"""An outside package with one plugin of each kind."""
