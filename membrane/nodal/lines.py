@@ -1,0 +1,67 @@
+"""Nodal lines: crossings of a mode's sign joined into polylines on the curved head."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from membrane.nodal.crossings import find_crossings
+from membrane.nodal.join import chains
+from membrane.nodal.roots import refine
+from membrane.nodal.slopes import with_slopes
+from membrane.records.arrays import Floats, Ints
+from membrane.records.mesh import Mesh
+from membrane.records.pencil import Space
+from membrane.sides import lie_on
+from membrane.subdivision import Subdivision
+from membrane.triangle import EDGES, shapes
+
+SAME = 1e-9
+"""Points of a line nearer than this share of their triangle's size are one point."""
+
+
+def trace(
+    space: Space, vectors: Floats, divided: Subdivision, values: Floats, fixed: Sequence[str]
+) -> list[tuple[Floats, ...]]:
+    """The nodal lines of each mode: polylines (2, n) metres, closed ones end where they start.
+
+    values : (n_points, n) of the modes at the points of ``divided``
+    Every point lies on the zero set of the mode's own polynomial. Fixed edges are no
+    nodal lines; a line that ends there ends where the slope of the head changes sign.
+    """
+    held = lie_on(space.mesh, fixed)
+    signed = with_slopes(space, vectors, divided, values, held)
+    crossings = find_crossings(divided, signed, np.abs(values).max(axis=0, initial=0.0))
+    reference = refine(space, vectors, divided, signed, held, crossings)
+    points = _positions(space.mesh, crossings.triangle, reference)
+    sizes = _sizes(space.mesh)[crossings.triangle]
+    lines: list[list[Floats]] = [[] for _ in range(vectors.shape[1])]
+    for chain in chains(crossings.segments, crossings.mode.size):
+        line = _cleaned(points[:, chain], sizes[chain])
+        # a fixed corner or a point where lines cross sheds specks smaller than the lattice
+        speck = sizes[chain].min() / divided.lattice.parts
+        if np.hypot(*np.diff(line)).sum() > speck:
+            lines[crossings.mode[chain[0]]].append(line)
+    return [tuple(found) for found in lines]
+
+
+def _positions(mesh: Mesh, triangle: Ints, reference: Floats) -> Floats:
+    phi, _ = shapes(reference, mesh.order)
+    return np.asarray(np.einsum("din,in->dn", mesh.nodes[:, :, triangle], phi))
+
+
+def _sizes(mesh: Mesh) -> Floats:
+    """(n_triangles,) the shortest distance between two vertices of each triangle, metres."""
+    corners = mesh.vertices[:, mesh.triangles]
+    lengths = [np.hypot(*(corners[:, a] - corners[:, b])) for a, b in EDGES]
+    return np.asarray(np.min(lengths, axis=0))
+
+
+def _cleaned(line: Floats, sizes: Floats) -> Floats:
+    """The line without points that repeat the one before; its two ends stay."""
+    apart = np.hypot(*np.diff(line)) > SAME * sizes[1:]
+    keep = np.append(True, apart)
+    cleaned = line[:, keep]
+    cleaned[:, -1] = line[:, -1]
+    return cleaned
