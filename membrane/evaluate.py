@@ -14,6 +14,9 @@ from membrane.triangle import shapes
 INSIDE = 1e-9
 """How far outside its triangle, in reference coordinates, rounding may put a point."""
 
+SETTLED = 1e-13
+"""Newton's method rests where a step is below this, in reference coordinates."""
+
 
 @dataclass(frozen=True)
 class Located:
@@ -79,11 +82,14 @@ def _candidates(mesh: Mesh, points: Floats, chunk: int = 4096) -> tuple[Ints, In
 def invert(mesh: Mesh, triangle: Ints, points: Floats, steps: int = 25) -> Floats:
     """Newton's method for the reference coordinates; NaN-free, diverged ones lie far out."""
     reference = np.full(points.shape, 1 / 3)
+    moving = np.arange(points.shape[1])
     for _ in range(steps):
-        here, jacobian = _map(mesh, triangle, reference)
-        step = np.einsum("kdm,dm->km", _inverse(jacobian), points - here)
-        reference = np.clip(reference + step, -1.0, 2.0)
-        if np.abs(step).max(initial=0.0) < 1e-14:
+        here, jacobian = _map(mesh, triangle[moving], reference[:, moving])
+        step = np.einsum("kdm,dm->km", _inverse(jacobian), points[:, moving] - here)
+        before = reference[:, moving]
+        reference[:, moving] = np.clip(before + step, -1.0, 2.0)
+        moving = moving[np.abs(reference[:, moving] - before).max(axis=0) > SETTLED]
+        if moving.size == 0:
             break
     return reference
 

@@ -24,7 +24,7 @@ def chains(segments: Ints, count: int) -> list[Ints]:
 
 def _neighbours(segments: Ints, count: int) -> list[list[int]]:
     near: list[list[int]] = [[] for _ in range(count)]
-    for a, b in segments.T.tolist():
+    for a, b in zip(*segments.tolist(), strict=True):
         near[a].append(b)
         near[b].append(a)
     return near

@@ -23,6 +23,8 @@ DOMINANT = 0.9
 SMALL = 1e-3
 """Where the radial profile stays below this share of its maximum, its sign means nothing."""
 
+MOST_ANGLES = 200
+
 
 @dataclass(frozen=True)
 class Label:
@@ -84,8 +86,8 @@ def _centre(points: Floats) -> Floats:
 def _angular_spectra(modes: Modes, ring: _Ring) -> tuple[Floats, Floats]:
     """Fourier coefficients (n, n_radii, n_orders) on circles of the radii (n_radii,)."""
     count = modes.vectors.shape[1]
-    most = int(2 * np.sqrt(count)) + 2
-    n_radii, n_angles = 12 + 2 * most, 32 + 4 * most
+    n_radii = 8 + int(2 * np.sqrt(count))
+    n_angles = min(12 + count, MOST_ANGLES)  # a narrow annulus has up to count / 2 diameters
     radii = ring.inner + (ring.outer - ring.inner) * (np.arange(n_radii) + 0.5) / n_radii
     turn = np.exp(2j * np.pi * np.arange(n_angles) / n_angles)
     grid = np.outer(radii, turn).ravel()
