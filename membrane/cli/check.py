@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from pathlib import Path
+from typing import Any
 
 from membrane.plugins.options import plain, unit_of
-from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support, Tension
+from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support
 from membrane.study import read_study
 
 
@@ -18,7 +20,9 @@ def describe_study(file: Path) -> str:
 
 
 def _shapes(study: Study) -> list[tuple[str, str]]:
-    patches = [(f"patch {patch.name}", _patch(patch)) for patch in study.patches]
+    sources = study.source.get("patches", [])
+    pairs = zip(study.patches, sources, strict=True)
+    patches = [(f"patch {patch.name}", _patch(patch, source)) for patch, source in pairs]
     holes = [(f"hole {hole.name}", _shape(hole.shape)) for hole in study.holes]
     title = [("title", study.title)] if study.title else []
     return [*title, ("outline", _shape(study.outline)), *patches, *holes]
@@ -27,7 +31,7 @@ def _shapes(study: Study) -> list[tuple[str, str]]:
 def _physics(study: Study) -> list[tuple[str, str]]:
     head = study.head
     bed = f", bedding {head.bedding:g} N/m^3" if head.bedding else ""
-    text = f"areal density {head.areal_density:g} kg/m^2, {_tension(head.tension)}{bed}"
+    text = f"areal density {head.areal_density:g} kg/m^2, {_tension(study.source['head'])}{bed}"
     terms = [(f"term {name}", _options(options)) for name, options in study.terms.items()]
     edges = [(f"edge {name}", _edge(edge)) for name, edge in study.edges.items()]
     return [("head", text), *terms, *edges]
@@ -57,19 +61,23 @@ def _value(value: object) -> str:
     return f"{value:g}" if isinstance(value, float) else str(value)
 
 
-def _patch(patch: Patch) -> str:
+def _patch(patch: Patch, source: Mapping[str, Any]) -> str:
     parts = [
         patch.areal_density is not None and f"areal density {patch.areal_density:g} kg/m^2",
         patch.added_density is not None and f"added density {patch.added_density:g} kg/m^2",
-        patch.tension is not None and _tension(patch.tension),
+        patch.tension is not None and _tension(source),
         patch.bedding is not None and f"bedding {patch.bedding:g} N/m^3",
     ]
     return "; ".join([_shape(patch.shape), *(part for part in parts if part)])
 
 
-def _tension(tension: Tension) -> str:
-    parts = ", ".join(f"{part.key} {part.magnitude:g}".strip() for part in tension.parts)
-    return f"tension {parts} N/m"
+def _tension(source: Mapping[str, Any]) -> str:
+    tension = source["tension"]
+    if not isinstance(tension, Mapping):
+        return f"tension {tension:g} N/m"
+    units = {"angle": "rad"}
+    parts = (f"{key} {number:g} {units.get(key, 'N/m')}" for key, number in tension.items())
+    return f"tension {', '.join(parts)}"
 
 
 def _edge(edge: Edge) -> str:

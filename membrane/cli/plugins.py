@@ -7,6 +7,9 @@ from rich.table import Table
 
 from membrane import plugins
 
+_UNBROKEN = 1000
+"""Columns where nobody looks: a row then stays one line, for grep."""
+
 
 def print_plugins() -> None:
     """Print all plugins; none of them is imported. Raises PluginError for a clash."""
@@ -14,4 +17,6 @@ def print_plugins() -> None:
     for kind in plugins.GROUPS:
         for name, plugin in plugins.registered(kind).items():
             table.add_row(kind, name, plugin.package, plugins.describe(kind, name))
-    Console(soft_wrap=not Console().is_terminal).print(table)
+    terminal = Console()
+    console = terminal if terminal.is_terminal else Console(width=_UNBROKEN)
+    console.print(table)

@@ -62,9 +62,14 @@ def plain(options: Any) -> Any:
 
 
 def unit_of(options: Any, name: str) -> str:
-    """The SI unit of a field of options, "" where it has none."""
-    quantity = _quantity(_hints(type(options))[name])
-    return quantity.unit if quantity else ""
+    """The SI unit of a field of options or of what it lists, "" where it has none."""
+    return _unit(_hints(type(options))[name])
+
+
+def _unit(hint: Any) -> str:
+    quantity = _quantity(hint)
+    inner = (_unit(part) for part in get_args(hint))
+    return quantity.unit if quantity else next(filter(None, inner), "")
 
 
 def _read_into(values: dict[str, Any], key: str, hint: Any, value: Any) -> list[Problem]:
