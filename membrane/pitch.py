@@ -2,10 +2,7 @@
 
 from __future__ import annotations
 
-import numpy as np
-from numpy.typing import ArrayLike
-
-from membrane.records.arrays import Floats
+from math import log2
 
 CENTS_PER_OCTAVE = 1200.0
 A4 = 440.0
@@ -15,9 +12,9 @@ _NAMES = ("C", "C#", "D", "D#", "E", "F", "F#", "G", "G#", "A", "A#", "B")
 _A4_SEMITONES = 4 * 12 + _NAMES.index("A")
 
 
-def cents_between(low: ArrayLike, high: ArrayLike) -> Floats:
-    """The intervals from ``low`` to ``high``, positive frequencies in Hz of any one shape."""
-    return CENTS_PER_OCTAVE * np.log2(np.asarray(high, dtype=float) / np.asarray(low, dtype=float))
+def cents_between(low: float, high: float) -> float:
+    """The interval from ``low`` to ``high``, both positive, Hz; negative where it falls."""
+    return CENTS_PER_OCTAVE * log2(high / low)
 
 
 def note(frequency: float, reference_pitch: float = A4) -> tuple[str, float] | tuple[None, None]:
@@ -28,7 +25,7 @@ def note(frequency: float, reference_pitch: float = A4) -> tuple[str, float] | t
     """
     if frequency <= 0.0:
         return None, None
-    cents = float(cents_between(reference_pitch, frequency))
+    cents = cents_between(reference_pitch, frequency)
     semitones = round(cents / 100.0)
     octave, step = divmod(semitones + _A4_SEMITONES, 12)
     return f"{_NAMES[step]}{octave}", cents - 100.0 * semitones

@@ -50,3 +50,14 @@ def nodes_on(mesh: Mesh, on: Bools) -> Floats:
         local = [*ends, *range(3 + side * inner, 3 + (side + 1) * inner)]
         found.append(mesh.nodes[:, local][:, :, on[side]].reshape(2, -1))
     return np.hstack(found)
+
+
+def inner_borders(mesh: Mesh) -> Bools:
+    """(3, n_triangles): whether a side parts two regions, marked in one of its triangles."""
+    numbers = sides(mesh).of_triangle
+    region = np.broadcast_to(mesh.region, numbers.shape)
+    low, high = np.full(numbers.max() + 1, region.max()), np.zeros(numbers.max() + 1, dtype=int)
+    np.minimum.at(low, numbers, region)
+    np.maximum.at(high, numbers, region)
+    parting = (low < high)[numbers]
+    return np.asarray(parting & (region == low[numbers]))

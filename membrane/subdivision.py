@@ -6,11 +6,11 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from membrane.records.arrays import Floats, Ints
+from membrane.records.arrays import Bools, Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.pencil import Space
 from membrane.sides import sides
-from membrane.triangle import Lattice, lattice, shapes
+from membrane.triangle import EDGES, Lattice, lattice, shapes
 
 
 @dataclass(frozen=True)
@@ -31,6 +31,13 @@ class Subdivision:
     def triangles(self) -> Ints:
         """(3, n) small triangles in global numbers, those of each triangle together."""
         return np.moveaxis(self.numbers[self.lattice.triangles], 1, 2).reshape(3, -1)
+
+    def along(self, on: Bools) -> Ints:
+        """(parts + 1, m) numbers of the points along the sides marked in ``on`` (3, n)."""
+        corners, on_sides, _ = _places(self.lattice)
+        chains = [[corners[a], *on_sides[side], corners[b]] for side, (a, b) in enumerate(EDGES)]
+        numbers = [self.numbers[chain][:, on[side]] for side, chain in enumerate(chains)]
+        return np.hstack(numbers)
 
     def positions(self, mesh: Mesh) -> Floats:
         """(2, count) metres, on the curved mesh."""

@@ -7,7 +7,7 @@ from functools import cache
 
 import numpy as np
 
-from membrane.records.arrays import Floats, Ints
+from membrane.records.arrays import Bools, Floats, Ints
 from membrane.subdivision import Subdivision
 from membrane.triangle import lattice
 
@@ -73,7 +73,7 @@ def find_crossings(divided: Subdivision, values: Floats, largest: Floats) -> Cro
     return Crossings(mode, triangle, edges, numbers.reshape(2, -1))
 
 
-def _crossed(corners: Floats, cell: Ints, parts: int) -> Ints:
+def _crossed(corners: Bools, cell: Ints, parts: int) -> Ints:
     """(2, n): the two crossed edges of small triangles whose corners differ in sign."""
     ahead = corners != np.roll(corners, -1, axis=0)
     alone = np.argmax(ahead & np.roll(ahead, 1, axis=0), axis=0)

@@ -4,8 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TypeAlias
 
 import numpy as np
+from numpy.typing import NDArray
 
 from membrane.evaluate import values_at
 from membrane.records.arrays import Floats
@@ -24,6 +26,8 @@ SMALL = 1e-3
 """Where the radial profile stays below this share of its maximum, its sign means nothing."""
 
 MOST_ANGLES = 200
+
+Spectra: TypeAlias = NDArray[np.complex128]
 
 
 @dataclass(frozen=True)
@@ -83,7 +87,7 @@ def _centre(points: Floats) -> Floats:
     return np.asarray(middle + np.array([a, b]))
 
 
-def _angular_spectra(modes: Modes, ring: _Ring) -> tuple[Floats, Floats]:
+def _angular_spectra(modes: Modes, ring: _Ring) -> tuple[Spectra, Floats]:
     """Fourier coefficients (n, n_radii, n_orders) on circles of the radii (n_radii,)."""
     count = modes.vectors.shape[1]
     n_radii = 8 + int(2 * np.sqrt(count))
@@ -96,7 +100,7 @@ def _angular_spectra(modes: Modes, ring: _Ring) -> tuple[Floats, Floats]:
     return np.fft.rfft(np.nan_to_num(values), axis=2), radii
 
 
-def _label(spectrum: Floats, radii: Floats, rim_held: bool) -> Label:
+def _label(spectrum: Spectra, radii: Floats, rim_held: bool) -> Label:
     """The label of one mode from its coefficients (n_radii, n_orders)."""
     energy = radii @ np.abs(spectrum) ** 2
     energy[1:] *= 2.0

@@ -31,10 +31,7 @@ def with_slopes(
 
 def held_points(divided: Subdivision, held: Bools) -> Ints:
     """Global numbers of the lattice points on the sides marked in ``held``."""
-    x, y = divided.lattice.points
-    on_side = np.stack([y == 0.0, np.isclose(x + y, 1.0), x == 0.0])
-    mask = (on_side[:, :, None] & held[:, None, :]).any(axis=0)
-    return np.unique(divided.numbers[mask])
+    return np.unique(divided.along(held))
 
 
 def inward_slopes(points: Floats, degree: int) -> Floats:

@@ -1,0 +1,157 @@
+"""modes.png: every mode in one picture, with its nodal lines, name and pitch."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, Literal
+
+import numpy as np
+
+from membrane.products.sheet import Sheet, lay_out
+from membrane.records.arrays import Floats
+from membrane.records.spectrum import Partial, Spectrum
+from membrane.records.study import Support
+from membrane.sides import inner_borders, lie_on
+from membrane.subdivision import Subdivision, subdivide
+
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
+
+STEM = "modes"
+INK, PENCIL = "#1a1a1a", "#8c8c8c"
+
+
+@dataclass(frozen=True)
+class Options:
+    """How the picture is drawn.
+
+    format : of the file
+    colour_map : a diverging colour map of matplotlib; this one is safe for the colour-blind
+    dpi : dots per inch, of the colours in svg and pdf too
+    """
+
+    format: Literal["png", "svg", "pdf"] = "png"
+    colour_map: str = "RdBu_r"
+    dpi: int = 150
+
+
+def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
+    """Write the picture, small multiples of equal scale on one sheet."""
+    from matplotlib.backends.backend_agg import FigureCanvasAgg
+    from matplotlib.figure import Figure
+
+    mesh = spectrum.modes.space.mesh
+    divided = subdivide(mesh, max(spectrum.modes.space.degree, mesh.order))
+    positions = divided.positions(mesh)
+    sheet = lay_out(positions, len(spectrum.partials))
+    figure = Figure(figsize=sheet.inches, dpi=options.dpi)
+    FigureCanvasAgg(figure)
+    axes = figure.add_axes((0.0, 0.0, 1.0, 1.0))
+    axes.set(xlim=(0.0, sheet.width), ylim=(-sheet.height, 0.0), aspect="equal")
+    axes.axis("off")
+    _draw_shapes(axes, spectrum, divided, positions, sheet, options.colour_map)
+    _draw_edges(axes, spectrum, divided, positions, sheet)
+    _draw_nodal_lines(axes, spectrum, sheet)
+    _write_titles(axes, spectrum, sheet)
+    figure.savefig(folder / f"{STEM}.{options.format}", dpi=options.dpi)
+
+
+def _draw_shapes(
+    axes: Axes,
+    spectrum: Spectrum,
+    divided: Subdivision,
+    positions: Floats,
+    sheet: Sheet,
+    colour_map: str,
+) -> None:
+    """Every mode's displacement as smooth colour, each scaled to its own maximum."""
+    values = divided.values(spectrum.modes.space, spectrum.modes.vectors)
+    values = values / np.abs(values).max(axis=0)
+    count = values.shape[1]
+    points = positions[:, None, :] + sheet.places[:, :, None]
+    offsets = divided.count * np.arange(count)[:, None, None]
+    triangles = (divided.triangles.T[None] + offsets).reshape(-1, 3)
+    axes.tripcolor(
+        *points.reshape(2, -1),
+        values.T.ravel(),
+        triangles=triangles,
+        shading="gouraud",
+        cmap=colour_map,
+        vmin=-1.0,
+        vmax=1.0,
+        rasterized=True,
+    )
+
+
+def _draw_edges(
+    axes: Axes, spectrum: Spectrum, divided: Subdivision, positions: Floats, sheet: Sheet
+) -> None:
+    """Held edges heavy, free edges light, borders of patches thin."""
+    mesh, study = spectrum.modes.space.mesh, spectrum.study
+    held = [name for name in mesh.edges if study.edge(name).support is not Support.FREE]
+    free = [name for name in mesh.edges if name not in held]
+    styles: list[tuple[Any, str, float]] = [
+        (inner_borders(mesh), PENCIL, 0.5),
+        (lie_on(mesh, free), PENCIL, 0.9),
+        (lie_on(mesh, held), INK, 1.4),
+    ]
+    for on, colour, width in styles:
+        lines = np.moveaxis(positions[:, divided.along(on)], 0, -1).swapaxes(0, 1)
+        _add_lines(axes, _repeated(list(lines), sheet), colour, width)
+
+
+def _draw_nodal_lines(axes: Axes, spectrum: Spectrum, sheet: Sheet) -> None:
+    lines = [
+        line.T + place
+        for partial, place in zip(spectrum.partials, sheet.places.T, strict=True)
+        for line in partial.nodal.lines
+    ]
+    _add_lines(axes, lines, INK, 0.8)
+
+
+def _repeated(lines: list[Floats], sheet: Sheet) -> list[Floats]:
+    return [line + place for place in sheet.places.T for line in lines]
+
+
+def _add_lines(axes: Axes, lines: list[Floats], colour: str, width: float) -> None:
+    from matplotlib.collections import LineCollection
+
+    collection = LineCollection(lines, colors=colour, linewidths=width, capstyle="round")
+    axes.add_collection(collection, autolim=False)
+
+
+def _write_titles(axes: Axes, spectrum: Spectrum, sheet: Sheet) -> None:
+    for partial, (x, y) in zip(spectrum.partials, sheet.titles.T, strict=True):
+        first, second = _title(partial)
+        style = {"ha": "center", "color": INK}
+        axes.text(x, y, first, va="bottom", fontsize=sheet.font, fontweight="bold", **style)
+        axes.text(x, y, second, va="top", fontsize=0.85 * sheet.font, **style)
+    left, right = sheet.margin, sheet.width - sheet.margin
+    title = spectrum.study.title or "Untitled"
+    axes.text(left, sheet.head_line, title, fontsize=12, va="center", color=INK)
+    axes.text(
+        right,
+        sheet.head_line,
+        "black lines stay at rest; red and blue move against each other",
+        fontsize=8,
+        ha="right",
+        va="center",
+        color=PENCIL,
+    )
+
+
+def _title(partial: Partial) -> tuple[str, str]:
+    """The (m,n) or the number with the frequency; below, the ratio and the note."""
+    nodal = partial.nodal
+    named = nodal.diameters is not None
+    name = f"({nodal.diameters},{nodal.circles})" if named else f"{partial.number}"
+    return f"{name}  {partial.frequency:.1f} Hz", "   ".join(_pitch(partial))
+
+
+def _pitch(partial: Partial) -> Iterator[str]:
+    if partial.ratio is not None:
+        yield f"{partial.ratio:.3f}"
+    if partial.note is not None and partial.note_cents is not None:
+        yield f"{partial.note} {partial.note_cents:+.0f}"
