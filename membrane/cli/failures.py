@@ -24,7 +24,7 @@ def failures_told(ctx: typer.Context, study: Path | None = None) -> Iterator[Non
         yield
     except KeyboardInterrupt:
         raise typer.Exit(INTERRUPTED) from None
-    except typer.Exit:
+    except (typer.Exit, BrokenPipeError):  # a reader such as head may close the pipe
         raise
     except Exception as error:  # the one place where any error at all becomes a sentence
         if ctx.find_root().params["traceback"]:

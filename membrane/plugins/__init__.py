@@ -2,6 +2,7 @@
 
 from membrane.plugins.registry import (
     GROUPS,
+    OWN_PACKAGE,
     Plugin,
     describe,
     find,
@@ -11,4 +12,14 @@ from membrane.plugins.registry import (
     registered,
 )
 
-__all__ = ["GROUPS", "Plugin", "describe", "find", "load", "names", "package_of", "registered"]
+__all__ = [
+    "GROUPS",
+    "OWN_PACKAGE",
+    "Plugin",
+    "describe",
+    "find",
+    "load",
+    "names",
+    "package_of",
+    "registered",
+]

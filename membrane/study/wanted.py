@@ -72,9 +72,7 @@ def read_products(table: Table) -> ProductsWanted | None:
     for name in table.without("write"):
         if name not in keys.write:
             table.refuse(name, f"is not written; add {shown(name)} to products.write.")
-    needed = [n for n in dict.fromkeys(keys.write) if n in table.keys or n not in _own_products()]
-    found = {name: _options(table, "product", name) for name in needed}
-    table.resolved["write"] = table.resolved.pop("write")
+    found = {name: _options(table, "product", name) for name in dict.fromkeys(keys.write)}
     return ProductsWanted(keys.write, found)
 
 
@@ -151,13 +149,9 @@ def _options(table: Table, kind: str, name: str) -> Any:
         return None
 
 
-def _own_products() -> tuple[str, ...]:
-    return tuple(
-        n for n, plugin in plugins.registered("product").items() if plugin.package == "membrane"
-    )
-
-
 def _own_terms() -> tuple[str, ...]:
     return tuple(
-        name for name, plugin in plugins.registered("term").items() if plugin.package == "membrane"
+        name
+        for name, plugin in plugins.registered("term").items()
+        if plugin.package == plugins.OWN_PACKAGE
     )

@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 import pytest
 
-from membrane import plugins
+from membrane import plugins, run, study_from
 from membrane.coefficients import STANDARD_TERMS
 from membrane.errors import PluginError
 from membrane.kernel import Kernel
@@ -59,6 +59,16 @@ def test_our_terms(name):
 @pytest.mark.parametrize("name", plugins.names("eigensolver"))
 def test_our_eigensolvers(name):
     check_eigensolver(plugins.load("eigensolver", name))
+
+
+@pytest.fixture(scope="module")
+def spectrum():
+    return run(study_from({**zoo.DISC, "modes": {"count": 4, "accuracy": 1.0}}))
+
+
+@pytest.mark.parametrize("name", plugins.names("product"))
+def test_our_products(name, spectrum, tmp_path):
+    check_product(plugins.load("product", name), spectrum, tmp_path)
 
 
 def breach(check, *arguments) -> str:
