@@ -5,8 +5,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
-from membrane.pitch import CENTS_PER_OCTAVE
 
+from membrane.pitch import CENTS_PER_OCTAVE
 from membrane.records.arrays import Floats
 from membrane.records.modes import Modes
 

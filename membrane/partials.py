@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 import numpy as np
-from membrane.pitch import CENTS_PER_OCTAVE, note
 
 from membrane.errors import StudyError
+from membrane.pitch import CENTS_PER_OCTAVE, note
 from membrane.records.arrays import Floats
 from membrane.records.modes import Modes
 from membrane.records.spectrum import NodalPattern, Partial

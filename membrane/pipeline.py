@@ -9,7 +9,6 @@ from pathlib import Path
 from time import perf_counter
 
 import numpy as np
-from membrane.nodal import nodal_patterns
 
 from membrane import plugins
 from membrane.accuracy import Estimate, estimate
@@ -18,6 +17,7 @@ from membrane.kernel import Kernel
 from membrane.mesh import Resolution, first_resolution, make_mesh
 from membrane.modes import count_up_to, extract
 from membrane.modes.extract import Eigensolver
+from membrane.nodal import nodal_patterns
 from membrane.outline import draw
 from membrane.partials import partials
 from membrane.pencil import assemble

@@ -33,9 +33,7 @@ def test_same_triangle_as_scipy_finds_on_a_straight_mesh():
         nodes=vertices[:, triangles],
     )
     points = rng.random((2, 500))
-    np.testing.assert_array_equal(
-        locate(mesh, points).triangle, delaunay.find_simplex(points.T)
-    )
+    np.testing.assert_array_equal(locate(mesh, points).triangle, delaunay.find_simplex(points.T))
 
 
 def test_values_and_slopes_on_a_curved_mesh():

@@ -10,12 +10,12 @@ from typing import Any
 
 import numpy as np
 
-from membrane.kernel.bent_corners import spoilt
 from membrane.errors import MembraneError, MeshError, OutlineError
+from membrane.kernel.bent_corners import spoilt
+from membrane.kernel.sizes import USUAL, Bend, size_map
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh, signed_areas
-from membrane.kernel.sizes import USUAL, Bend, size_map
 
 # gmsh keeps everything in one place per process, so one session at a time.
 _lock = threading.RLock()

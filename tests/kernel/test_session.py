@@ -16,8 +16,8 @@ from scipy.special import ellipe
 
 from membrane.errors import MeshError
 from membrane.kernel import Kernel
-from membrane.outline import draw
 from membrane.kernel.sizes import Bend
+from membrane.outline import draw
 from tests.outline.studies import box, disc, shape, study
 
 LOADED = study(
