@@ -12,11 +12,13 @@ from typing import get_args
 import numpy as np
 import pint
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from membrane import units
 from membrane.units import Quantity
+
+unhurried = settings(deadline=None)  # the first unit read loads pint
 
 
 def read(annotated, value):
@@ -73,12 +75,14 @@ def test_bare_numbers_are_si(value):
     assert type(found) is float
 
 
+@unhurried
 @given(st.integers(min_value=1, max_value=10**6))
 def test_millimetres_are_the_same_number_as_their_metres_written_out(millimetres):
     metres = float(f"{millimetres // 1000}.{millimetres % 1000:03d}")
     assert read(units.Length, f"{millimetres} mm") == metres
 
 
+@unhurried
 @given(
     st.floats(min_value=1e-6, max_value=1e6),
     st.sampled_from(["mm", "cm", "inch", "ft", "yard", "mile", "angstrom"]),
@@ -128,6 +132,7 @@ def test_the_smallest_number_is_soon_read():
     assert read(units.Length, "1e-999999999 mm") == 0.0
 
 
+@unhurried
 @given(st.text(alphabet="mkgNin/^*() .2-·°9e_@", max_size=60))
 def test_any_unit_gives_a_number_or_a_sentence(unit):
     with suppress(ValueError):  # any other error fails the test

@@ -10,6 +10,8 @@ from pathlib import PurePath
 from types import UnionType
 from typing import Annotated, Any, TypeVar, Union, get_args, get_origin, get_type_hints
 
+import numpy as np
+
 from membrane.errors import PluginError, Problem, StudyError
 from membrane.plugins.sentences import sentence
 from membrane.units import Quantity
@@ -76,10 +78,15 @@ def _read_into(values: dict[str, Any], key: str, hint: Any, value: Any) -> list[
     from pydantic import ValidationError
 
     try:
-        values[key] = _adapter(hint).validate_python(value)
+        values[key] = _adapter(hint).validate_python(_own(value))
     except ValidationError as failure:
         return [Problem(*sentence(key, error)) for error in failure.errors()]
     return []
+
+
+def _own(value: Any) -> Any:
+    """Numbers and arrays of numpy, which scripts use, as Python's own."""
+    return value.tolist() if isinstance(value, np.generic | np.ndarray) else value
 
 
 @lru_cache(maxsize=512)

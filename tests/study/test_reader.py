@@ -212,6 +212,15 @@ def test_numpy_numbers_are_numbers():
     assert study_from(keys).outline.options.diameter == 2.0
     keys = {**SHORTEST, "outline": {"shape": "disc", "diameter": np.int64(2)}}
     assert study_from(keys).outline.options.diameter == 2.0
+    keys = {**SHORTEST, "modes": {"count": np.int64(3)}}
+    assert study_from(keys).modes.count == 3
+
+
+def test_numpy_arrays_are_lists():
+    corners = np.array([[0, 0], [1, 0], [0, 1]])
+    study = study_from({**SHORTEST, "outline": {"shape": "polygon", "corners": corners}})
+    assert study.outline.options.corners == ((0.0, 0.0), (1.0, 0.0), (0.0, 1.0))
+    assert json.loads(json.dumps(study.source)) == study.source
 
 
 def test_a_byte_order_mark_does_no_harm(tmp_path):
