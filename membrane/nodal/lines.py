@@ -6,9 +6,11 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from membrane.nodal.crossings import find_crossings
+from membrane.nodal.closer import look_closer, need_closer_look
+from membrane.nodal.crossings import Signs, find_crossings
+from membrane.nodal.edges import MeshEdges
 from membrane.nodal.join import chains
-from membrane.nodal.roots import refine
+from membrane.nodal.pieces import merged
 from membrane.nodal.slopes import with_slopes
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
@@ -22,7 +24,12 @@ SAME = 1e-9
 
 
 def trace(
-    space: Space, vectors: Floats, divided: Subdivision, values: Floats, fixed: Sequence[str]
+    space: Space,
+    vectors: Floats,
+    divided: Subdivision,
+    values: Floats,
+    edges: MeshEdges,
+    fixed: Sequence[str],
 ) -> list[tuple[Floats, ...]]:
     """The nodal lines of each mode: polylines (2, n) metres, closed ones end where they start.
 
@@ -32,17 +39,19 @@ def trace(
     """
     held = lie_on(space.mesh, fixed)
     signed = with_slopes(space, vectors, divided, values, held)
-    crossings = find_crossings(divided, signed, np.abs(values).max(axis=0, initial=0.0))
-    reference = refine(space, vectors, divided, signed, held, crossings)
-    points = _positions(space.mesh, crossings.triangle, reference)
-    sizes = _sizes(space.mesh)[crossings.triangle]
+    signs = Signs.of(values, signed, divided, held)
+    close = need_closer_look(divided, edges, signs)
+    wide = find_crossings(space, vectors, divided, edges, signs, left_out=close)
+    pieces = merged([wide, look_closer(space, vectors, divided, edges, signs, close)])
+    points = _positions(space.mesh, pieces.triangle, pieces.reference)
+    sizes = _sizes(space.mesh)[pieces.triangle]
     lines: list[list[Floats]] = [[] for _ in range(vectors.shape[1])]
-    for chain in chains(crossings.segments, crossings.mode.size):
+    for chain in chains(pieces.segments, pieces.triangle.size):
         line = _cleaned(points[:, chain], sizes[chain])
         # a fixed corner or a point where lines cross sheds specks smaller than the lattice
         speck = sizes[chain].min() / divided.lattice.parts
         if np.hypot(*np.diff(line)).sum() > speck:
-            lines[crossings.mode[chain[0]]].append(line)
+            lines[pieces.mode[chain[0]]].append(line)
     return [tuple(found) for found in lines]
 
 

@@ -7,6 +7,7 @@ from collections.abc import Mapping
 import numpy as np
 
 from membrane.nodal.domains import count_domains
+from membrane.nodal.edges import mesh_edges
 from membrane.nodal.lines import trace
 from membrane.nodal.round_head import circles_and_diameters
 from membrane.records.arrays import Floats
@@ -27,8 +28,9 @@ def nodal_patterns(modes: Modes, study_edges: Mapping[str, Edge]) -> tuple[Nodal
     fixed = [name for name, edge in edges.items() if edge.support is Support.FIXED]
     divided = subdivide(modes.space.mesh, max(LEAST_PARTS, modes.space.degree))
     values = divided.values(modes.space, modes.vectors)
-    lines = trace(modes.space, modes.vectors, divided, values, fixed)
-    domains = count_domains(modes, divided, values)
+    lattice_edges = mesh_edges(modes.space, modes.vectors, divided, values)
+    lines = trace(modes.space, modes.vectors, divided, values, lattice_edges, fixed)
+    domains = count_domains(modes, values, lattice_edges)
     labels = circles_and_diameters(modes, edges)
     return tuple(
         NodalPattern(

@@ -11,6 +11,7 @@ import numpy as np
 
 from membrane.products.sheet import Sheet, lay_out
 from membrane.records.arrays import Floats
+from membrane.records.mesh import Mesh
 from membrane.records.spectrum import Partial, Spectrum
 from membrane.records.study import Support
 from membrane.sides import inner_borders, lie_on
@@ -21,6 +22,11 @@ if TYPE_CHECKING:
 
 STEM = "modes"
 INK, PENCIL = "#1a1a1a", "#8c8c8c"
+TRIANGLES = 3000
+"""Of smooth colour, for each mode."""
+
+MOST_PARTS = 24
+LEGEND = "Black lines stay at rest; red and blue move against each other."
 
 
 @dataclass(frozen=True)
@@ -34,7 +40,7 @@ class Options:
 
     format: Literal["png", "svg", "pdf"] = "png"
     colour_map: str = "RdBu_r"
-    dpi: int = 150
+    dpi: int = 120
 
 
 def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
@@ -43,7 +49,7 @@ def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
     from matplotlib.figure import Figure
 
     mesh = spectrum.modes.space.mesh
-    divided = subdivide(mesh, max(spectrum.modes.space.degree, mesh.order))
+    divided = subdivide(mesh, _parts(mesh))
     positions = divided.positions(mesh)
     sheet = lay_out(positions, len(spectrum.partials))
     figure = Figure(figsize=sheet.inches, dpi=options.dpi)
@@ -55,11 +61,17 @@ def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
     _draw_edges(axes, spectrum, divided, positions, sheet)
     _draw_nodal_lines(axes, spectrum, sheet)
     _write_titles(axes, spectrum, sheet)
-    figure.savefig(folder / f"{STEM}.{options.format}", dpi=options.dpi)
+    light: dict[str, Any] = {"pil_kwargs": {"compress_level": 1}} if options.format == "png" else {}
+    figure.savefig(folder / f"{STEM}.{options.format}", dpi=options.dpi, **light)
+
+
+def _parts(mesh: Mesh) -> int:
+    """Lattice parts for triangles of a few dots, whatever the mesh."""
+    return int(np.clip(np.ceil(np.sqrt(TRIANGLES / mesh.size)), 2, MOST_PARTS))
 
 
 def _draw_shapes(
-    axes: Axes,
+    axes: Any,
     spectrum: Spectrum,
     divided: Subdivision,
     positions: Floats,
@@ -67,6 +79,8 @@ def _draw_shapes(
     colour_map: str,
 ) -> None:
     """Every mode's displacement as smooth colour, each scaled to its own maximum."""
+    from matplotlib.tri import Triangulation
+
     values = divided.values(spectrum.modes.space, spectrum.modes.vectors)
     values = values / np.abs(values).max(axis=0)
     count = values.shape[1]
@@ -74,9 +88,8 @@ def _draw_shapes(
     offsets = divided.count * np.arange(count)[:, None, None]
     triangles = (divided.triangles.T[None] + offsets).reshape(-1, 3)
     axes.tripcolor(
-        *points.reshape(2, -1),
+        Triangulation(points[0].ravel(), points[1].ravel(), triangles),
         values.T.ravel(),
-        triangles=triangles,
         shading="gouraud",
         cmap=colour_map,
         vmin=-1.0,
@@ -125,21 +138,14 @@ def _add_lines(axes: Axes, lines: list[Floats], colour: str, width: float) -> No
 def _write_titles(axes: Axes, spectrum: Spectrum, sheet: Sheet) -> None:
     for partial, (x, y) in zip(spectrum.partials, sheet.titles.T, strict=True):
         first, second = _title(partial)
-        style = {"ha": "center", "color": INK}
+        style: dict[str, Any] = {"ha": "center", "color": INK}
         axes.text(x, y, first, va="bottom", fontsize=sheet.font, fontweight="bold", **style)
         axes.text(x, y, second, va="top", fontsize=0.85 * sheet.font, **style)
     left, right = sheet.margin, sheet.width - sheet.margin
     title = spectrum.study.title or "Untitled"
     axes.text(left, sheet.head_line, title, fontsize=12, va="center", color=INK)
-    axes.text(
-        right,
-        sheet.head_line,
-        "black lines stay at rest; red and blue move against each other",
-        fontsize=8,
-        ha="right",
-        va="center",
-        color=PENCIL,
-    )
+    legend: dict[str, Any] = {"fontsize": 8, "ha": "right", "va": "center", "color": PENCIL}
+    axes.text(right, sheet.head_line, LEGEND, **legend)
 
 
 def _title(partial: Partial) -> tuple[str, str]:
@@ -147,11 +153,11 @@ def _title(partial: Partial) -> tuple[str, str]:
     nodal = partial.nodal
     named = nodal.diameters is not None
     name = f"({nodal.diameters},{nodal.circles})" if named else f"{partial.number}"
-    return f"{name}  {partial.frequency:.1f} Hz", "   ".join(_pitch(partial))
+    return f"{name}  {partial.frequency:.1f} Hz", "    ".join(_pitch(partial))
 
 
 def _pitch(partial: Partial) -> Iterator[str]:
     if partial.ratio is not None:
-        yield f"{partial.ratio:.3f}"
+        yield f"× {partial.ratio:.3f}"
     if partial.note is not None and partial.note_cents is not None:
-        yield f"{partial.note} {partial.note_cents:+.0f}"
+        yield f"{partial.note} {partial.note_cents:+.0f} cents"

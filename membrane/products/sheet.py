@@ -74,7 +74,11 @@ def lay_out(positions: Floats, count: int) -> Sheet:
 
 
 def _columns(count: int, wide: float, high: float) -> int:
-    """The number of columns that brings the sheet closest to its wanted shape."""
-    choices = range(1, count + 1)
-    shapes = [c * wide / (ceil(count / c) * high) for c in choices]
-    return min(choices, key=lambda c: abs(np.log(shapes[c - 1] / SHAPE)))
+    """The number of columns for a sheet near its wanted shape with few empty cells."""
+
+    def badness(columns: int) -> float:
+        rows = ceil(count / columns)
+        shape = columns * wide / (rows * high)
+        return float(abs(np.log(shape / SHAPE)) + np.log(rows * columns / count))
+
+    return min(range(1, count + 1), key=badness)
