@@ -16,13 +16,20 @@ from membrane.triangle import lattice, nodes, shapes
 
 PARTS = 8
 
+NEAR = 0.1
+"""A mode that sinks to this share of its values at both ends of an edge nearly crosses it."""
 
-def need_closer_look(divided: Subdivision, edges: MeshEdges, signs: Signs) -> Bools:
-    """(parts**2, n_triangles * n): small triangles near an edge that a line crosses twice."""
+
+def need_closer_look(divided: Subdivision, edges: MeshEdges, signs: Signs, values: Floats) -> Bools:
+    """(parts**2, n_triangles * n): small triangles near an edge that a line crosses twice.
+
+    Or comes near to crossing twice: two lines meet there, or nearly do.
+    """
+    low = edges.lowest <= NEAR * np.abs(values[edges.ends]).min(axis=0)
     a, b = signs.positive[edges.ends[0]], signs.positive[edges.ends[1]]
     heard = signs.audible[edges.ends[0]] & signs.audible[edges.ends[1]]
     held = signs.held_points[edges.ends[0]] | signs.held_points[edges.ends[1]]
-    twice: Bools = (a == b) & heard & (edges.lowest == 0.0) & ~held[:, None]
+    twice: Bools = (a == b) & heard & low & ~held[:, None]
     near = _neighbours(divided, edges, twice)
     # one ring more, since close to such an edge a line may cross another three times
     ring = np.zeros_like(twice)

@@ -40,7 +40,7 @@ def trace(
     held = lie_on(space.mesh, fixed)
     signed = with_slopes(space, vectors, divided, values, held)
     signs = Signs.of(values, signed, divided, held)
-    close = need_closer_look(divided, edges, signs)
+    close = need_closer_look(divided, edges, signs, values)
     wide = find_crossings(space, vectors, divided, edges, signs, left_out=close)
     pieces = merged([wide, look_closer(space, vectors, divided, edges, signs, close)])
     points = _positions(space.mesh, pieces.triangle, pieces.reference)

@@ -41,6 +41,8 @@ def find_roots(
 
 def on_each(kinds: Ints) -> list[tuple[int, Ints]]:
     """Each kind with the places where it occurs."""
+    if kinds.size == 0:
+        return []
     order = np.argsort(kinds, kind="stable")
     found, starts = np.unique(kinds[order], return_index=True)
     return list(zip(found.tolist(), np.split(order, starts[1:]), strict=True))
