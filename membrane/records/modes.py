@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from membrane.records.arrays import Floats, Ints
 from membrane.records.pencil import Space
@@ -31,17 +32,17 @@ class Modes:
         """(n,), Hz."""
         return np.sqrt(np.maximum(self.eigenvalues, 0.0)) / (2.0 * np.pi)
 
-    def at(self, points: Floats) -> Floats:
+    def at(self, points: ArrayLike) -> Floats:
         """Displacement of every mode at ``points`` (2, m) metres: (n, m).
 
         NaN where a point is not on the head.
         """
         from membrane.evaluate import values_at
 
-        return values_at(self.space, self.vectors, points)
+        return values_at(self.space, self.vectors, np.asarray(points, dtype=float))
 
-    def gradients_at(self, points: Floats) -> Floats:
+    def gradients_at(self, points: ArrayLike) -> Floats:
         """Slope of every mode at ``points`` (2, m) metres: (2, n, m), per metre."""
         from membrane.evaluate import gradients_at
 
-        return gradients_at(self.space, self.vectors, points)
+        return gradients_at(self.space, self.vectors, np.asarray(points, dtype=float))
