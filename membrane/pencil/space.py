@@ -60,7 +60,9 @@ class Discretisation:
 
 def build_space(mesh: Mesh, degree: int, fixed_edges: tuple[str, ...]) -> Discretisation:
     """Continuous piecewise polynomials of a degree, with the fixed edges' dofs set apart."""
-    topology = MeshTri(mesh.vertices, mesh.triangles, sort_t=False)
+    # scikit-fem copies arrays of another layout, and says so on stderr
+    vertices, triangles = map(np.ascontiguousarray, (mesh.vertices, mesh.triangles))
+    topology = MeshTri(vertices, triangles, sort_t=False)
     dofs = Dofs(topology, element(degree))
     local = np.asarray(dofs.element_dofs, dtype=np.int64)
     held = dofs.get_facet_dofs(facets_on(topology, mesh, fixed_edges)).flatten()
