@@ -7,7 +7,10 @@ from membrane.records.membrane import Contribution, Membrane, OwnForm
 from membrane.records.outline import Outline
 from membrane.records.study import Study, Support
 
-STANDARD_TERMS = ("tension", "areal_density", "bedding", "edge_stiffness", "edge_mass")
+STANDARD_TERMS = (
+    *("tension", "areal_density", "bedding", "edge_stiffness", "edge_mass"),
+    *("line_stiffness", "line_mass"),
+)
 """Terms that every study has; further ones come from its ``[terms.*]`` tables."""
 
 

@@ -53,6 +53,7 @@ class Kernel:
         self._gmsh = gmsh
         self.geometry = geometry
         self._stop: KeyboardInterrupt | None = None
+        self._within: dict[int, int] = {}
 
     @classmethod
     @contextmanager
@@ -102,7 +103,10 @@ class Kernel:
 
     def length(self, curve: int) -> float:
         """Length of a curve, metres."""
-        first, last = self.bounds(curve)
+        return self.length_between(curve, *self.bounds(curve))
+
+    def length_between(self, curve: int, first: float, last: float) -> float:
+        """Length of a curve between two of its parameters, metres."""
         starts, step = np.linspace(first, last, _PANELS, endpoint=False, retstep=True)
         points, weights = _gauss()
         at = (starts[:, None] + 0.5 * step * (points + 1.0)).ravel()
@@ -121,9 +125,16 @@ class Kernel:
 
     def distance(self, points: Floats, curve: int) -> float:
         """Largest distance, metres, from ``points`` (2, n) to a curve."""
+        return float(np.hypot(*(self._closest(points, curve)[0] - points)).max())
+
+    def nearest(self, points: Floats, curve: int) -> Floats:
+        """Parameters (n,) of the places on a curve that are nearest to ``points`` (2, n)."""
+        return self._closest(points, curve)[1]
+
+    def _closest(self, points: Floats, curve: int) -> tuple[Floats, Floats]:
         deep = np.vstack([points, np.zeros(points.shape[1])]).T.ravel()
-        nearest, _ = self._gmsh.model.getClosestPoint(1, curve, deep)
-        return float(np.hypot(*(self._plane(nearest) - points)).max())
+        places, parameters = self._gmsh.model.getClosestPoint(1, curve, deep)
+        return self._plane(places), np.asarray(parameters, dtype=float)
 
     # Faces
 
@@ -142,32 +153,58 @@ class Kernel:
         return [tag for curve in curves for _, tag in occ.copy([(1, curve)])]
 
     def place(
-        self, face: int, curves: Iterable[int], rotate: float, at: tuple[float, float]
+        self,
+        face: int | None,
+        curves: Iterable[int],
+        rotate: float,
+        at: tuple[float, float],
     ) -> None:
         """Turn a face and loose curves about the origin (radians), then shift them."""
-        things = [(2, face), *((1, curve) for curve in curves)]
+        faces = [] if face is None else [(2, face)]
+        things = [*faces, *((1, curve) for curve in curves)]
         if rotate != 0.0:
             self._gmsh.model.occ.rotate(things, 0, 0, 0, 0, 0, 1, rotate)
         if at != (0.0, 0.0):
             self._gmsh.model.occ.translate(things, *at, 0)
 
-    def fragment(self, faces: Sequence[int]) -> list[set[int]]:
-        """Cut faces by each other: for each, the new faces that cover it.
+    def add_point(self, x: float, y: float) -> int:
+        """A loose point, for ``fragment``."""
+        return int(self._gmsh.model.occ.addPoint(x, y, 0.0))
+
+    def fragment(
+        self, faces: Sequence[int], curves: Iterable[int] = (), points: Iterable[int] = ()
+    ) -> list[set[int]]:
+        """Cut faces by each other, by curves and by points: for each face what covers it.
 
         Raises OutlineError where the kernel cannot cut them.
         """
-        if len(faces) > 1:
-            first, *others = ((2, face) for face in faces)
+        finer = [*((1, curve) for curve in curves), *((0, point) for point in points)]
+        if len(faces) > 1 or finer:
+            first, *others = [*((2, face) for face in faces), *finer]
             with _gmsh_failures(OutlineError, "The shapes could not be cut by each other"):
                 _, covers = self._gmsh.model.occ.fragment([first], others)
         else:
             covers = [[(2, face)] for face in faces]
-        self._gmsh.model.occ.synchronize()
-        return [{tag for dim, tag in cover if dim == 2} for cover in covers]
+        self.synchronize()
+        return [{tag for dim, tag in cover if dim == 2} for cover in covers[: len(faces)]]
 
     def neighbours(self, curve: int) -> list[int]:
-        """Faces that a curve bounds."""
+        """The faces beside a curve; twice the same one for a curve that ends within it."""
+        if curve in self._within:
+            return 2 * [self._within[curve]]
         return [int(face) for face in self._gmsh.model.getAdjacencies(1, curve)[0]]
+
+    def inner_curves(self, face: int) -> list[int]:
+        """Curves within a face that part it nowhere."""
+        return [curve for curve, host in self._within.items() if host == face]
+
+    def synchronize(self) -> None:
+        """Let the kernel see what has been drawn since the last time."""
+        model = self._gmsh.model
+        model.occ.synchronize()
+        faces = [face for _, face in model.getEntities(2)]
+        inside = {face: model.mesh.getEmbedded(2, face) for face in faces}
+        self._within = {tag: f for f, found in inside.items() for dim, tag in found if dim == 1}
 
     def is_inside(self, face: int, point: Floats) -> bool:
         """Whether a point (2,), metres, lies in a face."""
@@ -178,11 +215,12 @@ class Kernel:
         model = self._gmsh.model
         kept = {(2, face) for face in faces}
         model.occ.remove([face for face in model.getEntities(2) if face not in kept], True)
-        for dim in (1, 0):
-            model.occ.synchronize()
-            loose = [e for e in model.getEntities(dim) if not len(model.getAdjacencies(*e)[0])]
-            model.occ.remove(loose, True)
-        model.occ.synchronize()
+        self.synchronize()
+        model.occ.remove([e for e in model.getEntities(1) if not self.neighbours(e[1])], True)
+        self.synchronize()
+        loose = [e for e in model.getEntities(0) if not len(model.getAdjacencies(*e)[0])]
+        model.occ.remove(loose, True)
+        self.synchronize()
 
     # Mesh
 

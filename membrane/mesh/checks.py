@@ -35,6 +35,9 @@ def check_mesh(mesh: Mesh, outline: Outline) -> None:
     for name in outline.edges:
         if mesh.edges[name].shape[1] == 0:
             raise MeshError(f'edge "{name}" has no sides of triangles')
+    for name in outline.lines:
+        if mesh.lines[name].shape[1] == 0:
+            raise MeshError(f'line load "{name}" has no sides of triangles')
 
 
 def jacobians(mesh: Mesh) -> Floats:

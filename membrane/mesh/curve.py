@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from membrane.kernel import Kernel
-from membrane.records.arrays import Floats, Ints
+from membrane.records.arrays import Bools, Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh
@@ -28,6 +28,7 @@ def curved(kernel: Kernel, outline: Outline, raw: RawMesh, order: int) -> Mesh:
         region_names=tuple(region.name for region in outline.regions),
         region=_regions(outline, raw),
         edges=_edges(outline, raw),
+        lines=_lines(outline, raw),
     )
 
 
@@ -113,8 +114,30 @@ def _regions(outline: Outline, raw: RawMesh) -> Ints:
 
 
 def _edges(outline: Outline, raw: RawMesh) -> dict[str, Ints]:
+    left = _lie_left(raw)
     edges = {}
     for name in outline.edges:
-        curves = [curve.tag for curve in outline.curves if curve.edge == name]
-        edges[name] = raw.segments[:, np.isin(raw.segment_curve, curves)]
+        on = np.isin(raw.segment_curve, [c.tag for c in outline.curves if c.edge == name])
+        for side in (0, 1):
+            lips = [c.tag for c in outline.curves if c.lips and c.lips[side] == name]
+            on |= np.isin(raw.segment_curve, lips) & (left == (side == 0))
+        edges[name] = raw.segments[:, on]
     return edges
+
+
+def _lie_left(raw: RawMesh) -> Bools:
+    """(n_segments,): whether a triangle lies to the left of the curve along each segment."""
+    count = raw.vertices.shape[1]
+    around = raw.triangles * count + raw.triangles[[1, 2, 0]]
+    start, stop = raw.segment_parameters
+    low, high = raw.segments
+    forward = np.where(start < stop, low * count + high, high * count + low)
+    return np.isin(forward, around)
+
+
+def _lines(outline: Outline, raw: RawMesh) -> dict[str, Ints]:
+    lines = {}
+    for name in outline.lines:
+        curves = [curve.tag for curve in outline.curves if name in curve.lines]
+        lines[name] = np.unique(raw.segments[:, np.isin(raw.segment_curve, curves)], axis=1)
+    return lines

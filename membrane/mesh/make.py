@@ -1,4 +1,4 @@
-"""From outline to mesh: triangulate, grade the corners, curve the sides, check."""
+"""From outline to mesh: triangulate, grade the corners, open slits, curve the sides, check."""
 
 from __future__ import annotations
 
@@ -10,6 +10,7 @@ from membrane.mesh.checks import check_mesh
 from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
 from membrane.mesh.grade import graded
+from membrane.mesh.slits import opened
 from membrane.mesh.resolution import Resolution, region_sizes
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
@@ -51,6 +52,7 @@ def _attempt(
     raw = kernel.triangulate(outline, sizes)
     found = corners(kernel, outline, membrane, raw)
     raw = graded(kernel, raw, found, resolution.tolerance)
+    raw = opened(raw, [curve.tag for curve in outline.curves if curve.lips])
     mesh = curved(kernel, outline, raw, resolution.degree)
     check_mesh(mesh, outline)
     return mesh

@@ -1,84 +1,121 @@
-"""The curves of a cut head, each with the name of the edge it belongs to."""
+"""The curves of a cut head, each with the names of what runs along it."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
-
-import numpy as np
+from collections.abc import Iterable, Mapping
 
 from membrane.errors import OutlineError
 from membrane.kernel import Kernel
+from membrane.outline.copies import Copy, Probe, matching, probe, runs_along
 from membrane.outline.cut import Cut
-from membrane.records.arrays import Floats
+from membrane.outline.names import Names
 from membrane.records.outline import Curve
 
-# Where along a curve its points are compared, as shares of its parameter range.
-_SHARES = np.array([0.17, 0.5, 0.79])
-_NEAR = 1e-6
 
-
-def curves(kernel: Kernel, cut: Cut, edges: Mapping[str, tuple[int, ...]]) -> tuple[Curve, ...]:
-    """Name every curve that bounds a remaining face: edges first, in their order.
-
-    edges : name of an outline edge -> loose copies of its curves
+def curves(kernel: Kernel, cut: Cut, names: Names) -> tuple[Curve, ...]:
+    """Name every curve that bounds a remaining face or ends within one: edges first.
 
     A curve between a remaining face and a hole bears the hole's name; a curve at one
     remaining face and nothing else, the name of the outline edge that it lies on. The
     kernel's own record of what became of a curve is not reliable after a cut.
     """
-    copies = [_Copy(name, tag, *kernel.box(tag)) for name, tags in edges.items() for tag in tags]
-    found = []
-    for tag in sorted({tag for face in cut.patches for tag in kernel.border(face)}):
-        found.append(Curve(tag, _edge(kernel, cut, copies, tag), kernel.length(tag)))
-    order = {name: k for k, name in enumerate([*edges, *dict.fromkeys(cut.holes.values())])}
-    _check_all(order, {curve.edge for curve in found})
-    return tuple(sorted(found, key=lambda c: (order.get(c.edge or "", len(order)), c.tag)))
+    faces = cut.patches
+    tags = {t for face in faces for t in (*kernel.border(face), *kernel.inner_curves(face))}
+    found = [_named(kernel, cut, names, probe(kernel, tag)) for tag in sorted(tags)]
+    order = names.order
+    _check_all(names, {name for curve in found for name in curve.edges})
+    return tuple(sorted(found, key=lambda c: (min(map(order.get, c.edges), default=len(order)), c.tag)))
 
 
-@dataclass(frozen=True)
-class _Copy:
-    """A named curve as it was before the cut, and the box around it."""
+def _named(kernel: Kernel, cut: Cut, names: Names, probed: Probe) -> Curve:
+    lines = dict.fromkeys(copy.name for copy in matching(kernel, probed, names.lines))
+    curve = Curve(
+        tag=probed.tag,
+        edge=_edge(kernel, cut, names, probed),
+        length=kernel.length(probed.tag),
+        lines=tuple(lines),
+        lips=_lips(kernel, names, probed),
+    )
+    _check_lips(curve)
+    return curve
 
-    edge: str
-    tag: int
-    low: Floats
-    high: Floats
 
-    def may_hold(self, points: Floats, slack: float) -> bool:
-        low, high = self.low[:, None] - slack, self.high[:, None] + slack
-        return bool(np.all((points >= low) & (points <= high)))
-
-
-def _edge(kernel: Kernel, cut: Cut, copies: Sequence[_Copy], tag: int) -> str | None:
-    faces = kernel.neighbours(tag)
+def _edge(kernel: Kernel, cut: Cut, names: Names, probed: Probe) -> str | None:
+    faces = kernel.neighbours(probed.tag)
     if sum(face in cut.patches for face in faces) == 2:
         return None
-    for face in faces:
-        if face in cut.holes:
-            return cut.holes[face]
-    return _nearest(kernel, copies, tag)
-
-
-def _nearest(kernel: Kernel, copies: Sequence[_Copy], tag: int) -> str:
-    first, last = kernel.bounds(tag)
-    points = kernel.evaluate(tag, first + _SHARES * (last - first))
-    slack = _NEAR * kernel.length(tag)
-    near = [copy for copy in copies if copy.may_hold(points, slack)]
-    distance, edge = min(
-        ((kernel.distance(points, copy.tag), copy.edge) for copy in near), default=(np.inf, "")
-    )
-    if distance > slack:
+    hole = next((cut.holes[face] for face in faces if face in cut.holes), None)
+    among = names.edges if hole is None else names.holes[hole]
+    copy = next(matching(kernel, probed, among), None)
+    if copy is None:
         raise OutlineError(
             "A part of the outline's boundary has no name; "
             "the geometry script must name all of its edges."
         )
-    return edge
+    split = names.splits.get(copy.name)
+    part = split.part_at(copy, probed.middle) if split else None
+    return part or copy.name
 
 
-def _check_all(names: Mapping[str, int], found: set[str | None]) -> None:
-    for name in names:
-        if name not in found:
+def _lips(kernel: Kernel, names: Names, probed: Probe) -> tuple[str, str] | None:
+    """The lips to the left and right of a curve along its parameter."""
+    found: list[tuple[str, str]] = []
+    for (left, right), slit in names.slits.items():
+        copy = next(matching(kernel, probed, slit), None)
+        if copy is not None:
+            found.append((left, right) if runs_along(kernel, probed, copy) else (right, left))
+    if len(found) > 1:
+        raise OutlineError(
+            f"Two slits run along each other, with the lips {found[0][0]} and {found[1][0]}; "
+            "draw them as one."
+        )
+    return found[0] if found else None
+
+
+def _check_lips(curve: Curve) -> None:
+    if curve.lips and curve.edge:
+        raise OutlineError(
+            f"The slit with the lip {curve.lips[0]} runs along the edge {curve.edge}; "
+            "move it inwards."
+        )
+    if curve.lips and curve.lines:
+        raise OutlineError(
+            f"The line load {curve.lines[0]} runs along the slit with the lip {curve.lips[0]}; "
+            "give the mass to the edges of the slit instead."
+        )
+
+
+def _check_all(names: Names, found: set[str]) -> None:
+    for name in names.order:
+        if name not in found and name not in names.splits:
             raise OutlineError(
                 f"Nothing is left of the edge {name}; move or leave out what cuts it away."
             )
+
+
+def check_lines(kernel: Kernel, names: Names, found: Iterable[Curve]) -> None:
+    """Raise OutlineError where a line load does not lie on the head with all its length."""
+    drawn = _lengths(kernel, names.lines)
+    left = dict.fromkeys(drawn, 0.0)
+    for curve in found:
+        for name in curve.lines:
+            left[name] += curve.length
+    for name, length in drawn.items():
+        off = length - left[name]
+        if off > _OFF * length:
+            where = "wholly" if off > (1.0 - _OFF) * length else f"by {1e3 * off:.3g} mm"
+            raise OutlineError(
+                f"The line load {name} lies {where} outside the head; "
+                "move it onto the head or make it shorter."
+            )
+
+
+_OFF = 1e-6
+"""Share of a line's length that rounding may leave off the head."""
+
+
+def _lengths(kernel: Kernel, lines: Iterable[Copy]) -> Mapping[str, float]:
+    lengths: dict[str, float] = {}
+    for copy in lines:
+        lengths[copy.name] = lengths.get(copy.name, 0.0) + kernel.length(copy.tag)
+    return lengths

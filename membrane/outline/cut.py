@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 from itertools import combinations
 
 from membrane.errors import OutlineError
 from membrane.kernel import Kernel
+from membrane.records.arrays import Floats
 
 # Less than this share of a shape may stick out: rounding where it follows the edge.
 _ROUNDING = 1e-7
@@ -29,12 +30,23 @@ class Cut:
     holes: Mapping[int, str]
 
 
-def cut(kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping[str, int]) -> Cut:
-    """Cut an outline's face by the faces of patches and holes.
+def cut(
+    kernel: Kernel,
+    outline: int,
+    patches: Mapping[str, int],
+    holes: Mapping[str, int],
+    lines: Iterable[int] = (),
+    points: Iterable[Floats] = (),
+) -> Cut:
+    """Cut an outline's face by the faces of patches and holes, by lines and by points.
+
+    lines : the kernel's curves; they are left as they are
+    points : (2,) metres each; they split the curves on which they lie
 
     Raises OutlineError for shapes that do not fit together.
     """
-    head, *others = _fragments(kernel, [outline, *patches.values(), *holes.values()])
+    faces = [outline, *patches.values(), *holes.values()]
+    head, *others = _fragments(kernel, faces, lines, points)
     over = dict(zip(patches, others[: len(patches)], strict=True))
     away = dict(zip(holes, others[len(patches) :], strict=True))
     for name, cover in over.items():
@@ -48,7 +60,9 @@ def cut(kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping
     return Cut({face: tuple(n for n in over if face in over[n]) for face in left}, removed)
 
 
-def _fragments(kernel: Kernel, faces: Sequence[int]) -> list[set[int]]:
+def _fragments(
+    kernel: Kernel, faces: Sequence[int], lines: Iterable[int], points: Iterable[Floats]
+) -> list[set[int]]:
     """For each face the faces that cover it after all are cut by each other."""
     areas = [kernel.area(face) for face in faces]
     if len(faces) > 1 and areas[0] < _SMALLEST:
@@ -56,7 +70,8 @@ def _fragments(kernel: Kernel, faces: Sequence[int]) -> list[set[int]]:
             f"The outline is too small to be cut by patches and holes: {1e6 * areas[0]:.3g} mm^2; "
             f"the geometry kernel needs {1e6 * _SMALLEST:.3g} mm^2."
         )
-    covers = kernel.fragment(faces)
+    corners = [kernel.add_point(*map(float, point)) for point in points]
+    covers = kernel.fragment(faces, kernel.copies(lines), corners)
     _check_kept(kernel, areas, covers)
     return covers
 

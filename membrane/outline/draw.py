@@ -2,34 +2,44 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 
 from membrane.kernel import Kernel
-from membrane.outline.curves import curves
+from membrane.outline.curves import check_lines, curves
 from membrane.outline.cut import Cut, cut
-from membrane.outline.place import place
+from membrane.outline.names import names
+from membrane.outline.place import Placed, place
 from membrane.outline.soundness import check_slivers, check_whole
 from membrane.records.outline import HEAD, Outline, Region
 from membrane.records.study import Hole, Patch, Study
 
 
 def draw(kernel: Kernel, study: Study) -> Outline:
-    """Draw a study's outline, patches and holes in an open kernel session.
+    """Draw a study's outline with all that lies on it in an open kernel session.
 
     Raises OutlineError for shapes that do not fit together.
     """
     outline = place(kernel, study.outline)
-    patches, holes = _faces(kernel, study.patches), _faces(kernel, study.holes)
-    pieces = cut(kernel, outline.face, patches, holes)
-    named = curves(kernel, pieces, outline.edges)
+    patches, holes = _placed(kernel, study.patches), _placed(kernel, study.holes)
+    known = names(kernel, study, outline, holes)
+    corners = [point for split in known.splits.values() for point in split.points()]
+    pieces = cut(
+        kernel, outline.surface, _faces(patches), _faces(holes), known.cuts, corners
+    )
+    named = curves(kernel, pieces, known)
+    check_lines(kernel, known, named)
     check_whole(kernel, named, pieces.patches)
     check_slivers(kernel, named, pieces.patches)
     kernel.keep_only(pieces.patches)
     return Outline(_regions(kernel, pieces), named)
 
 
-def _faces(kernel: Kernel, shapes: Iterable[Patch | Hole]) -> dict[str, int]:
-    return {shape.name: place(kernel, shape.shape).face for shape in shapes}
+def _placed(kernel: Kernel, shapes: Iterable[Patch | Hole]) -> dict[str, Placed]:
+    return {shape.name: place(kernel, shape.shape) for shape in shapes}
+
+
+def _faces(placed: Mapping[str, Placed]) -> dict[str, int]:
+    return {name: shape.surface for name, shape in placed.items()}
 
 
 def _regions(kernel: Kernel, pieces: Cut) -> tuple[Region, ...]:

@@ -16,25 +16,48 @@ from membrane.records.study import Shape
 class Placed:
     """A drawn shape.
 
-    face : its kernel surface
+    face : its kernel surface, None for an open line
     edges : edge name -> loose copies of its curves, which later cuts leave whole
+    slits : names of the left and the right lip -> a loose copy of the slit's curve
     """
 
-    face: int
+    shape: Shape
+    face: int | None
     edges: Mapping[str, tuple[int, ...]]
+    slits: Mapping[tuple[str, str], tuple[int, ...]]
+
+    @property
+    def surface(self) -> int:
+        """The face of a shape that is no open line."""
+        if self.face is None:
+            raise OutlineError(
+                f"The shape {self.shape.plugin} encloses no area; "
+                "use it for line loads and slits only."
+            )
+        return self.face
+
+    @property
+    def border(self) -> tuple[int, ...]:
+        """The copies of all its edges, in their order."""
+        return tuple(curve for curves in self.edges.values() for curve in curves)
 
 
 def place(kernel: Kernel, shape: Shape) -> Placed:
     """Draw a shape, turn it about its own origin, and shift it."""
     drawing = load("outline", shape.plugin).build(kernel.geometry, shape.options)
-    face = _tag(drawing.surface, 2, shape.plugin)
-    edges = {}
+    face = None if drawing.surface is None else _tag(drawing.surface, 2, shape.plugin)
+    edges, slits = {}, {}
     for name, drawn in drawing.edges.items():
-        curves = [_tag(curve, 1, shape.plugin) for curve in drawn] or kernel.border(face)
+        curves = [_tag(curve, 1, shape.plugin) for curve in drawn]
+        if not curves and face is not None:
+            curves = kernel.border(face)
         edges[name] = tuple(kernel.copies(curves))
-    loose = [curve for curves in edges.values() for curve in curves]
+    for lips in drawing.slits:
+        curve = _tag(lips.curve, 1, shape.plugin)
+        slits[lips.left, lips.right] = tuple(kernel.copies([curve]))
+    loose = [curve for some in (edges, slits) for curves in some.values() for curve in curves]
     kernel.place(face, loose, shape.rotate, shape.at)
-    return Placed(face, edges)
+    return Placed(shape, face, edges, slits)
 
 
 def _tag(drawn: Any, dim: int, plugin: str) -> int:

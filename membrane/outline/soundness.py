@@ -21,14 +21,14 @@ _SHARE = 0.05
 def check_whole(kernel: Kernel, curves: Iterable[Curve], faces: Iterable[int]) -> None:
     """Raise OutlineError where the faces do not hang together along their curves."""
     piece = {face: {face} for face in faces}
-    for curve in curves:
+    for curve in (curve for curve in curves if not curve.lips):
         beside = [face for face in kernel.neighbours(curve.tag) if face in piece]
         merged = set().union(*(piece[face] for face in beside))
         piece.update({face: merged for face in merged})
     pieces = {frozenset(together) for together in piece.values()}
     if len(pieces) > 1:
         raise OutlineError(
-            f"The holes cut the head into {len(pieces)} pieces; "
+            f"The holes and slits cut the head into {len(pieces)} pieces; "
             "make them smaller, or study each piece on its own."
         )
 
@@ -81,8 +81,12 @@ def _along(kernel: Kernel, ray: _Ray, reach: float) -> Floats:
     return kernel.evaluate(ray.curve.tag, np.array([at]))[:, 0]
 
 
+def _called(curve: Curve) -> str:
+    return next(iter((*curve.edges, *curve.lines)), "the border of a patch")
+
+
 def _sentence(one: _Ray, other: _Ray) -> str:
-    names = " and ".join(ray.curve.edge or "the border of a patch" for ray in (one, other))
+    names = " and ".join(_called(ray.curve) for ray in (one, other))
     x, y = (round(1e3 * float(value), 6) + 0.0 for value in one.point)
     return (
         f"Near x = {x:g} mm, y = {y:g} mm a sliver is left between {names}; "

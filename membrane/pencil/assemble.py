@@ -33,11 +33,16 @@ def assemble(membrane: Membrane, mesh: Mesh, degree: int) -> Pencil:
 
 
 def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple[str, Part]]:
-    on_regions, on_edges = cache(discretisation.on_regions), cache(discretisation.on_edges)
+    on_regions = cache(discretisation.on_regions)
+    basis_on = {
+        "regions": on_regions,
+        "edges": cache(discretisation.on_edges),
+        "lines": cache(discretisation.on_lines),
+    }
     free = discretisation.space.free
     for c in membrane.contributions:
         weak = WEAK_FORMS[c.field]
-        basis = on_regions(c.where) if weak.on == "regions" else on_edges(c.where)
+        basis = basis_on[weak.on](c.where)
         yield weak.side, Part(c.key, c.scale, _matrix(weak.integrand(c.value), basis, free))
     for own in membrane.own_forms:
         yield own.side, Part(own.key, own.scale, _matrix(own.form, on_regions(own.where), free))

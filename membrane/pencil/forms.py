@@ -1,7 +1,7 @@
 """The weak forms of a membrane, as the mathematics writes them.
 
-integral of T grad u . grad v + kappa u v over the head + beta u v along its edges
-    = lambda (integral of rho u v over the head + mu u v along its edges)
+integral of T grad u . grad v + kappa u v over the head + beta u v along edges and lines
+    = lambda (integral of rho u v over the head + mu u v along edges and lines)
 """
 
 from __future__ import annotations
@@ -40,7 +40,7 @@ class WeakForm:
     """Where a coefficient field stands in the equation.
 
     side : "stiffness" or "mass"
-    on : "regions" or "edges"
+    on : "regions", "edges" or "lines"
     integrand : makes the bilinear form from the field's value
     """
 
@@ -53,6 +53,8 @@ WEAK_FORMS = {
     Field.TENSION: WeakForm("stiffness", "regions", tension),
     Field.BEDDING: WeakForm("stiffness", "regions", product),
     Field.EDGE_STIFFNESS: WeakForm("stiffness", "edges", product),
+    Field.LINE_STIFFNESS: WeakForm("stiffness", "lines", product),
     Field.AREAL_DENSITY: WeakForm("mass", "regions", product),
     Field.EDGE_MASS: WeakForm("mass", "edges", product),
+    Field.LINE_MASS: WeakForm("mass", "lines", product),
 }

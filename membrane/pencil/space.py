@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -42,12 +43,19 @@ class Discretisation:
 
     def on_edges(self, names: tuple[str, ...]) -> FacetBasis:
         """Basis on the facets of some edges."""
+        return self._on_facets([self.space.mesh.edges[name] for name in names])
+
+    def on_lines(self, names: tuple[str, ...]) -> FacetBasis:
+        """Basis on the facets of some line loads."""
+        return self._on_facets([self.space.mesh.lines[name] for name in names])
+
+    def _on_facets(self, pairs: Sequence[Ints]) -> FacetBasis:
         return FacetBasis(
             self.topology,
             element(self.space.degree),
             self.mapping,
             quadrature=line_rule(self._order),
-            facets=facets_on(self.topology, self.space.mesh, names),
+            facets=facets_at(self.topology, pairs),
             dofs=self.dofs,
             disable_doflocs=True,
         )
@@ -65,7 +73,8 @@ def build_space(mesh: Mesh, degree: int, fixed_edges: tuple[str, ...]) -> Discre
     topology = MeshTri(vertices, triangles, sort_t=False)
     dofs = Dofs(topology, element(degree))
     local = np.asarray(dofs.element_dofs, dtype=np.int64)
-    held = dofs.get_facet_dofs(facets_on(topology, mesh, fixed_edges)).flatten()
+    fixed = facets_at(topology, [mesh.edges[name] for name in fixed_edges])
+    held = dofs.get_facet_dofs(fixed).flatten()
     space = Space(
         mesh=mesh,
         degree=degree,
@@ -82,11 +91,10 @@ def triangles_in(mesh: Mesh, regions: tuple[str, ...]) -> Ints:
     return np.nonzero(np.isin(mesh.region, wanted))[0]
 
 
-def facets_on(topology: Any, mesh: Mesh, edges: tuple[str, ...]) -> Ints:
-    """Numbers of scikit-fem's facets on the named edges."""
-    pairs = [mesh.edges[name] for name in edges]
+def facets_at(topology: Any, pairs: Sequence[Ints]) -> Ints:
+    """Numbers of scikit-fem's facets with the vertex pairs of the arrays (2, n)."""
     wanted = np.hstack([np.empty((2, 0), dtype=np.int64), *pairs])
-    count = mesh.vertices.shape[1]
+    count = topology.p.shape[1]
     known = topology.facets[0].astype(np.int64) * count + topology.facets[1]
     order = np.argsort(known)
     return np.asarray(order[np.searchsorted(known[order], wanted[0] * count + wanted[1])])

@@ -23,11 +23,13 @@ STUDY_KEYS = frozenset(
     (
         *("name", "shape", "script", "at", "rotate", "areal_density", "added_density", "tension"),
         *("bedding", "support", "stiffness", "mass", "line_density", "line_stiffness"),
+        *("left", "right"),
     )
 )
 """Keys that stand beside a shape's own in the study file, so no outline may have them."""
 
 _ON_EDGES = (Field.EDGE_STIFFNESS, Field.EDGE_MASS)
+_ON_LINES = (Field.LINE_STIFFNESS, Field.LINE_MASS)
 _TOLERANCE = 1e-9
 
 
@@ -41,7 +43,8 @@ def check_outline(module: Any, options: Any, kernel: Any = None) -> None:
     _must(len(set(names)) == len(names), f"edges(options) names an edge twice: {names}")
     _must(all(isinstance(name, str) and name for name in names), "an edge's name must be a text")
     if kernel is not None:
-        _check_drawing(module.build(kernel.geometry, options), names, kernel)
+        drawing = module.build(kernel.geometry, options)
+        _check_drawing(drawing, names, kernel, getattr(module, "OPEN", False))
 
 
 def check_term(module: Any, study: Study, options: Any, outline: Outline) -> None:
@@ -104,14 +107,18 @@ def _check_options(module: Any, options: Any) -> None:
     _must(again == options, f"the study file would read {options!r} as {again!r}")
 
 
-def _check_drawing(drawing: Any, names: tuple[str, ...], kernel: Any) -> None:
+def _check_drawing(drawing: Any, names: tuple[str, ...], kernel: Any, is_open: bool) -> None:
     _must(isinstance(drawing, Drawing), "build must hand back a Drawing")
-    drawn = tuple(drawing.edges)
+    lips = [lip for slit in drawing.slits for lip in (slit.left, slit.right)]
+    drawn = (*drawing.edges, *lips)
     _must(sorted(drawn) == sorted(names), f"build names the edges {drawn}, edges() says {names}")
-    dim, face = drawing.surface.dim_tag
-    _must(dim == 2, "the drawing's surface is not a surface")
-    _must(kernel.area(face) > 0.0, "the drawing's surface has no area")
+    if not is_open:
+        dim, face = drawing.surface.dim_tag
+        _must(dim == 2, "the drawing's surface is not a surface")
+        _must(kernel.area(face) > 0.0, "the drawing's surface has no area")
+    _must(not is_open or drawing.surface is None, "an open line must have no surface")
     curves = [curve.dim_tag for edge in drawing.edges.values() for curve in edge]
+    curves += [slit.curve.dim_tag for slit in drawing.slits]
     _must(all(dim == 1 for dim, _ in curves), "an edge of the drawing is not made of curves")
     _must(len(set(curves)) == len(curves), "a curve of the drawing belongs to two edges")
 
@@ -119,8 +126,9 @@ def _check_drawing(drawing: Any, names: tuple[str, ...], kernel: Any) -> None:
 def _check_part(part: Contribution | OwnForm, outline: Outline) -> None:
     _must(part.key, "a contribution must say the study key that scales it")
     _must(np.isfinite(part.scale), f"the scale of {part.key} is not finite")
-    on_edges = isinstance(part, Contribution) and part.field in _ON_EDGES
-    known = outline.edges if on_edges else tuple(region.name for region in outline.regions)
+    known = tuple(region.name for region in outline.regions)
+    if isinstance(part, Contribution) and part.field in _ON_EDGES + _ON_LINES:
+        known = outline.edges if part.field in _ON_EDGES else outline.lines
     strange = sorted(set(part.where) - set(known))
     _must(not strange, f"{part.key} lives on {strange}, known are {list(known)}")
     if isinstance(part, OwnForm):

@@ -29,9 +29,12 @@ GROUPS: Mapping[str, str] = MappingProxyType(
 _OWN = {
     "outline": (
         "membrane.geometries",
-        "disc ellipse rectangle polygon regular_polygon sector stadium",
+        "disc ellipse rectangle polygon regular_polygon sector stadium polyline arc",
     ),
-    "term": ("membrane.terms", "tension areal_density bedding edge_stiffness edge_mass"),
+    "term": (
+        "membrane.terms",
+        "tension areal_density bedding edge_stiffness edge_mass line_stiffness line_mass",
+    ),
     "eigensolver": ("membrane.eigensolvers", "shift_invert arpack_superlu dense"),
     "product": ("membrane.products", "summary modes_csv table vtu nodal_lines pictures"),
 }

@@ -20,6 +20,8 @@ class Field(StrEnum):
     BEDDING = "bedding"  # N/m^3, on regions
     EDGE_STIFFNESS = "edge_stiffness"  # N/m^2, on edges
     EDGE_MASS = "edge_mass"  # kg/m, on edges
+    LINE_STIFFNESS = "line_stiffness"  # N/m^2, on line loads
+    LINE_MASS = "line_mass"  # kg/m, on line loads
 
 
 @dataclass(frozen=True)
@@ -28,7 +30,7 @@ class Contribution:
 
     key : the study key that scales it, such as "patches.paste.added_density"
     field : the field that it adds to
-    where : names of the regions, or of the edges, that it lives on
+    where : names of the regions, edges or line loads that it lives on
     scale : the key's number, SI
     value : what the number multiplies: 1, or a dimensionless (2, 2) tensor
     """
@@ -65,14 +67,14 @@ class Membrane:
     own_forms: tuple[OwnForm, ...] = ()
 
     def total(self, field: Field, where: str) -> Any:
-        """The constant value of a field on one region or edge, SI."""
+        """The constant value of a field on one region, edge or line load, SI."""
         parts = (c for c in self.contributions if c.field is field and where in c.where)
         return sum((c.scale * np.asarray(c.value, dtype=float) for c in parts), np.zeros(()))
 
     @property
     def moves_rigidly(self) -> bool:
         """True where nothing holds the head: a constant shape costs no energy."""
-        held = (Field.BEDDING, Field.EDGE_STIFFNESS)
+        held = (Field.BEDDING, Field.EDGE_STIFFNESS, Field.LINE_STIFFNESS)
         springs = any(c.field in held and c.scale > 0.0 for c in self.contributions)
         own = any(form.side == "stiffness" for form in self.own_forms)
         return not (self.fixed_edges or springs or own)

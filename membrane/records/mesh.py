@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from membrane.records.arrays import Floats, Ints
 
@@ -20,6 +20,7 @@ class Mesh:
     region_names : names of the regions
     region : (n_triangles,), index into ``region_names``
     edges : edge name -> (2, n), the vertex pairs of its facets, lower number first
+    lines : the same for the line loads, whose facets lie within the head or on edges
     """
 
     vertices: Floats
@@ -29,6 +30,7 @@ class Mesh:
     region_names: tuple[str, ...]
     region: Ints
     edges: Mapping[str, Ints]
+    lines: Mapping[str, Ints] = field(default_factory=dict)
 
     @property
     def size(self) -> int:

@@ -10,16 +10,30 @@ HEAD = "head"
 
 
 @dataclass(frozen=True)
+class Lips:
+    """A pygmsh curve that cuts the surface, and the edges on its two sides.
+
+    left, right : edge names, as seen from the curve's first point to its last
+    """
+
+    curve: Any
+    left: str
+    right: str
+
+
+@dataclass(frozen=True)
 class Drawing:
     """What a geometry script hands back.
 
-    surface : the pygmsh surface that the shape covers
+    surface : the pygmsh surface that the shape covers, None for an open line
     edges : edge name -> the pygmsh curves that make it; a name with no curves
         (an empty sequence) takes the whole boundary
+    slits : curves within the surface that cut it
     """
 
     surface: Any
     edges: Mapping[str, Sequence[Any]] = field(default_factory=dict)
+    slits: Sequence[Lips] = ()
 
 
 @dataclass(frozen=True)
@@ -43,13 +57,22 @@ class Curve:
     """A kernel curve that the mesh follows.
 
     tag : the kernel's own
-    edge : name of the edge it belongs to, None for the border of a patch
+    edge : name of the edge it belongs to, None within the head
     length : metres
+    lines : names of the line loads that run along it
+    lips : of a slit, the names of the edges to its left and right along its parameter
     """
 
     tag: int
     edge: str | None
     length: float
+    lines: tuple[str, ...] = ()
+    lips: tuple[str, str] | None = None
+
+    @property
+    def edges(self) -> tuple[str, ...]:
+        """Names of the edges that run along it: none, one, or the two lips of a slit."""
+        return self.lips or (() if self.edge is None else (self.edge,))
 
 
 @dataclass(frozen=True)
@@ -67,8 +90,13 @@ class Outline:
     @property
     def edges(self) -> tuple[str, ...]:
         """Names of the edges, in the order in which they were drawn."""
-        return tuple(dict.fromkeys(c.edge for c in self.curves if c.edge is not None))
+        return tuple(dict.fromkeys(name for curve in self.curves for name in curve.edges))
+
+    @property
+    def lines(self) -> tuple[str, ...]:
+        """Names of the line loads."""
+        return tuple(dict.fromkeys(name for curve in self.curves for name in curve.lines))
 
     def edge_length(self, name: str) -> float:
         """Length of all curves of that edge, metres."""
-        return sum(curve.length for curve in self.curves if curve.edge == name)
+        return sum(curve.length for curve in self.curves if name in curve.edges)

@@ -123,6 +123,59 @@ class Hole:
 
 
 @dataclass(frozen=True)
+class LineLoad:
+    """A wire, a hoop or a seam: mass (kg/m) and stiffness (N/m^2) along a curve.
+
+    line : an open shape, or a closed one whose whole border is meant
+    """
+
+    name: str
+    line: Shape
+    density: float = 0.0
+    stiffness: float = 0.0
+
+
+@dataclass(frozen=True)
+class Slit:
+    """A cut along an open line; what lies off the head cuts nothing.
+
+    Its lips are the edges NAME.left and NAME.right, seen along the line.
+    """
+
+    name: str
+    line: Shape
+
+    @property
+    def lips(self) -> tuple[str, str]:
+        """Names of the edges to the left and to the right of the cut."""
+        return f"{self.name}.left", f"{self.name}.right"
+
+
+class Along(StrEnum):
+    """How a place on an edge is given."""
+
+    ANGLE = "angle"  # radians about the shape's own origin, from its own x axis
+    LENGTH = "length"  # metres from the edge's first point, the way it is drawn
+    CURVES = "curves"  # whole curves of the edge, counted from 1
+
+
+@dataclass(frozen=True)
+class EdgePart:
+    """A stretch of an edge that is an edge of its own.
+
+    start, stop : where it begins and ends; it runs the way that angle or length grows
+    repeat : how many equally spaced stretches bear the name
+    """
+
+    name: str
+    edge: str
+    along: Along
+    start: float
+    stop: float
+    repeat: int = 1
+
+
+@dataclass(frozen=True)
 class Head:
     """The head itself: areal density (kg/m^2), tension (N/m), bedding (N/m^3)."""
 
@@ -163,7 +216,7 @@ class ProductsWanted:
 
 @dataclass(frozen=True)
 class Study:
-    """A whole study. ``edges`` holds the holes' edges too, by the hole's name.
+    """A whole study. ``edges`` holds those of holes, slits and edge parts too.
 
     terms : frozen options of each further physical term, by plugin name
     source : the same study as plain data in the study file's own keys, SI numbers
@@ -174,6 +227,9 @@ class Study:
     head: Head
     patches: tuple[Patch, ...] = ()
     holes: tuple[Hole, ...] = ()
+    line_loads: tuple[LineLoad, ...] = ()
+    slits: tuple[Slit, ...] = ()
+    edge_parts: tuple[EdgePart, ...] = ()
     edges: Mapping[str, Edge] = field(default_factory=dict)
     modes: ModesWanted = ModesWanted()
     products: ProductsWanted = ProductsWanted()

@@ -35,12 +35,12 @@ def read_edges(
     """All edges of the head by name, those that the study leaves out being fixed.
 
     known : names of all edges; None where a broken outline leaves them unknown
-    own : edges that holes describe in their own tables
+    own : edges that holes and slits describe in their own tables
     """
     found = {name: own.get(name, Edge()) for name in known or ()}
     for name, table in edges.tables():
         if name in own:
-            edges.refuse(name, "is described in the hole's own table already; leave one out.")
+            edges.refuse(name, "is described in its own table already; leave one out.")
         elif known is not None and name not in known:
             edges.refuse(name, _unknown(name, known))
         found[name] = read_edge(table, table.keys) or Edge()

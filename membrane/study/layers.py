@@ -67,18 +67,21 @@ def read_patch(table: Table, base: Path) -> Patch | None:
     return Patch(name, shape, keys.areal_density, keys.added_density, tension, keys.bedding)
 
 
-def read_hole(table: Table, base: Path) -> tuple[Hole | None, Edge | None]:
-    """One of the holes, and its edge where the hole's own table describes it."""
+def read_hole(table: Table, base: Path, own: dict[str, Edge]) -> Hole | None:
+    """One of the holes; its edge goes into ``own`` where the hole's table describes it."""
     name = read_name(table)
     shape = read_shape(table, ("name", *EDGE_KEYS), base)
     given = table.only(EDGE_KEYS)
     edge = read_edge(table, given) if given else None
-    hole = None if name is None or shape is None else Hole(name, shape)
-    return hole, edge
+    if name is None or shape is None:
+        return None
+    if edge is not None:
+        own[name] = edge
+    return Hole(name, shape)
 
 
 def read_name(table: Table) -> str | None:
-    """The name of a patch or a hole."""
+    """The name of a patch, a hole, a line or a part of an edge."""
     keys = table.read(_Name, table.only(("name",)))
     if keys is not None and not _NAME.fullmatch(keys.name):
         given = shown(keys.name)

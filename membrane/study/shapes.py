@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from enum import Enum
 from pathlib import Path
 from typing import Any
 
@@ -12,10 +13,24 @@ from membrane.records.study import Shape
 from membrane.study.problems import NOT_YET
 from membrane.study.table import Table
 from membrane.units import Angle, Point
-from membrane.wording import shown
+from membrane.wording import either, shown
 
 _OWN_KEYS = ("shape", "script", "at", "rotate")
+_OPEN_SHAPES = ("polyline", "arc")
 _LATER = ("rounded_rectangle", "spline", "fourier", "file")
+
+
+class Kinds(Enum):
+    """Which shapes will do at a place of the study."""
+
+    CLOSED = "closed"
+    ANY = "any"
+    OPEN = "open"
+
+    @property
+    def usual(self) -> dict[str, str]:
+        """The shape where none is named."""
+        return {"shape": _OPEN_SHAPES[0]} if self is Kinds.OPEN else {}
 
 
 @dataclass(frozen=True)
@@ -36,12 +51,16 @@ class _Where:
     rotate: Angle = 0.0
 
 
-def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | None:
+def read_shape(
+    table: Table, besides: tuple[str, ...], base: Path, kinds: Kinds = Kinds.CLOSED
+) -> Shape | None:
     """The shape of a table whose keys ``besides`` belong to something else.
 
     base : the folder that a script's path starts from
+    kinds : which shapes will do
     """
-    which = table.read(_Which, table.only(("shape", "script")))
+    given = table.only(("shape", "script"))
+    which = table.read(_Which, given or kinds.usual)
     where = table.read(_Where, table.only(("at", "rotate")))
     name = None if which is None else _plugin(table, which, base)
     if name is None:
@@ -53,9 +72,26 @@ def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | No
     except PluginError as error:
         table.refuse(_key(which), str(error))
         return None
+    if not _will_do(table, which, module, options, kinds):
+        return None
     if where is None or options is None:
         return None
     return Shape(name, options, where.at, where.rotate)
+
+
+def _will_do(
+    table: Table, which: _Which | None, module: Any, options: Any, kinds: Kinds
+) -> bool:
+    is_open = getattr(module, "OPEN", False)
+    if is_open and kinds is Kinds.CLOSED:
+        table.refuse(_key(which), "encloses no area; it is for line loads and slits only.")
+    elif kinds is Kinds.OPEN and not is_open:
+        table.refuse(_key(which), f"a slit needs an open line: {either(_OPEN_SHAPES)}.")
+    elif kinds is Kinds.OPEN and getattr(options, "closed", False):
+        table.refuse("closed", "a slit that closes would cut a piece out; draw a hole instead.")
+    else:
+        return True
+    return False
 
 
 def edge_names(shape: Shape) -> tuple[str, ...]:
