@@ -6,6 +6,8 @@ import threading
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from functools import cache
+from math import inf
+from types import MappingProxyType
 from typing import Any
 
 import numpy as np
@@ -22,6 +24,8 @@ _lock = threading.RLock()
 
 # Gauss points by which lengths are measured; the kernel's own lengths are coarse.
 _PANELS, _PER_PANEL = 12, 12
+
+NOTHING: Mapping[int, float] = MappingProxyType({})
 
 # How much more closely curves are followed, try by try.
 _CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0, 16.0)
@@ -225,18 +229,23 @@ class Kernel:
     # Mesh
 
     def triangulate(
-        self, outline: Outline, sizes: Mapping[str, float], bend: Bend = USUAL
+        self,
+        outline: Outline,
+        sizes: Mapping[str, float],
+        bend: Bend = USUAL,
+        along: Mapping[int, float] = NOTHING,
     ) -> RawMesh:
         """Cover the outline with straight triangles, the same ones every time.
 
         sizes : region name -> longest wanted edge, metres
+        along : curve -> longest wanted edge beside it, where that is shorter
         bend : how edges shorten along bent curves and beside gaps; followed more
             closely where a triangle could not take the shape of its curves
 
         Raises MeshError where gmsh fails or its mesh is not sound.
         """
         for closer in _CLOSER:
-            raw = self._straight_mesh(outline, sizes, bend.closer(closer))
+            raw = self._straight_mesh(outline, sizes, bend.closer(closer), along)
             if not spoilt(raw, self._tangents(raw)).any():
                 return raw
         raise MeshError(
@@ -244,8 +253,14 @@ class Kernel:
             "move apart or leave out shapes that all but touch."
         )
 
-    def _straight_mesh(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> RawMesh:
-        self._set_sizes(outline, sizes, bend)
+    def _straight_mesh(
+        self,
+        outline: Outline,
+        sizes: Mapping[str, float],
+        bend: Bend,
+        along: Mapping[int, float],
+    ) -> RawMesh:
+        self._set_sizes(outline, sizes, bend, along)
         self._gmsh.model.mesh.clear()
         with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
             self._gmsh.model.mesh.generate(2)
@@ -288,12 +303,21 @@ class Kernel:
         order = np.argsort(numbers)
         return self._plane(coordinates)[:, order[np.searchsorted(numbers[order], nodes)]]
 
-    def _set_sizes(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> None:
+    def _set_sizes(
+        self,
+        outline: Outline,
+        sizes: Mapping[str, float],
+        bend: Bend,
+        shorter: Mapping[int, float],
+    ) -> None:
         for name, value in _MESH_OPTIONS.items():
             self._gmsh.option.setNumber(name, value)
         wanted = {f: sizes[region.name] for region in outline.regions for f in region.faces}
         along = {
-            curve.tag: min(wanted[face] for face in self.neighbours(curve.tag))
+            curve.tag: min(
+                *(wanted[face] for face in self.neighbours(curve.tag)),
+                shorter.get(curve.tag, inf),
+            )
             for curve in outline.curves
         }
         nearby = size_map(self, along, self._joined(along), bend)

@@ -11,7 +11,7 @@ import numpy as np
 from membrane.kernel import Kernel
 from membrane.records.arrays import Floats
 from membrane.records.membrane import Field, Membrane
-from membrane.records.outline import Outline
+from membrane.records.outline import Curve, Outline
 from membrane.records.raw_mesh import RawMesh
 
 WHOLE = 1e-7
@@ -19,6 +19,13 @@ WHOLE = 1e-7
 
 TENSION_JUMP = 0.5
 """Exponent assumed where tensions meet at a corner: the weakest that there can be."""
+
+LOAD_ENDS = 1.0
+"""Exponent where springs or masses along a line end or bend: u has r log r.
+
+The slope of u jumps by c u across a line with c = stiffness - lambda mass, like the
+potential of a charge c u: that of a charged half line has r log r at its end.
+"""
 
 
 @dataclass(frozen=True)
@@ -35,14 +42,23 @@ class Ray:
 
     chord, tangent : directions of its first segment and of the curve itself, radians
     bend : signed curvature, per metre, positive to the left of the tangent
-    edge : the edge's name, None for the border of a patch
+    left, right : names of the edges on its two sides, None within the head; the two
+        differ along a slit only
+    lines : names of the line loads that run along it
     """
 
     chord: float
     tangent: float
     bend: float
     curve: int
-    edge: str | None
+    left: str | None
+    right: str | None
+    lines: tuple[str, ...]
+
+    @property
+    def parts(self) -> bool:
+        """Whether it bounds the head on either side."""
+        return self.left is not None
 
 
 @dataclass(frozen=True)
@@ -66,61 +82,104 @@ def corners(
     sides add terms one order weaker.
     """
     found = []
+    fan = _Fan(_Holds(membrane))
     for vertex, rays in _rays(kernel, outline, raw).items():
-        if _passes_smoothly(rays, membrane):
+        if _passes_smoothly(rays, fan.holds):
             continue
         wedges = _wedges(vertex, rays, outline, raw)
-        exponent = min(map(_Fan(membrane, outline).exponent, _fans(wedges)), default=inf)
+        exponent = min(map(fan.exponent, _fans(wedges)), default=inf)
         if exponent < inf:
             found.append(Corner(vertex, exponent))
     return tuple(found)
 
 
 def _rays(kernel: Kernel, outline: Outline, raw: RawMesh) -> dict[int, list[Ray]]:
-    """The rays of every vertex at which different curves meet, by rising direction."""
-    edge_of = {curve.tag: curve.edge for curve in outline.curves}
+    """The rays of every vertex at which curves meet or one ends, by rising direction."""
+    curve_of = {curve.tag: curve for curve in outline.curves}
     ends = defaultdict(list)
     for segment, (tail, tip) in enumerate(raw.segments.T):
         ends[int(tail)].append((segment, 0))
         ends[int(tip)].append((segment, 1))
     rays = {}
     for vertex, here in ends.items():
-        if len({int(raw.segment_curve[segment]) for segment, _ in here}) > 1:
-            leaving = [_ray(kernel, raw, edge_of, segment, end) for segment, end in here]
+        curves = {int(raw.segment_curve[segment]) for segment, _ in here}
+        if len(curves) > 1 or len(here) == 1:
+            leaving = [_ray(kernel, raw, curve_of, segment, end) for segment, end in here]
             rays[vertex] = sorted(leaving, key=lambda ray: ray.chord)
     return rays
 
 
 def _ray(
-    kernel: Kernel, raw: RawMesh, edge_of: dict[int, str | None], segment: int, end: int
+    kernel: Kernel, raw: RawMesh, curve_of: dict[int, Curve], segment: int, end: int
 ) -> Ray:
     here, there = raw.segments[end, segment], raw.segments[1 - end, segment]
     curve = int(raw.segment_curve[segment])
     parameter = raw.segment_parameters[[end], segment]
-    forward = 1.0 if end == 0 else -1.0
+    away = 1.0 if end == 0 else -1.0
     step = raw.segment_parameters[1, segment] - raw.segment_parameters[0, segment]
-    tangent = forward * np.sign(step) * kernel.tangent(curve, parameter)[:, 0]
+    forward = float(away * np.sign(step))
+    tangent = forward * kernel.tangent(curve, parameter)[:, 0]
     chord = raw.vertices[:, there] - raw.vertices[:, here]
     side = np.sign(tangent[0] * chord[1] - tangent[1] * chord[0])
     bend = float(side * kernel.curvature(curve, parameter)[0])
     if abs(bend) * np.linalg.norm(chord) < WHOLE:
         bend = 0.0  # a straight line, up to the kernel's rounding
-    return Ray(_direction(chord), _direction(tangent), bend, curve, edge_of[curve])
+    left, right = _edges_beside(curve_of[curve], forward)
+    lines = curve_of[curve].lines
+    return Ray(_direction(chord), _direction(tangent), bend, curve, left, right, lines)
+
+
+def _edges_beside(curve: Curve, forward: float) -> tuple[str | None, str | None]:
+    """The edges to the left and right as one leaves along a curve, or against it."""
+    left, right = curve.lips or (curve.edge, curve.edge)
+    return (left, right) if forward > 0.0 else (right, left)
 
 
 def _direction(vector: Floats) -> float:
     return float(np.arctan2(vector[1], vector[0]))
 
 
-def _passes_smoothly(rays: list[Ray], membrane: Membrane) -> bool:
-    """True where two curves are one smooth curve under one support."""
+class _Holds:
+    """What edges and lines do to the head beside them."""
+
+    def __init__(self, membrane: Membrane) -> None:
+        self.membrane = membrane
+
+    def fixed(self, edge: str | None) -> bool:
+        return edge in self.membrane.fixed_edges
+
+    def springs(self, edge: str | None) -> tuple[float, float]:
+        """Stiffness and mass along an edge, nothing where it is fixed."""
+        if edge is None or self.fixed(edge):
+            return 0.0, 0.0
+        total = self.membrane.total
+        return float(total(Field.EDGE_STIFFNESS, edge)), float(total(Field.EDGE_MASS, edge))
+
+    def loads(self, ray: Ray) -> tuple[float, float]:
+        """Stiffness and mass of all line loads along a ray."""
+        total, lines = self.membrane.total, ray.lines
+        stiffness = sum(float(total(Field.LINE_STIFFNESS, line)) for line in lines)
+        return stiffness, sum(float(total(Field.LINE_MASS, line)) for line in lines)
+
+    def alike(self, one: str | None, other: str | None) -> bool:
+        """Whether two edges are held in the same way."""
+        same_kind = (one is None) == (other is None) and self.fixed(one) == self.fixed(other)
+        return same_kind and self.springs(one) == self.springs(other)
+
+
+def _passes_smoothly(rays: list[Ray], holds: _Holds) -> bool:
+    """True where two curves are one smooth curve under one support and one load."""
     if len(rays) != 2:
         return False
     first, second = rays
     turn = (second.tangent - first.tangent) % (2 * pi)
     # leaving the vertex both ways, a steady curve bends to the left once, to the right once
     steady = abs(first.bend + second.bend) <= 1e-6 * abs(first.bend)
-    alike = (first.edge in membrane.fixed_edges) == (second.edge in membrane.fixed_edges)
+    alike = (
+        holds.alike(first.left, second.right)
+        and holds.alike(first.right, second.left)
+        and holds.loads(first) == holds.loads(second)
+    )
     return abs(turn - pi) < WHOLE and steady and alike
 
 
@@ -148,16 +207,16 @@ def _turn(start: float, stop: float) -> float:
 
 
 def _fans(wedges: list[Wedge]) -> list[list[Wedge]]:
-    """Wedges of the head that follow each other without a gap."""
-    gaps = [i for i, wedge in enumerate(wedges) if wedge.region is None]
-    if not gaps:
+    """Wedges of the head that follow each other without an edge between them."""
+    starts = [i for i, wedge in enumerate(wedges) if wedge.first.parts]
+    if not starts:
         return [wedges]
-    turned = wedges[gaps[0] + 1 :] + wedges[: gaps[0] + 1]
-    fans: list[list[Wedge]] = [[]]
+    turned = wedges[starts[0] :] + wedges[: starts[0]]
+    fans: list[list[Wedge]] = []
     for wedge in turned:
-        if wedge.region is None:
+        if wedge.first.parts:
             fans.append([])
-        else:
+        if wedge.region is not None:
             fans[-1].append(wedge)
     return [fan for fan in fans if fan]
 
@@ -165,41 +224,55 @@ def _fans(wedges: list[Wedge]) -> list[list[Wedge]]:
 class _Fan:
     """The exponent of a run of wedges under one membrane."""
 
-    def __init__(self, membrane: Membrane, outline: Outline) -> None:
-        self.membrane = membrane
-        self.straight = {curve.tag for curve in outline.curves if curve.edge is not None}
+    def __init__(self, holds: _Holds) -> None:
+        self.holds = holds
+        self.membrane = holds.membrane
 
     def exponent(self, fan: list[Wedge]) -> float:
         """Smallest exponent that spoils smoothness; infinite where none does."""
         tensions = [self.membrane.total(Field.TENSION, str(w.region)) for w in fan]
         if any(not np.allclose(tensions[0], other, rtol=1e-12) for other in tensions):
             return TENSION_JUMP
-        if _turn(fan[0].first.tangent, fan[-1].second.tangent) == 2 * pi and len(fan) > 1:
-            return self._inside(fan)
+        if not fan[0].first.parts:
+            return self._inside(fan, tensions[0])
         return self._at_edge(fan, tensions[0])
 
-    def _inside(self, fan: list[Wedge]) -> float:
-        """Around an inner vertex only the density can jump: u has r^2 log r."""
+    def _inside(self, fan: list[Wedge], tension: Floats) -> float:
+        """Around an inner vertex densities jump, u has r^2 log r; lines end, cross or bend."""
         names = {str(wedge.region) for wedge in fan}
         densities = {float(self.membrane.total(Field.AREAL_DENSITY, n)) for n in names}
-        return 2.0 if len(densities) > 1 else inf
+        loads = [self.holds.loads(wedge.first) for wedge in fan]
+        if not _balanced(loads, [wedge.first.tangent for wedge in fan], tension):
+            return LOAD_ENDS
+        return 2.0 if len(densities) > 1 or np.any(loads) else inf
 
     def _at_edge(self, fan: list[Wedge], tension: Floats) -> float:
-        first, last = fan[0].first, fan[-1].second
-        held = {ray.edge in self.membrane.fixed_edges for ray in (first, last)}
+        first, last = fan[0].first.left, fan[-1].second.right
+        held = {self.holds.fixed(edge) for edge in (first, last)}
         opening = _opening(fan, tension)
         leading = pi / opening if len(held) == 1 else pi / (2 * opening)
+        springs = [self.holds.springs(edge) for edge in (first, last)]
+        loads = [self.holds.loads(wedge.first) for wedge in fan[1:]]
+        straight = abs(opening - pi) < WHOLE
+        if held == {False} and (np.any(loads) or (straight and springs[0] != springs[1])):
+            return min(leading, LOAD_ENDS)
         if abs(leading - round(leading)) > WHOLE * leading:
             return leading
-        bent = abs(first.bend) + abs(last.bend) > 0.0
-        springs = any(self._is_elastic(ray) for ray in (first, last))
+        bent = abs(fan[0].first.bend) + abs(fan[-1].second.bend) > 0.0
         several = len(fan) > 1
-        return leading + 1.0 if bent or springs or several else inf
+        return leading + 1.0 if bent or np.any(springs) or several else inf
 
-    def _is_elastic(self, ray: Ray) -> bool:
-        stiffness = self.membrane.total(Field.EDGE_STIFFNESS, str(ray.edge))
-        mass = self.membrane.total(Field.EDGE_MASS, str(ray.edge))
-        return bool(stiffness > 0.0 or mass > 0.0)
+
+def _balanced(loads: list[tuple[float, float]], directions: list[float], tension: Floats) -> bool:
+    """Whether every load that arrives along one direction leaves along the opposite one.
+
+    Then the r log r of the half lines cancel: their sum is c e/(e . T^-1 e) . T^-1 x log r
+    over the loads c along the directions e.
+    """
+    e = np.array([np.cos(directions), np.sin(directions)])
+    pull = e / np.einsum("in,ij,jn->n", e, np.linalg.inv(tension), e)
+    sums = pull @ np.array(loads)
+    return bool(np.all(np.abs(sums) <= WHOLE * (np.abs(pull) @ np.array(loads)).max(axis=0)))
 
 
 def _opening(fan: list[Wedge], tension: Floats) -> float:

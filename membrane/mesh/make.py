@@ -11,6 +11,7 @@ from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
 from membrane.mesh.grade import graded
 from membrane.mesh.slits import opened
+from membrane.mesh.waves_along import curve_sizes
 from membrane.mesh.resolution import Resolution, region_sizes
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
@@ -33,10 +34,11 @@ def make_mesh(
     Raises MeshError where no valid mesh is found.
     """
     sizes = region_sizes(outline, membrane, wanted, resolution.phase)
+    along = curve_sizes(outline, membrane, wanted, resolution.phase)
     for attempt in range(ATTEMPTS):
         finer = {name: size * 0.7**attempt for name, size in sizes.items()}
         try:
-            return _attempt(kernel, outline, membrane, finer, resolution)
+            return _attempt(kernel, outline, membrane, finer, along, resolution)
         except MeshError as failure:
             last = failure
     raise MeshError(f"no valid mesh after {ATTEMPTS} attempts; the last one: {last}")
@@ -47,9 +49,10 @@ def _attempt(
     outline: Outline,
     membrane: Membrane,
     sizes: Mapping[str, float],
+    along: Mapping[int, float],
     resolution: Resolution,
 ) -> Mesh:
-    raw = kernel.triangulate(outline, sizes)
+    raw = kernel.triangulate(outline, sizes, along=along)
     found = corners(kernel, outline, membrane, raw)
     raw = graded(kernel, raw, found, resolution.tolerance)
     raw = opened(raw, [curve.tag for curve in outline.curves if curve.lips])

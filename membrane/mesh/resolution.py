@@ -48,7 +48,7 @@ def first_resolution(wanted: ModesWanted) -> Resolution:
     """What should be fine enough for the wanted accuracy at the first try."""
     relative = wanted.accuracy / CENTS_PER_UNIT
     degree = wanted.degree or _degree_for(relative)
-    return Resolution(degree, _phase_for(relative, degree - COARSER_BY), 1e-4 * relative)
+    return Resolution(degree, _phase_for(relative, degree - COARSER_BY), 1e-3 * relative)
 
 
 def _degree_for(relative: float) -> int:
@@ -73,8 +73,13 @@ def region_sizes(
     outline: Outline, membrane: Membrane, wanted: ModesWanted, phase: float
 ) -> dict[str, float]:
     """Longest edge in each region, metres: ``phase`` over the local wave number."""
-    omega = 2 * pi * wanted.up_to if wanted.up_to else _weyl(outline, membrane, wanted.count)
-    return {r.name: phase / (omega * _slowness(membrane, r.name)) for r in outline.regions}
+    omega = highest(outline, membrane, wanted)
+    return {r.name: phase / (omega * slowness(membrane, r.name)) for r in outline.regions}
+
+
+def highest(outline: Outline, membrane: Membrane, wanted: ModesWanted) -> float:
+    """Angular frequency up to which modes are wanted, rad/s, or an estimate from above."""
+    return 2 * pi * wanted.up_to if wanted.up_to else _weyl(outline, membrane, wanted.count)
 
 
 def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
@@ -87,13 +92,20 @@ def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
         r.area * membrane.total(Field.AREAL_DENSITY, r.name) / _root_det(membrane, r.name)
         for r in outline.regions
     )
-    slowest = max(_slowness(membrane, region.name) for region in outline.regions)
-    length = slowest * sum(outline.edge_length(name) for name in membrane.fixed_edges)
+    slowest = max(slowness(membrane, region.name) for region in outline.regions)
+    held = sum(outline.edge_length(name) for name in membrane.fixed_edges)
+    length = slowest * (held + _sprung(outline, membrane))
     length = min(length, 2.0 * sqrt(pi * count * area))  # a comb's perimeter says nothing
     return float(length + sqrt(length**2 + 16 * pi * area * count)) / float(2 * area)
 
 
-def _slowness(membrane: Membrane, region: str) -> float:
+def _sprung(outline: Outline, membrane: Membrane) -> float:
+    """Length of both sides of the lines with springs, which may be as good as fixed, metres."""
+    stiff = [n for n in outline.lines if membrane.total(Field.LINE_STIFFNESS, n) > 0.0]
+    return 2.0 * sum(outline.line_length(name) for name in stiff)
+
+
+def slowness(membrane: Membrane, region: str) -> float:
     """Seconds per metre of the slowest wave in a region."""
     tension = membrane.total(Field.TENSION, region)
     density = membrane.total(Field.AREAL_DENSITY, region)

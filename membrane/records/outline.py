@@ -100,3 +100,7 @@ class Outline:
     def edge_length(self, name: str) -> float:
         """Length of all curves of that edge, metres."""
         return sum(curve.length for curve in self.curves if name in curve.edges)
+
+    def line_length(self, name: str) -> float:
+        """Length of a line load, metres."""
+        return sum(curve.length for curve in self.curves if name in curve.lines)
