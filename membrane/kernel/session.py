@@ -129,16 +129,17 @@ class Kernel:
 
     def distance(self, points: Floats, curve: int) -> float:
         """Largest distance, metres, from ``points`` (2, n) to a curve."""
-        return float(np.hypot(*(self._closest(points, curve)[0] - points)).max())
+        nearest, _ = self._gmsh.model.getClosestPoint(1, curve, self._deep(points))
+        return float(np.hypot(*(self._plane(nearest) - points)).max())
 
-    def nearest(self, points: Floats, curve: int) -> Floats:
-        """Parameters (n,) of the places on a curve that are nearest to ``points`` (2, n)."""
-        return self._closest(points, curve)[1]
+    def parameters(self, points: Floats, curve: int) -> Floats:
+        """Parameters (n,) of ``points`` (2, n) on a curve."""
+        found = self._gmsh.model.getParametrization(1, curve, self._deep(points))
+        return np.asarray(found, dtype=float)
 
-    def _closest(self, points: Floats, curve: int) -> tuple[Floats, Floats]:
-        deep = np.vstack([points, np.zeros(points.shape[1])]).T.ravel()
-        places, parameters = self._gmsh.model.getClosestPoint(1, curve, deep)
-        return self._plane(places), np.asarray(parameters, dtype=float)
+    @staticmethod
+    def _deep(points: Floats) -> Floats:
+        return np.vstack([points, np.zeros(points.shape[1])]).T.ravel()
 
     # Faces
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import defaultdict
-from math import ceil, log
+from math import ceil, inf, log
 
 import numpy as np
 
@@ -12,14 +12,23 @@ from membrane.mesh.corners import Corner
 from membrane.records.arrays import Floats
 from membrane.records.raw_mesh import RawMesh
 
-RATIO = 0.4
-"""Size of each layer to the one around it: at degree 8 a layer leaves 1e-9 of r^(1/2)."""
+RATIOS = ((0.5, 0.45), (1.0, 0.4), (inf, 0.3))
+"""Size of each layer to the one around it, for exponents up to the first number.
 
-SMALLEST = 3e-13
-"""Size of the innermost layer to the corner's coordinates, above their rounding."""
+A polynomial follows r^a across a layer the better the thinner it is; with these, elements
+of degree 8 leave less than 1e-9 at slits and reentrant corners in our trials.
+"""
+
+SMALLEST = 4e-12
+"""Size of the innermost layer to the corner's coordinates, well above their rounding."""
 
 DEEPEST = 60
 """Most layers at one corner."""
+
+
+def ratio(exponent: float) -> float:
+    """Size of each layer to the one around it at a corner of that exponent."""
+    return next(size for most, size in RATIOS if exponent <= most * (1 + 1e-9))
 
 
 def layers(exponent: float, tolerance: float) -> int:
@@ -27,15 +36,15 @@ def layers(exponent: float, tolerance: float) -> int:
 
     The energy within a radius r of the corner, and so the error, goes like r^(2 exponent).
     """
-    return min(ceil(log(tolerance) / (2 * exponent * log(RATIO))), DEEPEST)
+    return min(ceil(log(tolerance) / (2 * exponent * log(ratio(exponent)))), DEEPEST)
 
 
 def graded(kernel: Kernel, raw: RawMesh, corners: tuple[Corner, ...], tolerance: float) -> RawMesh:
     """The mesh with every corner's triangles cut into layers that shrink towards it."""
     growing = _Growing(kernel, raw)
     for corner in corners:
-        deepest = growing.deepest(corner.vertex)
-        growing.grade(corner.vertex, min(layers(corner.exponent, tolerance), deepest))
+        depth = layers(corner.exponent, tolerance)
+        growing.grade(corner.vertex, depth, ratio(corner.exponent))
     return growing.raw_mesh()
 
 
@@ -56,33 +65,33 @@ class _Growing:
         for (tail, tip), curve, (start, stop) in sides:
             self._add_segment(int(tail), int(tip), int(curve), float(start), float(stop))
 
-    def deepest(self, vertex: int) -> int:
+    def _room(self, vertex: int, shrink: float) -> int:
         """How many layers the rounding of a vertex's coordinates leaves room for."""
         here = self.places[vertex]
         around = {v for number in self.touching[vertex] for v in self.triangles[number]}
         size = min(float(np.linalg.norm(self.places[v] - here)) for v in around - {vertex})
         rounding = SMALLEST * float(np.linalg.norm(here))
-        return min(ceil(log(max(rounding / size, 1e-300)) / log(RATIO)), DEEPEST)
+        return max(ceil(log(max(rounding / size, 1e-300)) / log(shrink)), 1)
 
-    def grade(self, vertex: int, depth: int) -> None:
-        """Cut the triangles at a vertex into ``depth`` layers."""
+    def grade(self, vertex: int, depth: int, shrink: float) -> None:
+        """Cut the triangles at a vertex into layers, each ``shrink`` times the last one."""
+        fractions = np.power(shrink, np.arange(1.0, min(depth, self._room(vertex, shrink)) + 1))
         chains: dict[int, list[int]] = {}
         for number in sorted(self.touching[vertex]):
             here, left, right = self._turned(number, vertex)
             for end in (left, right):
                 if end not in chains:
-                    chains[end] = self._chain(here, end, depth)
+                    chains[end] = self._chain(here, end, fractions)
             self._cut(number, chains[left], chains[right])
 
     def _turned(self, number: int, vertex: int) -> tuple[int, int, int]:
         a, b, c = self.triangles[number]
         return {a: (a, b, c), b: (b, c, a), c: (c, a, b)}[vertex]
 
-    def _chain(self, corner: int, end: int, depth: int) -> list[int]:
-        """Vertices from ``end`` to ``corner``, each RATIO times closer than the last."""
-        fractions = np.power(RATIO, np.arange(1.0, depth + 1))
+    def _chain(self, corner: int, end: int, fractions: Floats) -> list[int]:
+        """Vertices from ``end`` to ``corner``, at falling ``fractions`` of the way between."""
         segment = self._pop_segment(corner, end)
-        chain = [end, *range(len(self.places), len(self.places) + depth), corner]
+        chain = [end, *range(len(self.places), len(self.places) + fractions.size), corner]
         if segment is None:
             start, stop = self.places[corner], self.places[end]
             self.places.extend(start + f * (stop - start) for f in fractions)

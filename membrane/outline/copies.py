@@ -72,6 +72,6 @@ def matching(kernel: Kernel, probed: Probe, among: Iterable[Copy]) -> Iterator[C
 
 def runs_along(kernel: Kernel, probed: Probe, copy: Copy) -> bool:
     """Whether a curve that lies on a copy runs the copy's own way."""
-    there = kernel.tangent(copy.tag, kernel.nearest(probed.points[:, [1]], copy.tag))
-    here = kernel.tangent(probed.tag, kernel.nearest(probed.points[:, [1]], probed.tag))
+    there = kernel.tangent(copy.tag, kernel.parameters(probed.points[:, [1]], copy.tag))
+    here = kernel.tangent(probed.tag, kernel.parameters(probed.points[:, [1]], probed.tag))
     return bool((here * there).sum() > 0.0)

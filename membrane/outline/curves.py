@@ -86,6 +86,10 @@ def _check_lips(curve: Curve) -> None:
 
 
 def _check_all(names: Names, found: set[str]) -> None:
+    for lips in names.slits:
+        if not found.intersection(lips):
+            slit = lips[0].removesuffix(".left")
+            raise OutlineError(f"The slit {slit} lies wholly outside the head; move it onto the head.")
     for name in names.order:
         if name not in found and name not in names.splits:
             raise OutlineError(
@@ -103,10 +107,10 @@ def check_lines(kernel: Kernel, names: Names, found: Iterable[Curve]) -> None:
     for name, length in drawn.items():
         off = length - left[name]
         if off > _OFF * length:
-            where = "wholly" if off > (1.0 - _OFF) * length else f"by {1e3 * off:.3g} mm"
+            wholly = off > (1.0 - _OFF) * length
+            where = "wholly outside the head" if wholly else f"outside the head by {1e3 * off:.3g} mm"
             raise OutlineError(
-                f"The line load {name} lies {where} outside the head; "
-                "move it onto the head or make it shorter."
+                f"The line load {name} lies {where}; move it onto the head or make it shorter."
             )
 
 

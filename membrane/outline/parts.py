@@ -101,7 +101,7 @@ class Split:
             return copy.place + 0.5
         before = sum(self.kernel.length(other.tag) for other in self.edge[: copy.place])
         first, _ = self.kernel.bounds(copy.tag)
-        at = float(self.kernel.nearest(point[:, None], copy.tag)[0])
+        at = float(self.kernel.parameters(point[:, None], copy.tag)[0])
         return before + self.kernel.length_between(copy.tag, first, at)
 
     def _point(self, part: EdgePart, place: float) -> Floats:

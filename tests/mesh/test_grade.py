@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from membrane.mesh.corners import Corner, corners
-from membrane.mesh.grade import RATIO, graded, layers
+from membrane.mesh.grade import graded, layers, ratio
 from membrane.mesh.resolution import region_sizes
 from tests import zoo
 
@@ -21,7 +21,8 @@ def meshes(keys, tolerance=1e-6):
 def test_layers_meet_the_tolerance():
     for exponent in (0.5, 2 / 3, 2.0):
         depth = layers(exponent, 1e-7)
-        assert RATIO ** (2 * exponent * depth) <= 1e-7 < RATIO ** (2 * exponent * (depth - 1))
+        shrink = ratio(exponent)
+        assert shrink ** (2 * exponent * depth) <= 1e-7 < shrink ** (2 * exponent * (depth - 1))
 
 
 @pytest.mark.parametrize("keys", [zoo.L_SHAPE, zoo.SQUARE])
@@ -34,7 +35,7 @@ def test_area_is_kept(keys):
 def test_nearest_vertices_are_as_close_as_asked():
     before, (corner,), after = meshes(zoo.L_SHAPE)
     depth = layers(corner.exponent, 1e-6)
-    for raw, factor in ((before, 1.0), (after, RATIO**depth)):
+    for raw, factor in ((before, 1.0), (after, ratio(corner.exponent) ** depth)):
         touching = raw.triangles[:, (raw.triangles == corner.vertex).any(axis=0)]
         ends = np.setdiff1d(touching, [corner.vertex])
         nearest = np.linalg.norm(raw.vertices[:, ends], axis=0).min()
