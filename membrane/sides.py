@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -35,8 +35,17 @@ def sides(mesh: Mesh) -> Sides:
 
 def lie_on(mesh: Mesh, edges: Iterable[str]) -> Bools:
     """(3, n_triangles): whether each side of each triangle lies on one of the named edges."""
+    return _are_sides(mesh, [mesh.edges[name] for name in edges])
+
+
+def lie_on_lines(mesh: Mesh) -> Bools:
+    """(3, n_triangles): whether each side of each triangle lies on a line load."""
+    return _are_sides(mesh, list(mesh.lines.values()))
+
+
+def _are_sides(mesh: Mesh, found: Sequence[Ints]) -> Bools:
     count = mesh.vertices.shape[1]
-    wanted = [low * count + high for low, high in (mesh.edges[name] for name in edges)]
+    wanted = [low * count + high for low, high in found]
     pairs = np.stack([mesh.triangles[list(edge)] for edge in EDGES])
     keys = pairs[:, 0] * count + pairs[:, 1]
     return np.isin(keys, np.concatenate(wanted)) if wanted else np.zeros(keys.shape, dtype=bool)

@@ -7,7 +7,17 @@ from pathlib import Path
 from typing import Any
 
 from membrane.plugins.options import plain, unit_of
-from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support
+from membrane.records.study import (
+    Along,
+    Edge,
+    EdgePart,
+    LineLoad,
+    ModesWanted,
+    Patch,
+    Shape,
+    Study,
+    Support,
+)
 from membrane.study import read_study
 
 
@@ -24,8 +34,12 @@ def _shapes(study: Study) -> list[tuple[str, str]]:
     pairs = zip(study.patches, sources, strict=True)
     patches = [(f"patch {patch.name}", _patch(patch, source)) for patch, source in pairs]
     holes = [(f"hole {hole.name}", _shape(hole.shape)) for hole in study.holes]
+    loads = [(f"line load {load.name}", _load(load)) for load in study.line_loads]
+    slits = [(f"slit {slit.name}", _shape(slit.line)) for slit in study.slits]
+    parts = [(f"edge part {part.name}", _part(part)) for part in study.edge_parts]
     title = [("title", study.title)] if study.title else []
-    return [*title, ("outline", _shape(study.outline)), *patches, *holes]
+    outline = ("outline", _shape(study.outline))
+    return [*title, outline, *patches, *holes, *loads, *slits, *parts]
 
 
 def _physics(study: Study) -> list[tuple[str, str]]:
@@ -69,6 +83,22 @@ def _patch(patch: Patch, source: Mapping[str, Any]) -> str:
         patch.bedding is not None and f"bedding {patch.bedding:g} N/m^3",
     ]
     return "; ".join([_shape(patch.shape), *(part for part in parts if part)])
+
+
+def _load(load: LineLoad) -> str:
+    parts = [
+        load.density > 0.0 and f"line density {load.density:g} kg/m",
+        load.stiffness > 0.0 and f"line stiffness {load.stiffness:g} N/m^2",
+    ]
+    return "; ".join([_shape(load.line), *(part for part in parts if part)])
+
+
+def _part(part: EdgePart) -> str:
+    if part.along is Along.CURVES:
+        return f"curves {part.start + 1:g} to {part.stop:g} of {part.edge}"
+    unit = "rad" if part.along is Along.ANGLE else "m"
+    times = f", {part.repeat} times" if part.repeat > 1 else ""
+    return f"{part.start:g} to {part.stop:g} {unit} of {part.edge}{times}"
 
 
 def _tension(source: Mapping[str, Any]) -> str:

@@ -12,8 +12,9 @@ from typing import Any
 
 import numpy as np
 
-from membrane.errors import MembraneError, MeshError, OutlineError
+from membrane.errors import MeshError, OutlineError
 from membrane.kernel.bent_corners import spoilt
+from membrane.kernel.failures import gmsh_failures
 from membrane.kernel.sizes import USUAL, Bend, size_map
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
@@ -183,10 +184,10 @@ class Kernel:
 
         Raises OutlineError where the kernel cannot cut them.
         """
-        finer = [*((1, curve) for curve in curves), *((0, point) for point in points)]
+        finer = [(1, curve) for curve in curves] + [(0, point) for point in points]
         if len(faces) > 1 or finer:
-            first, *others = [*((2, face) for face in faces), *finer]
-            with _gmsh_failures(OutlineError, "The shapes could not be cut by each other"):
+            first, *others = [(2, face) for face in faces] + finer
+            with gmsh_failures(OutlineError, "The shapes could not be cut by each other"):
                 _, covers = self._gmsh.model.occ.fragment([first], others)
         else:
             covers = [[(2, face)] for face in faces]
@@ -263,7 +264,7 @@ class Kernel:
     ) -> RawMesh:
         self._set_sizes(outline, sizes, bend, along)
         self._gmsh.model.mesh.clear()
-        with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
+        with gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
             self._gmsh.model.mesh.generate(2)
         if self._stop:
             raise self._stop
@@ -388,14 +389,3 @@ def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:
 @cache
 def _gauss() -> tuple[Floats, Floats]:
     return np.polynomial.legendre.leggauss(_PER_PANEL)
-
-
-@contextmanager
-def _gmsh_failures(kind: type[MembraneError], sentence: str) -> Iterator[None]:
-    """Turn gmsh's failures, which are plain Exceptions, into errors with a sentence."""
-    try:
-        yield
-    except Exception as failure:
-        if type(failure) is not Exception:
-            raise
-        raise kind(f"{sentence}: {failure}.") from failure

@@ -109,9 +109,7 @@ def _rays(kernel: Kernel, outline: Outline, raw: RawMesh) -> dict[int, list[Ray]
     return rays
 
 
-def _ray(
-    kernel: Kernel, raw: RawMesh, curve_of: dict[int, Curve], segment: int, end: int
-) -> Ray:
+def _ray(kernel: Kernel, raw: RawMesh, curve_of: dict[int, Curve], segment: int, end: int) -> Ray:
     here, there = raw.segments[end, segment], raw.segments[1 - end, segment]
     curve = int(raw.segment_curve[segment])
     parameter = raw.segment_parameters[[end], segment]

@@ -10,9 +10,9 @@ from membrane.mesh.checks import check_mesh
 from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
 from membrane.mesh.grade import graded
+from membrane.mesh.resolution import Resolution, region_sizes
 from membrane.mesh.slits import opened
 from membrane.mesh.waves_along import curve_sizes
-from membrane.mesh.resolution import Resolution, region_sizes
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from membrane.records.arrays import Ints
+from membrane.records.arrays import Bools, Ints
 from membrane.records.raw_mesh import RawMesh
 from membrane.triangle import EDGES
 
@@ -30,13 +30,11 @@ def opened(raw: RawMesh, curves: Sequence[int]) -> RawMesh:
         face=raw.face,
         segments=np.take_along_axis(ends, rising, axis=0),
         segment_curve=raw.segment_curve[segment],
-        segment_parameters=np.take_along_axis(
-            raw.segment_parameters[:, segment], rising, axis=0
-        ),
+        segment_parameters=np.take_along_axis(raw.segment_parameters[:, segment], rising, axis=0),
     )
 
 
-def _corners(raw: RawMesh, cut: Ints) -> Ints:
+def _corners(raw: RawMesh, cut: Bools) -> Ints:
     """(3, n_triangles): new vertex numbers of the triangles' corners."""
     from scipy.sparse import coo_array
     from scipy.sparse.csgraph import connected_components

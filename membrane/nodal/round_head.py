@@ -9,7 +9,7 @@ from typing import TypeAlias
 import numpy as np
 from numpy.typing import NDArray
 
-from membrane.evaluate import values_at
+from membrane.evaluate import locate, values_at
 from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
@@ -73,9 +73,18 @@ def _ring(mesh: Mesh, edges: Mapping[str, Edge]) -> _Ring | None:
     if any(np.ptp(r) > ROUND * outer for r in radii.values()):
         return None
     rim = {name for name, r in radii.items() if r.max() > (1.0 - ROUND) * outer}
-    inside = [float(r.mean()) for name, r in radii.items() if name not in rim]
+    inner = max((float(r.mean()) for name, r in radii.items() if name not in rim), default=0.0)
+    if len({edges[name] for name in rim}) > 1 or _goes_on_within(mesh, centre, inner):
+        return None
     held = all(edges[name].support is not Support.FREE for name in rim)
-    return _Ring(centre, max(inside, default=0.0), outer, held)
+    return _Ring(centre, inner, outer, held)
+
+
+def _goes_on_within(mesh: Mesh, centre: Floats, inner: float) -> bool:
+    """Whether the head reaches into its inner circle, which is then the arc of a slit."""
+    turn = 2 * np.pi * np.arange(MOST_ANGLES) / MOST_ANGLES
+    circle = (1.0 - 1e-3) * inner * np.array([np.cos(turn), np.sin(turn)])
+    return inner > 0.0 and bool((locate(mesh, centre[:, None] + circle).triangle >= 0).any())
 
 
 def _centre(points: Floats) -> Floats:

@@ -24,7 +24,11 @@ def curves(kernel: Kernel, cut: Cut, names: Names) -> tuple[Curve, ...]:
     found = [_named(kernel, cut, names, probe(kernel, tag)) for tag in sorted(tags)]
     order = names.order
     _check_all(names, {name for curve in found for name in curve.edges})
-    return tuple(sorted(found, key=lambda c: (min(map(order.get, c.edges), default=len(order)), c.tag)))
+    return tuple(sorted(found, key=lambda curve: (_rank(order, curve), curve.tag)))
+
+
+def _rank(order: Mapping[str, int], curve: Curve) -> int:
+    return min((order[name] for name in curve.edges), default=len(order))
 
 
 def _named(kernel: Kernel, cut: Cut, names: Names, probed: Probe) -> Curve:
@@ -89,7 +93,9 @@ def _check_all(names: Names, found: set[str]) -> None:
     for lips in names.slits:
         if not found.intersection(lips):
             slit = lips[0].removesuffix(".left")
-            raise OutlineError(f"The slit {slit} lies wholly outside the head; move it onto the head.")
+            raise OutlineError(
+                f"The slit {slit} lies wholly outside the head; move it onto the head."
+            )
     for name in names.order:
         if name not in found and name not in names.splits:
             raise OutlineError(
@@ -108,7 +114,9 @@ def check_lines(kernel: Kernel, names: Names, found: Iterable[Curve]) -> None:
         off = length - left[name]
         if off > _OFF * length:
             wholly = off > (1.0 - _OFF) * length
-            where = "wholly outside the head" if wholly else f"outside the head by {1e3 * off:.3g} mm"
+            where = (
+                "wholly outside the head" if wholly else f"outside the head by {1e3 * off:.3g} mm"
+            )
             raise OutlineError(
                 f"The line load {name} lies {where}; move it onto the head or make it shorter."
             )

@@ -23,9 +23,7 @@ def draw(kernel: Kernel, study: Study) -> Outline:
     patches, holes = _placed(kernel, study.patches), _placed(kernel, study.holes)
     known = names(kernel, study, outline, holes)
     corners = [point for split in known.splits.values() for point in split.points()]
-    pieces = cut(
-        kernel, outline.surface, _faces(patches), _faces(holes), known.cuts, corners
-    )
+    pieces = cut(kernel, outline.surface, _faces(patches), _faces(holes), known.cuts, corners)
     named = curves(kernel, pieces, known)
     check_lines(kernel, known, named)
     check_whole(kernel, named, pieces.patches)

@@ -14,7 +14,7 @@ from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
 from membrane.records.spectrum import Partial, Spectrum
 from membrane.records.study import Support
-from membrane.sides import inner_borders, lie_on
+from membrane.sides import inner_borders, lie_on, lie_on_lines
 from membrane.subdivision import Subdivision, subdivide
 
 if TYPE_CHECKING:
@@ -101,12 +101,13 @@ def _draw_shapes(
 def _draw_edges(
     axes: Axes, spectrum: Spectrum, divided: Subdivision, positions: Floats, sheet: Sheet
 ) -> None:
-    """Held edges heavy, free edges light, borders of patches thin."""
+    """Held edges heavy, free edges light, line loads and borders of patches thin."""
     mesh, study = spectrum.modes.space.mesh, spectrum.study
     held = [name for name in mesh.edges if study.edge(name).support is not Support.FREE]
     free = [name for name in mesh.edges if name not in held]
     styles: list[tuple[Any, str, float]] = [
         (inner_borders(mesh), PENCIL, 0.5),
+        (lie_on_lines(mesh), PENCIL, 0.7),
         (lie_on(mesh, free), PENCIL, 0.9),
         (lie_on(mesh, held), INK, 1.4),
     ]

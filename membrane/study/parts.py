@@ -14,7 +14,7 @@ from membrane.wording import nearest, shown
 
 _ENDS = ("from", "to")
 _KEYS = ("name", "edge", *_ENDS, "curves", "repeat")
-_UNITS = {Along.ANGLE: ("rad", Angle), Along.LENGTH: ("m", Length)}
+_UNITS: dict[Along, tuple[str, Any]] = {Along.ANGLE: ("rad", Angle), Along.LENGTH: ("m", Length)}
 _WANTED = 'expected an angle such as "30 deg" or a length along the edge such as "40 mm"'
 
 
@@ -23,19 +23,10 @@ class _Keys:
     edge: str
     repeat: int = 1
 
-    def __post_init__(self) -> None:
-        if self.repeat < 1:
-            raise ValueError(f"repeat: expected at least 1 part, got {self.repeat}.")
-
 
 @dataclass(frozen=True)
 class _Curves:
     curves: tuple[int, int]
-
-    def __post_init__(self) -> None:
-        first, last = self.curves
-        if not 1 <= first <= last:
-            raise ValueError("curves: expected the first and the last curve, counted from 1.")
 
 
 @dataclass(frozen=True)
@@ -70,6 +61,9 @@ def _curves(table: Table) -> _Stretch | None:
     if found is None:
         return None
     first, last = found.curves
+    if not 1 <= first <= last:
+        table.refuse("curves", "expected the first and the last curve, counted from 1.")
+        return None
     return _Stretch(Along.CURVES, first - 1.0, float(last))
 
 
@@ -117,6 +111,8 @@ def _turn(stretch: _Stretch) -> float:
 
 
 def _check_repeat(table: Table, keys: _Keys, stretch: _Stretch) -> None:
+    if keys.repeat < 1:
+        table.refuse("repeat", f"expected at least 1 part, got {keys.repeat}.")
     if stretch.along is Along.CURVES and keys.repeat > 1:
         table.refuse("repeat", "needs from and to; curves are counted, not repeated.")
     if stretch.along is Along.ANGLE and keys.repeat * _turn(stretch) > 2 * pi * (1 + 1e-12):

@@ -79,9 +79,7 @@ def read_shape(
     return Shape(name, options, where.at, where.rotate)
 
 
-def _will_do(
-    table: Table, which: _Which | None, module: Any, options: Any, kinds: Kinds
-) -> bool:
+def _will_do(table: Table, which: _Which | None, module: Any, options: Any, kinds: Kinds) -> bool:
     is_open = getattr(module, "OPEN", False)
     if is_open and kinds is Kinds.CLOSED:
         table.refuse(_key(which), "encloses no area; it is for line loads and slits only.")

@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from membrane.geometries import polygon, regular_polygon, sector
+from membrane.geometries import arc, polygon, polyline, regular_polygon, sector
 
 SQUARE = ((0.0, 0.0), (1.0, 0.0), (1.0, 1.0), (0.0, 1.0))
 
@@ -46,9 +46,30 @@ def test_two_sides_are_no_polygon():
         regular_polygon.Options(sides=2, radius=1.0)
 
 
-def test_a_slit_disc_is_not_available_yet():
-    with pytest.raises(ValueError, match="not available yet"):
-        sector.Options(radius=1.0, angle=2 * np.pi)
+def test_a_full_turn_is_a_slit_disc():
+    assert sector.Options(radius=1.0, angle=2 * np.pi).is_slit_disc
+    assert not sector.Options(radius=1.0, angle=6.28).is_slit_disc
+
+
+@pytest.mark.parametrize(
+    ("points", "closed", "sentence"),
+    [
+        (SQUARE[:1], False, "at least 2 points, not 1"),
+        (SQUARE[:2], True, "at least 3 points, not 2"),
+        ((SQUARE[0], SQUARE[1], SQUARE[1]), False, "point 2 and the next one are the same"),
+        ((*SQUARE, SQUARE[0]), True, "point 5 and the next one are the same"),
+        (((0.0, 0.0), (1.0, 0.0), (0.5, 0.0)), False, "turns back on itself at point 2"),
+    ],
+)
+def test_a_bad_polyline(points, closed, sentence):
+    with pytest.raises(ValueError, match=sentence):
+        polyline.Options(points, closed)
+
+
+@pytest.mark.parametrize(("start", "end"), [(1.0, 1.0), (1.0, 0.5), (0.0, 2 * np.pi)])
+def test_a_bad_arc(start, end):
+    with pytest.raises(ValueError, match="between 0 and 360 deg after its start"):
+        arc.Options(radius=1.0, start=start, end=end)
 
 
 @pytest.mark.parametrize("angle", [0.0, -1.0, 7.0])

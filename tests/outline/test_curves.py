@@ -6,8 +6,10 @@ import pytest
 from membrane.errors import OutlineError
 from membrane.kernel import Kernel
 from membrane.outline import draw
+from membrane.outline.copies import copies
 from membrane.outline.curves import curves
 from membrane.outline.cut import cut
+from membrane.outline.names import Names
 from tests.outline.studies import box, disc, study
 
 
@@ -46,7 +48,7 @@ def test_a_boundary_without_a_name_is_an_error():
         (side,) = kernel.copies([face.lines[0]._id])
         pieces = cut(kernel, face._id, {}, {})
         with pytest.raises(OutlineError, match="has no name"):
-            curves(kernel, pieces, {"side1": (side,)})
+            curves(kernel, pieces, Names(copies(kernel, "side1", [side]), {}, {}, [], {}))
 
 
 def test_edges_come_first_in_the_order_drawn():

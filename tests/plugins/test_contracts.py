@@ -27,6 +27,8 @@ OUTLINES = {
     "regular_polygon": {"sides": 7, "radius": 0.2},
     "sector": {"radius": 0.2, "angle": 4.0},
     "stadium": {"straight": 0.2, "width": 0.1},
+    "polyline": {"points": ((0.0, 0.0), (1.0, 0.0), (0.0, 1.0))},
+    "arc": {"radius": 0.2, "start": 1.0, "end": 5.0},
 }
 
 
@@ -45,6 +47,12 @@ LOADED = {
     **zoo.PATCHED,
     "head": {"areal_density": 1.0, "tension": {"xx": 1.0, "xy": 0.2, "yy": 2.0}, "bedding": 1.0},
     "edges": {"rim": {"support": "elastic", "stiffness": 3.0, "mass": 0.1}},
+    "line_loads": [
+        {
+            **{"name": "wire", "shape": "polyline", "points": [[0.0, 0.0], [0.0, 0.5]]},
+            **{"line_density": 0.1, "line_stiffness": 2.0},
+        }
+    ],
 }
 
 
