@@ -97,5 +97,9 @@ CASES: dict[str, dict[str, Any]] = {
     "regular_8gon_fixed": regular(8),
     "square_hole_fixed_c_r0p2": square_hole("fixed"),
     "square_hole_free_c_r0p2": square_hole("free"),
+    "disc_ringmass_r0p5_mu0p3": case(
+        DISC,
+        line_loads=[{"name": "ring", "shape": "disc", "diameter": 1.0, "line_density": 0.3}],
+    ),
     "stadium_a1_r1_fixed": case({"shape": "stadium", "straight": 2.0, "width": 2.0}),
 }
