@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from membrane.sides import inner_borders, lie_on, nodes_on, sides
+from membrane.sides import inner_borders, lie_on, lie_on_lines, nodes_on, sides
 from tests import zoo
 
 
@@ -39,3 +39,12 @@ def test_the_border_of_a_patch_is_marked_once() -> None:
 
 def test_a_plain_head_has_no_inner_border() -> None:
     assert not inner_borders(zoo.prepared(zoo.DISC).mesh).any()
+
+
+def test_sides_on_a_line_load_are_marked_in_both_triangles() -> None:
+    ring = {"name": "ring", "shape": "disc", "diameter": 1.0, "line_density": 1.0}
+    mesh = zoo.prepared({**zoo.DISC, "line_loads": [ring]}).mesh
+    on = lie_on_lines(mesh)
+    assert on.sum() == 2 * mesh.lines["ring"].shape[1]
+    assert np.allclose(np.hypot(*nodes_on(mesh, on)), 0.5)
+    assert not lie_on_lines(zoo.prepared(zoo.DISC).mesh).any()

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import defaultdict
-from math import ceil, inf, log
+from math import atan2, ceil, inf, log
 
 import numpy as np
 
@@ -12,14 +12,20 @@ from membrane.mesh.corners import Corner
 from membrane.records.arrays import Floats
 from membrane.records.raw_mesh import RawMesh
 
-RATIOS = ((0.5, 0.45), (1.0, 0.4), (inf, 0.3))
+RATIOS = ((1.0, 0.4), (inf, 0.3))
 """Size of each layer to the one around it, for exponents up to the first number.
 
 A polynomial follows r^a across a layer the better the thinner it is; with these, elements
 of degree 8 leave less than 1e-9 at slits and reentrant corners in our trials.
 """
 
-SMALLEST = 4e-12
+STRONG = 1.0
+"""Exponent below which wide triangles at a corner are halved."""
+
+WIDEST = 1.1
+"""Widest angle of a triangle at a strong corner, radians: a little over 60 degrees."""
+
+SMALLEST = 2e-11
 """Size of the innermost layer to the corner's coordinates, well above their rounding."""
 
 DEEPEST = 60
@@ -43,6 +49,8 @@ def graded(kernel: Kernel, raw: RawMesh, corners: tuple[Corner, ...], tolerance:
     """The mesh with every corner's triangles cut into layers that shrink towards it."""
     growing = _Growing(kernel, raw)
     for corner in corners:
+        if corner.exponent < STRONG:
+            growing.narrow(corner.vertex)
         depth = layers(corner.exponent, tolerance)
         growing.grade(corner.vertex, depth, ratio(corner.exponent))
     return growing.raw_mesh()
@@ -64,6 +72,31 @@ class _Growing:
         sides = zip(raw.segments.T, raw.segment_curve, raw.segment_parameters.T, strict=True)
         for (tail, tip), curve, (start, stop) in sides:
             self._add_segment(int(tail), int(tip), int(curve), float(start), float(stop))
+
+    def narrow(self, vertex: int) -> None:
+        """Halve the triangles that are wide at a vertex, which follow r^a worst."""
+        for number in sorted(self.touching[vertex]):
+            here, left, right = (self.places[v] for v in self._turned(number, vertex))
+            (ux, uy), (vx, vy) = left - here, right - here
+            if atan2(ux * vy - uy * vx, ux * vx + uy * vy) > WIDEST:
+                self._halve(*self._turned(number, vertex)[1:])
+
+    def _halve(self, tail: int, tip: int) -> None:
+        """Put a vertex in the middle of a side and halve the triangles beside it."""
+        middle = len(self.places)
+        segment = self._pop_segment(tail, tip)
+        if segment is None:
+            self.places.append(0.5 * (self.places[tail] + self.places[tip]))
+        else:
+            curve, start, stop = segment
+            half = 0.5 * (start + stop)
+            self.places.append(self.kernel.evaluate(curve, np.array([half]))[:, 0])
+            self._add_segment(tail, middle, curve, start, half)
+            self._add_segment(middle, tip, curve, half, stop)
+        for number in sorted(self.touching[tail] & self.touching[tip]):
+            apex = next(v for v in self.triangles[number] if v not in (tail, tip))
+            _, left, right = self._turned(number, apex)
+            self._replace(number, [(apex, left, middle), (apex, middle, right)])
 
     def _room(self, vertex: int, shrink: float) -> int:
         """How many layers the rounding of a vertex's coordinates leaves room for."""
@@ -106,12 +139,15 @@ class _Growing:
 
     def _cut(self, number: int, left: list[int], right: list[int]) -> None:
         """Replace a triangle by its innermost part and a ring piece for each layer."""
-        face = self.faces[number]
-        for vertex in self.triangles[number]:
-            self.touching[vertex].discard(number)
         pieces = [(left[-1], left[-2], right[-2])]
         for k in range(len(left) - 2):
             pieces.extend(self._ring(left[k + 1], left[k], right[k], right[k + 1]))
+        self._replace(number, pieces)
+
+    def _replace(self, number: int, pieces: list[tuple[int, int, int]]) -> None:
+        face = self.faces[number]
+        for vertex in self.triangles[number]:
+            self.touching[vertex].discard(number)
         self._put(number, pieces[0], face)
         for piece in pieces[1:]:
             self._put(len(self.triangles), piece, face)

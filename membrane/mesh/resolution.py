@@ -48,7 +48,7 @@ def first_resolution(wanted: ModesWanted) -> Resolution:
     """What should be fine enough for the wanted accuracy at the first try."""
     relative = wanted.accuracy / CENTS_PER_UNIT
     degree = wanted.degree or _degree_for(relative)
-    return Resolution(degree, _phase_for(relative, degree - COARSER_BY), 1e-3 * relative)
+    return Resolution(degree, _phase_for(relative, degree - COARSER_BY), 3e-3 * relative)
 
 
 def _degree_for(relative: float) -> int:

@@ -94,3 +94,70 @@ def test_patch_corners_inside_the_head():
     tight = found({**zoo.DISC, "patches": [{**patch, "tension": 2.0}]})
     assert sorted(heavy.values()) == [2.0] * 4
     assert sorted(tight.values()) == [0.5] * 4
+
+
+ROUND = {"edge": "rim", "name": "part", "from": "20 deg", "to": "80 deg"}
+
+
+@pytest.mark.parametrize(
+    ("part", "rim", "exponent"),
+    [
+        ({"support": "free"}, {}, 0.5),
+        ({"support": "elastic", "stiffness": 2.0}, {}, 0.5),
+        ({"support": "elastic", "stiffness": 2.0}, {"support": "free"}, 1.0),
+        ({"support": "free", "mass": 2.0}, {"support": "free"}, 1.0),
+    ],
+)
+def test_where_supports_change_along_a_smooth_rim(part, rim, exponent):
+    """1/2 between fixed and moving; r log r where only the springs or the mass jump."""
+    singular = found({**zoo.DISC, "edge_parts": [ROUND], "edges": {"part": part, "rim": rim}})
+    places = {(np.cos(a), np.sin(a)) for a in np.radians([20.0, 80.0])}
+    assert {tuple(np.round(p, 9)) for p in places} == set(singular)
+    assert list(singular.values()) == pytest.approx([exponent] * 2)
+
+
+def test_parts_held_alike_leave_the_rim_smooth():
+    free = {"support": "free", "mass": 1.0}
+    assert found({**zoo.DISC, "edge_parts": [ROUND], "edges": {"part": free, "rim": free}}) == {}
+
+
+@pytest.mark.parametrize(
+    ("left", "right", "exponent"),
+    [("fixed", "fixed", 0.5), ("free", "free", 0.5), ("free", "fixed", 0.25)],
+)
+def test_tips_of_a_slit(left, right, exponent):
+    """pi/w and pi/2w at an opening of 360 degrees."""
+    slit = {"name": "cut", "points": [[-0.3, 0.1], [0.4, 0.1]]}
+    slit |= {"left": {"support": left}, "right": {"support": right}}
+    assert found({**zoo.DISC, "slits": [slit]}) == pytest.approx(
+        {(-0.3, 0.1): exponent, (0.4, 0.1): exponent}
+    )
+
+
+def wire(name, *points):
+    return {"name": name, "shape": "polyline", "points": list(points), "line_density": 0.2}
+
+
+def test_a_line_load_ends_bends_and_crosses():
+    """Half lines of charge have r log r where they end; two that go straight on cancel it."""
+    bent = found({**zoo.SQUARE, "line_loads": [wire("w", [0.2, 0.2], [0.6, 0.3], [0.5, 0.8])]})
+    assert bent == {(0.2, 0.2): 1.0, (0.6, 0.3): 1.0, (0.5, 0.8): 1.0}
+    level, upright = wire("level", [0.2, 0.5], [0.8, 0.5]), wire("upright", [0.5, 0.0], [0.5, 1.0])
+    crossing = found({**zoo.SQUARE, "line_loads": [level, upright]})
+    assert crossing == {
+        **{(0.2, 0.5): 1.0, (0.8, 0.5): 1.0, (0.5, 0.5): 2.0},
+        **{(0.5, 0.0): 2.0, (0.5, 1.0): 2.0},
+    }
+
+
+def test_a_straight_joint_of_a_line_load_is_no_corner():
+    straight = wire("w", [0.5, 0.0], [0.5, 0.4], [0.5, 1.0])
+    assert (0.5, 0.4) not in found({**zoo.SQUARE, "line_loads": [straight]})
+
+
+def test_woven_tension_keeps_a_crossing_in_balance():
+    woven = {"areal_density": 1.0, "tension": {"xx": 1.0, "xy": 0.4, "yy": 3.0}}
+    loads = [wire("a", [0.3, 0.3], [0.7, 0.6]), wire("b", [0.5, 0.2], [0.5, 0.9])]
+    crossing = found({**zoo.SQUARE, "head": woven, "line_loads": loads})
+    inner = [exponent for (x, y), exponent in crossing.items() if 0 < x < 1 and 0 < y < 1]
+    assert sorted(inner) == [1.0] * 4 + [2.0]

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from membrane.mesh.corners import Corner, corners
-from membrane.mesh.grade import graded, layers, ratio
+from membrane.mesh.grade import SMALLEST, WIDEST, graded, layers, ratio
 from membrane.mesh.resolution import region_sizes
 from tests import zoo
 
@@ -75,3 +75,33 @@ def test_new_vertices_lie_on_the_curve():
     off = np.where(np.abs(x) > 1, np.hypot(np.abs(x) - 1, y) - 1, np.abs(y) - 1)
     assert len(singular) == 4
     assert np.abs(off).max() < 1e-12
+
+
+def test_wide_triangles_at_a_strong_corner_are_halved():
+    slit = {"name": "cut", "points": [[1.0, -0.1], [1.0, 0.4]]}
+    box = {"shape": "rectangle", "width": 2.0, "height": 0.8}
+    before, singular, after = meshes({**zoo.SQUARE, "outline": box, "slits": [slit]})
+    (corner,) = (c for c in singular if c.exponent == 0.5)
+    place = before.vertices[:, corner.vertex]
+
+    def widest(raw):
+        touching = raw.triangles[:, (raw.triangles == corner.vertex).any(axis=0)]
+        arms = raw.vertices[:, touching] - place[:, None, None]
+        directions = np.angle(arms[0] + 1j * arms[1])
+        away = touching != corner.vertex
+        ends = directions.T[away.T].reshape(-1, 2)
+        return np.abs((np.diff(ends, axis=1) + np.pi) % (2 * np.pi) - np.pi).max()
+
+    assert widest(after) <= WIDEST < widest(before)
+
+
+def test_layers_stop_above_the_rounding_of_the_coordinates():
+    """A tip with mixed lips asks for more layers than its place leaves room for."""
+    slit = {"name": "cut", "points": [[0.3, 0.5], [0.7, 0.5]], "left": {"support": "free"}}
+    _, singular, after = meshes({**zoo.SQUARE, "slits": [slit]}, 1e-9)
+    for corner in singular:
+        place = after.vertices[:, corner.vertex]
+        touching = after.triangles[:, (after.triangles == corner.vertex).any(axis=0)]
+        ends = np.setdiff1d(touching, [corner.vertex])
+        nearest = np.linalg.norm(after.vertices[:, ends] - place[:, None], axis=0).min()
+        assert nearest > 0.3 * SMALLEST * np.linalg.norm(place)

@@ -167,3 +167,20 @@ def test_the_length_of_a_circle_of_sixty_points() -> None:
     assert abs(length(circle) / (2.0 * np.pi) - 1.0) < 1e-6
     assert abs(length(circle[:, :16]) / (0.5 * np.pi) - 1.0) < 1e-6
     assert length(np.array([[0.0, 3.0], [0.0, 4.0]])) == 5.0
+
+
+def test_a_rim_held_in_two_ways_names_no_circles() -> None:
+    part = {"edge": "rim", "name": "part", "from": "0 deg", "to": "5 deg"}
+    keys = {**zoo.DISC, "edge_parts": [part], "edges": {"part": {"support": "free"}}}
+    modes = modes_of(zoo.prepared(keys).mesh, 6, [lambda x, y: 1 - x**2 - y**2])
+    (pattern,) = nodal_patterns(modes, study_from(keys).edges)
+    assert pattern.circles is None
+
+
+def test_the_arc_of_a_slit_is_no_inner_circle() -> None:
+    """1 - r^2 has no nodal circle but the rim, on either side of the cut."""
+    slit = {"name": "cut", "shape": "arc", "radius": 0.5, "start": 0.0, "end": 3.0}
+    keys = {**zoo.DISC, "slits": [{**slit, "support": "free"}]}
+    modes = modes_of(zoo.prepared(keys).mesh, 6, [lambda x, y: 1 - x**2 - y**2], ("rim",))
+    (pattern,) = nodal_patterns(modes, study_from(keys).edges)
+    assert pattern.circles is None

@@ -11,6 +11,8 @@ that same part is singular.
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 import numpy as np
 from scipy.optimize import brentq
 from scipy.special import jv
@@ -41,9 +43,7 @@ class MixedSide:
         table = [terms[:, :n] @ self.sines[:, :n].T for n in SUMS]
         for power in range(1, len(SUMS)):
             factor = 2.0**power
-            table = [
-                (factor * b - a) / (factor - 1) for a, b in zip(table, table[1:], strict=False)
-            ]
+            table = [(factor * b - a) / (factor - 1) for a, b in pairwise(table)]
         return table[0]
 
     def eigenvalue(self, near: float, window: float = 1e-6) -> float:

@@ -106,5 +106,3 @@ def test_open_lines_converge(lines):
     """No closed form: the shortest study against one that asks for a thousandth of the error."""
     finer = eigenvalues(DISC, line_loads=lines, modes={"accuracy": 1e-5})
     assert error(eigenvalues(DISC, line_loads=lines), finer) < 2e-9
-
-

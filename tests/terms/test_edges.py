@@ -48,3 +48,17 @@ def test_a_free_head_moves_rigidly_until_something_holds_it():
     free = {**zoo.DISC, "edges": {"rim": {"support": "free"}}}
     assert contributions(free)[0].moves_rigidly
     assert not contributions({**free, "head": {**zoo.HEAD, "bedding": 1.0}})[0].moves_rigidly
+
+
+def test_line_loads_stand_under_their_own_keys():
+    wire = {"name": "wire", "shape": "polyline", "points": [[0, 0], [0, 0.5]]}
+    hoop = {"name": "hoop", "shape": "disc", "diameter": 1.0, "line_stiffness": 3.0}
+    loads = [{**wire, "line_density": 0.2}, hoop]
+    free = {**zoo.DISC, "edges": {"rim": {"support": "free"}}, "line_loads": loads}
+    membrane, found = contributions(free)
+    assert found == {
+        "line_loads.hoop.line_stiffness": (Field.LINE_STIFFNESS, ("hoop",), 3.0),
+        "line_loads.wire.line_density": (Field.LINE_MASS, ("wire",), 0.2),
+    }
+    assert not membrane.moves_rigidly
+    assert contributions({**free, "line_loads": loads[:1]})[0].moves_rigidly
