@@ -28,6 +28,9 @@ WIDEST = 1.1
 SMALLEST = 2e-11
 """Size of the innermost layer to the corner's coordinates, well above their rounding."""
 
+GAPS = 1e3
+"""Size of the innermost layer to what the kernel leaves between a corner and its curves."""
+
 DEEPEST = 60
 """Most layers at one corner."""
 
@@ -99,12 +102,23 @@ class _Growing:
             self._replace(number, [(apex, left, middle), (apex, middle, right)])
 
     def _room(self, vertex: int, shrink: float) -> int:
-        """How many layers the rounding of a vertex's coordinates leaves room for."""
+        """How many layers the rounding of a vertex and of its curves leaves room for."""
         here = self.places[vertex]
         around = {v for number in self.touching[vertex] for v in self.triangles[number]}
         size = min(float(np.linalg.norm(self.places[v] - here)) for v in around - {vertex})
-        rounding = SMALLEST * float(np.linalg.norm(here))
+        gap = max((self._gap(vertex, v) for v in around - {vertex}), default=0.0)
+        rounding = max(SMALLEST * float(np.linalg.norm(here)), GAPS * gap)
         return max(ceil(log(max(rounding / size, 1e-300)) / log(shrink)), 1)
+
+    def _gap(self, vertex: int, end: int) -> float:
+        """How far a vertex lies off the curve under a side that leaves it, metres."""
+        segment = self.segments.get((min(vertex, end), max(vertex, end)))
+        if segment is None:
+            return 0.0
+        curve, *parameters = segment
+        at = np.array([parameters[0 if vertex < end else 1]])
+        away = self.kernel.evaluate(curve, at)[:, 0] - self.places[vertex]
+        return float(np.linalg.norm(away))
 
     def grade(self, vertex: int, depth: int, shrink: float) -> None:
         """Cut the triangles at a vertex into layers, each ``shrink`` times the last one."""

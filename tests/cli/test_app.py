@@ -183,6 +183,30 @@ def test_check_says_what_would_be_solved(study):
     ]
 
 
+def test_check_names_lines_and_parts(tmp_path):
+    file = tmp_path / "lines.toml"
+    file.write_text(
+        '[outline]\nshape = "disc"\ndiameter = 1\n[head]\nareal_density = 1\ntension = 1\n'
+        '[[line_loads]]\nname = "wire"\nshape = "polyline"\npoints = [[0, 0], [0.1, 0]]\n'
+        'line_density = "3 g/m"\nline_stiffness = 2\n'
+        '[[slits]]\nname = "cut"\npoints = [[0, 0.1], [0.1, 0.1]]\nleft = {support = "free"}\n'
+        '[[edge_parts]]\nname = "lugs"\nedge = "rim"\nfrom = "0 deg"\nto = "9 deg"\nrepeat = 6\n'
+        '[[edge_parts]]\nname = "whole"\nedge = "rim"\ncurves = [1, 1]\n'
+    )
+    shown = invoke("check", file).stdout.splitlines()
+    for line in (
+        "line load wire   polyline: points [[0, 0], [0.1, 0]] m, closed False; "
+        "line density 0.003 kg/m; line stiffness 2 N/m^2",
+        "slit cut         polyline: points [[0, 0.1], [0.1, 0.1]] m, closed False",
+        "edge part lugs   0 to 0.15708 rad of rim, 6 times",
+        "edge part whole  curves 1 to 1 of rim",
+        "edge lugs        fixed",
+        "edge cut.left    free",
+        "edge cut.right   fixed",
+    ):
+        assert line in shown
+
+
 def test_plugins_are_listed(monkeypatch):
     done = invoke("plugins")
     assert done.exit_code == 0

@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 import json
+import tomllib
 from math import pi, radians
 from pathlib import Path
 
 import numpy as np
 import pytest
 
-from membrane.records.study import Edge, ModesWanted, Study, Support
+from membrane.records.study import Along, Edge, ModesWanted, Study, Support
 from membrane.study import read_study, study_from
 
 WHOLE = """
@@ -261,3 +262,66 @@ def test_an_outline_script_beside_the_study(tmp_path):
     assert study.edges["east"].support is Support.FREE
     assert study.edges["north"].support is Support.FIXED
     assert_same(study_from(study.source, base="/nowhere"), study)
+
+
+LINES = """
+outline = {shape = "disc", diameter = "356 mm"}
+head = {areal_density = 0.3, tension = "3 kN/m"}
+[[line_loads]]
+name = "hoop"
+shape = "disc"
+diameter = "250 mm"
+line_density = "20 g/m"
+[[line_loads]]
+name = "seam"
+shape = "arc"
+radius = "50 mm"
+start = "10 deg"
+end = "200 deg"
+line_stiffness = 3.0
+[[slits]]
+name = "cut"
+points = [[0, 0], ["10 mm", 0]]
+support = "free"
+mass = 0.1
+right = {support = "elastic", stiffness = 4.0}
+[[edge_parts]]
+name = "lugs"
+edge = "rim"
+from = "-5 deg"
+to = "5 deg"
+repeat = 6
+[[edge_parts]]
+name = "gap"
+edge = "rim"
+from = "40 mm"
+to = "60 mm"
+[edges.gap]
+support = "free"
+"""
+
+
+def test_lines_slits_and_edge_parts():
+    found = study_from(tomllib.loads(LINES))
+    hoop, seam = found.line_loads
+    assert (hoop.name, hoop.density, hoop.stiffness) == ("hoop", 0.02, 0.0)
+    assert (seam.line.plugin, seam.density, seam.stiffness) == ("arc", 0.0, 3.0)
+    (cut,) = found.slits
+    assert cut.line.options.points == ((0.0, 0.0), (0.01, 0.0))
+    assert found.edges == {
+        "rim": Edge(),
+        "lugs": Edge(),
+        "gap": Edge(Support.FREE),
+        "cut.left": Edge(Support.FREE, mass=0.1),
+        "cut.right": Edge(Support.ELASTIC, 4.0),
+    }
+    lugs, gap = found.edge_parts
+    assert (lugs.along, lugs.repeat, lugs.stop) == (Along.ANGLE, 6, pytest.approx(np.pi / 36))
+    assert (gap.along, gap.start, gap.stop) == (Along.LENGTH, 0.04, 0.06)
+
+
+def test_their_source_reads_as_the_same_study():
+    found = study_from(tomllib.loads(LINES))
+    again = study_from(found.source)
+    for name in ("line_loads", "slits", "edge_parts", "edges", "source"):
+        assert getattr(again, name) == getattr(found, name)
