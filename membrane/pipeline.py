@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from time import perf_counter
 
@@ -39,12 +39,13 @@ ALWAYS_WRITTEN = ("summary", "modes_csv")
 
 @dataclass(frozen=True)
 class _Solution:
-    """One mesh with its modes and their estimated error."""
+    """One mesh with its modes and their estimated error; notes on the outline."""
 
     mesh: Mesh
     pencil: Pencil
     modes: Modes
     error: Estimate
+    notes: tuple[str, ...] = ()
 
 
 class _Clock:
@@ -82,6 +83,7 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
         complete=solution.modes.complete,
         mesh_facts=_facts(solution),
         timings=clock.seconds,
+        notes=solution.notes,
     )
 
 
@@ -108,7 +110,7 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             if solution.error.excess <= 1.0 or attempt == MESHES - 1:
                 break
             resolution = resolution.finer(solution.error.excess)
-    return solution
+    return replace(solution, notes=outline.notes)
 
 
 def _solve_on(

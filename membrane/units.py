@@ -13,6 +13,7 @@ from fractions import Fraction
 from functools import lru_cache
 from math import inf, isclose, isfinite, pi
 from numbers import Real
+from pathlib import Path
 from typing import Annotated, Any, TypeAlias
 
 from membrane.wording import nearest, shown
@@ -139,6 +140,38 @@ class _Angle(Quantity):
             raise ValueError(f"expected an angle within one turn, got {shown(value)}{hint}.")
 
 
+@dataclass(frozen=True)
+class _Unit(Quantity):
+    """A unit by its name, "mm", or by what it measures, "25.4 mm"."""
+
+    def read(self, value: Any) -> float:
+        named = isinstance(value, str) and value.strip()[:1].isalpha()
+        return super().read(f"1 {value.strip()}" if named else value)
+
+
+@dataclass(frozen=True)
+class _File:
+    """The path of a file that is there; a relative one starts from the study's folder.
+
+    The reader of a study hands that folder over as the pydantic context's ``base``.
+    """
+
+    def read(self, value: Any, info: Any) -> Path:
+        """The whole path. Raises ValueError with a sentence."""
+        if not isinstance(value, str | Path):
+            raise ValueError(f"expected the path of a file, got {shown(value)}.")
+        base = Path((info.context or {}).get("base", "."))
+        path = (base / Path(value).expanduser()).resolve()
+        if not path.is_file():
+            raise ValueError(f"there is no file {path}; its path starts from the study file.")
+        return path
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: Any) -> Any:
+        from pydantic_core import core_schema
+
+        return core_schema.with_info_plain_validator_function(self.read)
+
+
 @lru_cache(maxsize=256)
 def _root(unit: str) -> tuple[float, str]:
     """Factor and name of pint's root unit. Raises ValueError for an unknown unit."""
@@ -193,6 +226,9 @@ _DENSITY = Quantity("a density", "kg/m^3", "1390 kg/m^3", Sign.NOT_NEGATIVE)
 _PRESSURE = Quantity("a pressure", "Pa", "101 kPa")
 
 Length: TypeAlias = Annotated[float, _LENGTH]
+UnitOfLength: TypeAlias = Annotated[
+    float, _Unit("a unit of length", "m", "mm", Sign.POSITIVE)
+]
 PositiveLength: TypeAlias = Annotated[float, _positive(_LENGTH)]
 Point: TypeAlias = tuple[Length, Length]
 Angle: TypeAlias = Annotated[float, _ANGLE]
@@ -211,3 +247,4 @@ PositiveCents: TypeAlias = Annotated[float, _positive(_CENTS)]
 Density: TypeAlias = Annotated[float, _DENSITY]
 PositiveDensity: TypeAlias = Annotated[float, _positive(_DENSITY)]
 Pressure: TypeAlias = Annotated[float, _PRESSURE]
+File: TypeAlias = Annotated[Path, _File()]

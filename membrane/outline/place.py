@@ -18,10 +18,12 @@ class Placed:
 
     face : its kernel surface
     edges : edge name -> loose copies of its curves, which later cuts leave whole
+    notes : what the plugin has to say about the shape
     """
 
     face: int
     edges: Mapping[str, tuple[int, ...]]
+    notes: tuple[str, ...] = ()
 
 
 def place(kernel: Kernel, shape: Shape) -> Placed:
@@ -34,7 +36,7 @@ def place(kernel: Kernel, shape: Shape) -> Placed:
         edges[name] = tuple(kernel.copies(curves))
     loose = [curve for curves in edges.values() for curve in curves]
     kernel.place(face, loose, shape.rotate, shape.at)
-    return Placed(face, edges)
+    return Placed(face, edges, drawing.notes)
 
 
 def _tag(drawn: Any, dim: int, plugin: str) -> int:

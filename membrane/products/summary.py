@@ -40,6 +40,7 @@ def contents(spectrum: Spectrum) -> dict[str, Any]:
         "mesh": {**_facts(spectrum.mesh_facts), "regions": list(_regions(spectrum))},
         "timings": dict(spectrum.timings),
         "complete": bool(spectrum.complete),
+        "notes": list(spectrum.notes),
         "modes": [row(partial) for partial in spectrum.partials],
     }
 

@@ -130,6 +130,7 @@ def _footer(spectrum: Spectrum) -> list[str]:
     return [
         " ".join(reading),
         " ".join([_completeness(spectrum), BRACKETS[partials[-1].bracket], *_shortfall(spectrum)]),
+        *spectrum.notes,
         NOT_COVERED,
         CAUTION,
     ]

@@ -16,10 +16,12 @@ class Drawing:
     surface : the pygmsh surface that the shape covers
     edges : edge name -> the pygmsh curves that make it; a name with no curves
         (an empty sequence) takes the whole boundary
+    notes : sentences for the user on how the shape was come by
     """
 
     surface: Any
     edges: Mapping[str, Sequence[Any]] = field(default_factory=dict)
+    notes: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -54,10 +56,14 @@ class Curve:
 
 @dataclass(frozen=True)
 class Outline:
-    """The cut outline as it stands in the open kernel session."""
+    """The cut outline as it stands in the open kernel session.
+
+    notes : sentences for the user on how its shapes were come by
+    """
 
     regions: tuple[Region, ...]
     curves: tuple[Curve, ...]
+    notes: tuple[str, ...] = ()
 
     @property
     def area(self) -> float:

@@ -59,6 +59,7 @@ class Spectrum:
     complete : True only if it is proven that no mode below the last is missing
     timings : seconds by stage
     mesh_facts : triangles, unknowns, degree, area and the like, by name
+    notes : sentences for the user on how the outline was come by
     """
 
     study: Study
@@ -67,6 +68,7 @@ class Spectrum:
     complete: bool
     mesh_facts: Mapping[str, float]
     timings: Mapping[str, float]
+    notes: tuple[str, ...] = ()
 
     @property
     def frequencies(self) -> Floats:

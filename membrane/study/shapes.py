@@ -15,7 +15,7 @@ from membrane.units import Angle, Point
 from membrane.wording import shown
 
 _OWN_KEYS = ("shape", "script", "at", "rotate")
-_LATER = ("rounded_rectangle", "spline", "fourier", "file")
+_LATER = ("rounded_rectangle", "spline", "fourier")
 
 
 @dataclass(frozen=True)
@@ -39,7 +39,7 @@ class _Where:
 def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | None:
     """The shape of a table whose keys ``besides`` belong to something else.
 
-    base : the folder that a script's path starts from
+    base : the folder that the paths of scripts and files start from
     """
     which = table.read(_Which, table.only(("shape", "script")))
     where = table.read(_Where, table.only(("at", "rotate")))
@@ -49,7 +49,7 @@ def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | No
     others = (*_OWN_KEYS, *besides)
     try:
         module = plugins.load("outline", name)
-        options = table.read(module.Options, table.without(*others), others)
+        options = table.read(module.Options, table.without(*others), others, base)
     except PluginError as error:
         table.refuse(_key(which), str(error))
         return None
