@@ -226,9 +226,7 @@ _DENSITY = Quantity("a density", "kg/m^3", "1390 kg/m^3", Sign.NOT_NEGATIVE)
 _PRESSURE = Quantity("a pressure", "Pa", "101 kPa")
 
 Length: TypeAlias = Annotated[float, _LENGTH]
-UnitOfLength: TypeAlias = Annotated[
-    float, _Unit("a unit of length", "m", "mm", Sign.POSITIVE)
-]
+UnitOfLength: TypeAlias = Annotated[float, _Unit("a unit of length", "m", "mm", Sign.POSITIVE)]
 PositiveLength: TypeAlias = Annotated[float, _positive(_LENGTH)]
 Point: TypeAlias = tuple[Length, Length]
 Angle: TypeAlias = Annotated[float, _ANGLE]

@@ -12,6 +12,7 @@ from membrane.drawings.join import Gap, Loop, said
 from membrane.drawings.pieces import Line, Points
 from membrane.drawings.sketch import WHOLE, Stroke
 from membrane.errors import DrawingError
+from membrane.records.arrays import Bools
 from membrane.wording import listed, nearest, shown
 
 UNNAMED = "rim"
@@ -68,14 +69,14 @@ class Contour:
         inside = self._inside(other.polygon)
         return inside.size == 0 or float(np.mean(inside)) > 0.5
 
-    def _inside(self, points: Points) -> Points:
+    def _inside(self, points: Points) -> Bools:
         """For each of the points that are not on the contour, whether it is inside."""
         start = self.polygon
         end = np.roll(start, -1)
         near = _TOUCHING * float(abs(start - start[0]).max())
         free = points[[_distance(point, start, end) > near for point in points]]
         turns = [np.angle((end - point) / (start - point)).sum() for point in free]
-        return np.abs(np.array(turns)) > np.pi
+        return np.asarray(np.abs(turns) > np.pi)
 
 
 def _distance(point: complex, start: Points, end: Points) -> float:

@@ -57,9 +57,7 @@ def _short(failure: Exception) -> str:
 def _hidden(document: Any) -> set[str]:
     """Layers that are switched off or frozen, and so not seen."""
     return {
-        layer.dxf.name.lower()
-        for layer in document.layers
-        if layer.is_off() or layer.is_frozen()
+        layer.dxf.name.lower() for layer in document.layers if layer.is_off() or layer.is_frozen()
     }
 
 
@@ -103,7 +101,9 @@ class _Reader:
     def level(self, entity: Any, height: float = 0.0) -> Affine:
         """From the plane that an entity is drawn in to the drawing's own."""
         ocs = entity.ocs()
-        origin, right, up = (ocs.to_wcs(p) for p in ((0, 0, height), (1, 0, height), (0, 1, height)))
+        origin, right, up = (
+            ocs.to_wcs(p) for p in ((0, 0, height), (1, 0, height), (0, 1, height))
+        )
         self.heights += [origin.z, right.z, up.z]
         right, up = right - origin, up - origin
         return Affine.matrix(right.x, right.y, up.x, up.y, origin.x, origin.y)

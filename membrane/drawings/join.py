@@ -58,8 +58,12 @@ def joined(strokes: Iterable[Stroke], tolerance: float) -> tuple[Loop, ...]:
 def _whole(strokes: Iterable[Stroke], tolerance: float) -> list[Stroke]:
     """The strokes in parts, without those that are no more than a dot."""
     found = [replace(s, piece=part) for s in strokes for part in parts(s.piece, tolerance)]
-    return [s for s in found if np.ptp(s.piece.at(_SAMPLES).real) > tolerance
-            or np.ptp(s.piece.at(_SAMPLES).imag) > tolerance]
+    return [
+        s
+        for s in found
+        if np.ptp(s.piece.at(_SAMPLES).real) > tolerance
+        or np.ptp(s.piece.at(_SAMPLES).imag) > tolerance
+    ]
 
 
 def _without_doubles(strokes: list[Stroke], tolerance: float) -> list[Stroke]:

@@ -15,7 +15,6 @@ import numpy as np
 from membrane.drawings.pieces import Bezier, Line, Points
 from membrane.drawings.sketch import WHOLE, Sketch, Stroke
 from membrane.errors import DrawingError
-from membrane.records.arrays import Ints
 
 FLAT = {"triangle": 3, "triangle6": 3, "triangle7": 3, "quad": 4, "quad8": 4, "quad9": 4}
 """Cells that are understood, and how many corners each has."""
@@ -38,9 +37,7 @@ class _Cell:
     def sides(self) -> Iterator[tuple[int, int, int]]:
         """Corner, next corner and the node between them, -1 where there is none."""
         nexts = (*self.corners[1:], self.corners[0])
-        yield from zip(
-            self.corners, nexts, self.middles or (-1,) * len(nexts), strict=True
-        )
+        yield from zip(self.corners, nexts, self.middles or (-1,) * len(nexts), strict=True)
 
 
 def endings() -> frozenset[str]:
@@ -106,7 +103,9 @@ def _cells(mesh: Any) -> Iterator[_Cell]:
         tags = _tags(mesh, place)
         for k, nodes in enumerate(block.data.tolist()):
             number += 1
-            yield _Cell(number, tuple(nodes[:corners]), tuple(nodes[corners : 2 * corners]), tags[k])
+            yield _Cell(
+                number, tuple(nodes[:corners]), tuple(nodes[corners : 2 * corners]), tags[k]
+            )
 
 
 def _tags(mesh: Any, place: int) -> list[frozenset[str]]:

@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import reduce
+from itertools import pairwise
 from typing import Any, TypeAlias
 
 import numpy as np
@@ -79,7 +80,7 @@ class Arc:
 
     @classmethod
     def bulged(cls, start: complex, end: complex, bulge: float) -> Arc:
-        """The arc between two points whose ``bulge`` is tan(its angle / 4), positive to the left."""
+        """The arc whose ``bulge`` is tan(its angle / 4), positive where it turns left."""
         half = 0.5 * (end - start)
         centre = start + half + 1j * half * (1.0 - bulge**2) / (2.0 * bulge)
         a = start - centre
@@ -164,7 +165,7 @@ class Bezier:
         share = np.asarray(t)[..., None]
         level = [row + 0 * share for row in self.lifted]
         while len(level) > 1:
-            level = [(1 - share) * a + share * b for a, b in zip(level, level[1:], strict=False)]
+            level = [(1 - share) * a + share * b for a, b in pairwise(level)]
         return np.asarray(level[0][..., 0] / level[0][..., 1].real)
 
     def between(self, s: float, t: float) -> Bezier:
@@ -192,9 +193,9 @@ def polar(control: Points, arguments: Sequence[float]) -> Points:
     """
 
     def step(level: list[Points], t: float) -> list[Points]:
-        return [(1 - t) * a + t * b for a, b in zip(level, level[1:], strict=False)]
+        return [(1 - t) * a + t * b for a, b in pairwise(level)]
 
-    return reduce(step, arguments, list(control))[0]
+    return np.asarray(reduce(step, arguments, list(control))[0])
 
 
 def fitted(piece: Piece, start: complex, end: complex) -> Piece:

@@ -50,4 +50,4 @@ def _polar(
             low, high = knots[span - degree + j], knots[span + 1 + j - step]
             share = (t - low) / (high - low)
             level[j] = (1 - share) * level[j - 1] + share * level[j]
-    return level[degree]
+    return np.asarray(level[degree])

@@ -254,16 +254,18 @@ def _rect(element: ElementTree.Element) -> Iterator[Piece]:
 
 
 def _line(element: ElementTree.Element) -> Iterator[Piece]:
-    start, end = (
-        complex(_number(element, f"x{k}"), _number(element, f"y{k}")) for k in (1, 2)
-    )
+    start, end = (complex(_number(element, f"x{k}"), _number(element, f"y{k}")) for k in (1, 2))
     yield from _side(start, end)
 
 
 def _polyline(element: ElementTree.Element, closed: bool = False) -> Iterator[Piece]:
-    numbers = [float(part) for part in re.split(r"[\s,]+", element.get("points", "").strip()) if part]
+    numbers = [
+        float(part) for part in re.split(r"[\s,]+", element.get("points", "").strip()) if part
+    ]
     corners = [complex(*pair) for pair in zip(numbers[::2], numbers[1::2], strict=True)]
-    for start, end in zip(corners, corners[1:] + corners[:1] if closed else corners[1:], strict=False):
+    for start, end in zip(
+        corners, corners[1:] + corners[:1] if closed else corners[1:], strict=False
+    ):
         yield from _side(start, end)
 
 
