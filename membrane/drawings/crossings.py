@@ -1,4 +1,4 @@
-"""Where a contour crosses or touches itself."""
+"""Whether a contour goes round once, without crossing itself."""
 
 from __future__ import annotations
 
@@ -31,9 +31,19 @@ def check_simple(contour: Contour) -> None:
             found = _closer(pieces[owner[one]], pieces[owner[other]], *ends, _DEPTH)
             if found is not None:
                 raise DrawingError(
-                    f"The contour crosses itself at {said(found)}; "
+                    f"the contour crosses itself at {said(found)}; "
                     "draw an outline that goes round once."
                 )
+
+
+def check_not_flat(contour: Contour) -> None:
+    """Raise DrawingError for a contour without area, such as a seam of a mesh."""
+    if contour.is_flat:
+        check_simple(contour)
+        raise DrawingError(
+            f"the contour at {said(contour.polygon[0])} encloses no area; "
+            "leave it out, or repair it if it is a seam of a mesh."
+        )
 
 
 def _chords(pieces: list[Piece]) -> tuple[list[int], Floats, Floats]:

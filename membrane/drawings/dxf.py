@@ -27,7 +27,7 @@ UNNAMED = "0"
 """The layer of curves that were put on no layer."""
 
 _FLAT = 1e-9
-_NOT_DRAWN = ("POINT", "TEXT", "MTEXT", "ATTDEF", "VIEWPORT")
+_NOT_DRAWN = ("POINT", "TEXT", "MTEXT", "ATTDEF", "VIEWPORT", "DIMENSION", "LEADER", "MULTILEADER")
 """Entities that nobody takes for a part of an outline; leaving them out is not worth a note."""
 
 

@@ -143,7 +143,7 @@ def _open(places: Sequence[complex], alone: list[int], tolerance: float) -> str:
     one, other = np.unravel_index(int(np.argmin(apart)), apart.shape)
     more = f" (the narrowest of {len(alone) // 2} gaps)" if len(alone) > 2 else ""
     return (
-        f"The curves do not close: from {said(here[one])} to {said(here[other])} a gap of "
+        f"the curves do not close: from {said(here[one])} to {said(here[other])} a gap of "
         f"{1e3 * apart[one, other]:.4g} mm is left{more}, wider than the tolerance of "
         f"{1e3 * tolerance:.4g} mm; close it, raise the tolerance, or choose the layers to read."
     )

@@ -32,7 +32,7 @@ class _Cell:
     number: int
     corners: tuple[int, ...]
     middles: tuple[int, ...]
-    tags: frozenset[str]
+    tags: tuple[str, ...]
 
     def sides(self) -> Iterator[tuple[int, int, int]]:
         """Corner, next corner and the node between them, -1 where there is none."""
@@ -108,21 +108,21 @@ def _cells(mesh: Any) -> Iterator[_Cell]:
             )
 
 
-def _tags(mesh: Any, place: int) -> list[frozenset[str]]:
-    """Names of the sets, and numbers of the tags, of each cell of a block."""
+def _tags(mesh: Any, place: int) -> list[tuple[str, ...]]:
+    """Names of the sets, and numbers of the tags, of each cell of a block, as declared."""
     block = mesh.cells[place]
-    found: list[set[str]] = [set() for _ in block.data]
+    found: list[dict[str, None]] = [{} for _ in block.data]
     for name, members in mesh.cell_sets.items():
         inside = members[place] if not name.startswith("gmsh:") else None
         for k in [] if inside is None else np.asarray(inside, dtype=np.int64).tolist():
-            found[k].add(name)
+            found[k][name] = None
     dim = 1 if block.type in _LINES else 2
     names = {(int(tag), int(d)): name for name, (tag, d) in _fields(mesh)}
     for array in _tag_arrays(mesh):
         for k, tag in enumerate(np.asarray(mesh.cell_data[array][place]).tolist()):
             if tag != 0:
-                found[k].add(names.get((tag, dim), str(tag)))
-    return [frozenset(tags) for tags in found]
+                found[k][names.get((tag, dim), str(tag))] = None
+    return [tuple(tags) for tags in found]
 
 
 def _fields(mesh: Any) -> Iterator[tuple[str, Any]]:
@@ -196,13 +196,16 @@ def _place(point: complex) -> tuple[float, float]:
 
 
 def _side_names(mesh: Any) -> Mapping[frozenset[int], str]:
-    """Names of tagged sides, by their two corners."""
+    """Names of tagged sides, by their two corners.
+
+    Of several names the first: declared sets come before whole blocks of elements.
+    """
     names: dict[frozenset[int], str] = {}
     for place, block in enumerate(mesh.cells):
         if block.type in _LINES:
             for nodes, tags in zip(block.data.tolist(), _tags(mesh, place), strict=True):
                 if tags:
-                    names.setdefault(frozenset(nodes[:2]), min(tags))
+                    names.setdefault(frozenset(nodes[:2]), tags[0])
     return names | _names_of_node_sets(mesh, names)
 
 
@@ -231,7 +234,7 @@ class _Boundaries:
         """The boundary of all cells, and of those of each tag."""
         groups = defaultdict(list)
         for cell in cells:
-            for tag in sorted(cell.tags):
+            for tag in cell.tags:
                 groups[tag].append(cell)
         return {WHOLE: self._around(cells), **{t: self._around(c) for t, c in groups.items()}}
 

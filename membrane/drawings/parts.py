@@ -17,7 +17,9 @@ _STANDS_STILL = 1e-9
 """How short a handle may be, as a share of the curve's size, to count as retracted."""
 
 _HALVINGS = 9
-"""How often a Bézier is halved towards an end with a retracted handle."""
+"""How often at the most a Bézier is halved towards an end with a retracted handle."""
+
+_WELL_ABOVE = 4.0
 
 
 def parts(piece: Piece, tolerance: float) -> tuple[Piece, ...]:
@@ -35,7 +37,7 @@ def parts(piece: Piece, tolerance: float) -> tuple[Piece, ...]:
         return (Line(piece.start, piece.end),)
     closed = abs(piece.end - piece.start) <= tolerance
     halves = (piece.between(0.0, 0.5), piece.between(0.5, 1.0)) if closed else (piece,)
-    return tuple(part for half in halves for part in _moving(half))
+    return tuple(part for half in halves for part in _moving(half, tolerance))
 
 
 def _is_straight(piece: Bezier) -> bool:
@@ -48,17 +50,31 @@ def _is_straight(piece: Bezier) -> bool:
     return all(abs(share.imag) <= _ROUND for share in shares) and bool((steps >= -_ROUND).all())
 
 
-def _moving(piece: Bezier) -> Iterator[Piece]:
+def _moving(piece: Bezier, tolerance: float) -> Iterator[Piece]:
     """Where a handle is retracted the curve bends without limit: cut it towards that end.
 
-    The inmost part, a millionth of the whole, is taken as straight.
+    The inmost part, some thousandths of the whole or less, is taken as straight.
     """
     size = max(abs(point - piece.start) for point in piece.points)
     at_start = abs(piece.points[1] - piece.start) <= _STANDS_STILL * size
     at_end = abs(piece.points[-2] - piece.end) <= _STANDS_STILL * size
-    near = [0.5**k for k in range(_HALVINGS, 0, -1)]
-    cuts = [0.0, *(near if at_start else ()), *((1.0 - c for c in near[-2::-1]) if at_end else ())]
-    for s, t in pairwise([*dict.fromkeys([*cuts, 1.0])] if at_start or at_end else (0.0, 1.0)):
-        part = piece.between(s, t) if (s, t) != (0.0, 1.0) else piece
+    near = _towards_start(piece, tolerance) if at_start else []
+    far = _towards_start(piece.reversed(), tolerance) if at_end else []
+    cuts = [0.0, *near, *(1.0 - cut for cut in reversed(far)), 1.0]
+    if at_start and at_end:
+        cuts = [*dict.fromkeys(cuts)]
+    for s, t in pairwise(cuts):
+        part = piece.between(s, t) if len(cuts) > 2 else piece
         still = (at_start and s == 0.0) or (at_end and t == 1.0)
         yield Line(part.start, part.end) if still else part
+
+
+def _towards_start(piece: Bezier, tolerance: float) -> list[float]:
+    """Rising parameters, each half the next, down to a part well above the tolerance."""
+    cuts = [0.5]
+    while len(cuts) < _HALVINGS:
+        reach = abs(complex(piece.at(np.array(0.5 * cuts[-1]))) - piece.start)
+        if reach <= _WELL_ABOVE * tolerance:
+            break
+        cuts.append(0.5 * cuts[-1])
+    return cuts[::-1]

@@ -12,7 +12,7 @@ from typing import Any
 import numpy as np
 
 from membrane.drawings.contours import Contour, chosen, contours, outline
-from membrane.drawings.crossings import check_simple
+from membrane.drawings.crossings import check_not_flat, check_simple
 from membrane.drawings.join import joined, said
 from membrane.drawings.pieces import Affine
 from membrane.drawings.sketch import Sketch, Stroke
@@ -27,7 +27,7 @@ SHARE = 1e-4
 
 _ROUNDING = 1e-12
 _DRAWINGS = {".dxf": "dxf", ".svg": "svg"}
-_COMMON_MESHES = (".msh", ".inp", ".vtu", ".vtk", ".xdmf", ".med", ".mesh", ".bdf", ".unv")
+_COMMON_MESHES = (".msh", ".inp", ".vtu", ".vtk", ".xdmf", ".med", ".mesh", ".bdf", ".stl")
 
 
 @dataclass(frozen=True)
@@ -57,7 +57,7 @@ def find_contour(
         changed = path.stat().st_mtime_ns
     except OSError:
         raise DrawingError(
-            f"There is no file {path}; its path starts from the study file."
+            f"there is no file {path}; its path starts from the study file."
         ) from None
     return _find(path, changed, unit, contour, layers, tolerance)
 
@@ -103,7 +103,10 @@ def _all(
     size = _size([stroke for strokes in groups.values() for stroke in strokes])
     widest = _ROUNDING * size if sketch.exact else tolerance or min(TOLERANCE, SHARE * size)
     found = {group: joined(strokes, widest) for group, strokes in groups.items()}
-    return contours(found), (*sketch.notes, *_overruled(unit, sketch.unit))
+    every = contours(found)
+    for contour in every:
+        check_not_flat(contour)
+    return every, (*sketch.notes, *_overruled(unit, sketch.unit))
 
 
 @lru_cache(maxsize=16)
@@ -117,7 +120,7 @@ def _reader(path: Path) -> Callable[[Path], Sketch]:
     name = _DRAWINGS.get(ending) or ("mesh_file" if ending in _mesh_endings() else None)
     if name is None:
         raise DrawingError(
-            f"The ending of {path.name} is not known; known are .dxf, .svg and meshes such as "
+            f"the ending of {path.name} is not known; known are .dxf, .svg and meshes such as "
             f"{listed(_COMMON_MESHES)}."
         )
     module: Any = import_module(f"membrane.drawings.{name}")
@@ -137,7 +140,7 @@ def _on_layers(strokes: Sequence[Stroke], layers: tuple[str, ...]) -> tuple[Stro
         if layer not in known:
             hint = nearest(layer, known)
             named = hint if hint != "." else f"; known are {listed(known)}."
-            raise DrawingError(f"The drawing has no curves on a layer {shown(layer)}{named}")
+            raise DrawingError(f"the drawing has no curves on a layer {shown(layer)}{named}")
     return tuple(s for s in strokes if not layers or not set(layers).isdisjoint(s.layers))
 
 
@@ -148,7 +151,7 @@ def _scaled(strokes: Sequence[Stroke], metres: float) -> tuple[Stroke, ...]:
 def _size(strokes: Sequence[Stroke]) -> float:
     """Longer side of the box around all curves, metres."""
     if not strokes:
-        raise DrawingError("The drawing has no curves; draw the outline with lines or curves.")
+        raise DrawingError("the drawing has no curves; draw the outline with lines or curves.")
     points = np.hstack([stroke.piece.at(np.linspace(0.0, 1.0, 9)) for stroke in strokes])
     return float(max(np.ptp(points.real), np.ptp(points.imag)))
 

@@ -29,7 +29,7 @@ _LINK = "{http://www.w3.org/1999/xlink}href"
 _GROUPS = ("svg", "g", "a", "switch")
 _NOT_DRAWN = (
     *("defs", "symbol", "clipPath", "mask", "pattern", "marker", "style", "title", "desc"),
-    *("metadata", "linearGradient", "radialGradient", "filter", "script", "namedview"),
+    *("text", "metadata", "linearGradient", "radialGradient", "filter", "script", "namedview"),
 )
 _DEEPEST = 50
 
@@ -45,7 +45,7 @@ def read(path: Path) -> Sketch:
         page = _page(root)
         reader = _Reader({e.get("id", ""): e for e in root.iter() if e.get("id")})
         reader.read(root, _Place(_upright(page)))
-    except (ElementTree.ParseError, ValueError, KeyError, IndexError, AttributeError) as failure:
+    except (ElementTree.ParseError, OSError, ValueError, KeyError, IndexError, AttributeError) as failure:
         raise DrawingError(
             f"{path.name} cannot be read as SVG ({str(failure).rstrip('.')}); export it again."
         ) from failure

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from pathlib import Path
 from types import SimpleNamespace
 from typing import Any
 
@@ -27,6 +28,7 @@ OUTLINES = {
     "regular_polygon": {"sides": 7, "radius": 0.2},
     "sector": {"radius": 0.2, "angle": 4.0},
     "stadium": {"straight": 0.2, "width": 0.1},
+    "file": {"path": Path(__file__).parents[1] / "drawings" / "files" / "frame_drum.dxf"},
 }
 
 
