@@ -4,6 +4,7 @@ import re
 import subprocess
 import sys
 from pathlib import Path
+from shutil import copy
 
 import pytest
 
@@ -22,7 +23,7 @@ def snippets(language):
 def test_there_are_examples():
     assert len(STUDIES) >= 5
     assert len(SCRIPTS) >= 2
-    assert len(snippets("toml")) == 3
+    assert len(snippets("toml")) == 4
 
 
 @pytest.mark.slow
@@ -72,6 +73,7 @@ def test_readme(tmp_path):
     studies, (script, outline) = snippets("toml"), snippets("python")
     exec(compile(script, "README", "exec"), {})
     (tmp_path / "half_moon.py").write_text(outline)
+    copy(ROOT / "tests" / "drawings" / "files" / "frame_drum.dxf", tmp_path / "drum.dxf")
     for number, text in enumerate(studies):
         head = "" if "[head]" in text else "\n[head]\nareal_density = 0.26\ntension = 3000\n"
         path = tmp_path / f"study{number}.toml"

@@ -45,7 +45,14 @@ def read(path: Path) -> Sketch:
         page = _page(root)
         reader = _Reader({e.get("id", ""): e for e in root.iter() if e.get("id")})
         reader.read(root, _Place(_upright(page)))
-    except (ElementTree.ParseError, OSError, ValueError, KeyError, IndexError, AttributeError) as failure:
+    except (
+        ElementTree.ParseError,
+        OSError,
+        ValueError,
+        KeyError,
+        IndexError,
+        AttributeError,
+    ) as failure:
         raise DrawingError(
             f"{path.name} cannot be read as SVG ({str(failure).rstrip('.')}); export it again."
         ) from failure
