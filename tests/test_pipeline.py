@@ -112,6 +112,11 @@ def test_rim_mass_lowers_every_mode_of_an_elastic_disc_as_bessel_says():
     assert abs(first / k**2 - 1) < 1e-9
 
 
+def test_a_spectrum_is_shown_in_one_line():
+    spectrum = solved(zoo.SQUARE, count=1)
+    assert repr(spectrum) == "<Spectrum of a study: 1 modes, 0.707107 to 0.707107 Hz>"
+
+
 def test_stages_are_told_in_order():
     told = []
     run(study_from({**zoo.SQUARE, "modes": {"count": 2}}), told.append)
