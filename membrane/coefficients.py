@@ -39,7 +39,9 @@ def coefficients(study: Study, outline: Outline) -> Membrane:
 def _check_functions(membrane: Membrane) -> None:
     """Every varying coefficient has sound numbers at the samples."""
     for c in membrane.contributions:
-        for where in c.where if isinstance(c.value, Function) else ():
+        if not isinstance(c.value, Function):
+            continue
+        for where in c.where:
             numbers_at(c.key, c.value, *membrane.samples[where].points)
 
 

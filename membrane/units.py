@@ -1,6 +1,7 @@
 """Physical quantities: field types that take "356 mm" or a bare SI number and give a float.
 
-Each type is a float for type checkers, a Varying one a float or a function of place; pydantic calls its ``Quantity`` to read a value.
+Each type is a float for type checkers, a Varying one a float or a function of place;
+pydantic calls its ``Quantity`` to read a value.
 Inside the program every quantity is in SI units, an angle in radians, an interval in cents.
 """
 
@@ -84,9 +85,7 @@ class Quantity:
             factor = 1.0 if unit is None else float(self._factor(unit, unit))
         except ValueError as failure:
             raise KeyProblem("unit", str(failure)) from None
-        return replace(
-            function, factor=factor, unit=self.unit, noun=self.noun, sign=self.varying
-        )
+        return replace(function, factor=factor, unit=self.unit, noun=self.noun, sign=self.varying)
 
     def _from_text(self, text: str) -> float:
         found = _NUMBER_AND_UNIT.fullmatch(text)

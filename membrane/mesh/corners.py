@@ -16,6 +16,8 @@ from membrane.records.membrane import Field, Membrane
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh
 
+__all__ = ["Corner", "corners"]
+
 WHOLE = 1e-7
 """Rounding allowed where an exponent or an angle is compared to a whole number."""
 
@@ -202,8 +204,10 @@ class _Fan:
         return leading + _weaker_by(self.membrane, str(fan[0].region))
 
     def _here(self, field: Field, name: str | None) -> Floats:
-        """A field of a region or an edge at the vertex; not finite where it has a kink."""
-        return np.asarray(self.membrane.at(field, str(name), self.place)[0])
+        """A field of a region at the vertex, or its mean where it has no sound value there."""
+        here = np.asarray(self.membrane.at(field, str(name), self.place)[0])
+        sound = np.isfinite(here).all() and np.trace(np.atleast_2d(here)) > 0.0
+        return here if sound else np.asarray(self.membrane.total(field, str(name)))
 
     def _is_elastic(self, ray: Ray) -> bool:
         fields = (Field.EDGE_STIFFNESS, Field.EDGE_MASS)

@@ -7,7 +7,7 @@ from math import sqrt
 import numpy as np
 
 from membrane.kernel import Kernel
-from membrane.records.arrays import Floats
+from membrane.records.arrays import Bools
 from membrane.records.outline import Outline, Samples
 from membrane.records.raw_mesh import RawMesh
 from membrane.triangle import lattice
@@ -28,7 +28,7 @@ def samples(kernel: Kernel, outline: Outline) -> dict[str, Samples]:
     return {**regions, **edges}
 
 
-def _within(raw: RawMesh, chosen: Floats) -> Samples:
+def _within(raw: RawMesh, chosen: Bools) -> Samples:
     """The middles of the small triangles that some triangles are divided into."""
     small = lattice(PARTS)
     (s, t) = small.points[:, small.triangles].mean(axis=1)

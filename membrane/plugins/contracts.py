@@ -14,6 +14,7 @@ import numpy as np
 
 from membrane.errors import PluginError
 from membrane.plugins.options import plain, read_options
+from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Field, OwnForm
 from membrane.records.outline import Drawing, Outline
 from membrane.records.spectrum import Spectrum
@@ -130,6 +131,10 @@ def _check_part(part: Contribution | OwnForm, outline: Outline) -> None:
 
 
 def _check_value(part: Contribution) -> None:
+    if isinstance(part.value, Function):
+        wanted = part.field is Field.TENSION
+        _must((part.value.tensor is not None) == wanted, f"{part.key} needs a tensor for a tension")
+        return
     value = np.asarray(part.value, dtype=float)
     shapes = ((), (2, 2)) if part.field is Field.TENSION else ((),)
     _must(value.shape in shapes, f"the value of {part.key} has shape {value.shape}")

@@ -50,7 +50,8 @@ class Function:
 
     def are_allowed(self, numbers: Floats) -> Bools:
         """Which numbers are finite and have the right sign."""
-        return np.isfinite(numbers) & np.asarray(self.sign.allows(numbers))
+        allowed: Bools = np.isfinite(numbers) & np.asarray(self.sign.allows(numbers))
+        return allowed
 
     def moved(self, origin: tuple[float, float]) -> Function:
         """The same function about another origin (x, y), metres."""
@@ -63,7 +64,8 @@ class Function:
     @property
     def places_of_kinks(self) -> Floats:
         """(2, n), metres, about the drawing's origin."""
-        return np.reshape(self.kinks, (-1, 2)).T + np.reshape(self.origin, (2, 1))
+        own = np.reshape(np.asarray(self.kinks, dtype=float), (-1, 2)).T
+        return np.asarray(own + np.reshape(self.origin, (2, 1)))
 
 
 Amount: TypeAlias = float | Function

@@ -88,12 +88,14 @@ class Membrane:
 
     def at(self, field: Field, where: str, points: Floats) -> Floats:
         """A field on one region or edge, SI, at ``points`` (2, n): (n,), or (n, 2, 2)."""
-        parts = self.parts(field, where)
-        return np.asarray(sum((c.at(points) for c in parts[1:]), parts[0].at(points))) if parts \
-            else np.zeros(points.shape[1])
+        parts = [c.at(points) for c in self.parts(field, where)]
+        return sum(parts[1:], parts[0]) if parts else np.zeros(points.shape[1])
 
     def sampled(self, field: Field, where: str) -> Floats:
-        """A field at its samples on one region or edge, (n,) or (n, 2, 2), SI; n = 1 of a constant."""
+        """A field on one region or edge, SI, at its samples: (n,), or (n, 2, 2).
+
+        n is 1 where the field is constant.
+        """
         varies = self.varies(field, where)
         return self.at(field, where, self.samples[where].points if varies else np.zeros((2, 1)))
 

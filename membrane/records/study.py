@@ -186,7 +186,7 @@ class Study:
     @property
     def functions(self) -> tuple[Function, ...]:
         """Every coefficient that varies over the head, about the outline's own origin."""
-        layers = (self.head, *self.patches)
+        layers: tuple[Head | Patch, ...] = (self.head, *self.patches)
         tensions = (layer.tension.parts for layer in layers if layer.tension is not None)
         amounts = (
             *(part.magnitude for parts in tensions for part in parts),

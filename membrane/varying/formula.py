@@ -69,8 +69,6 @@ FUNCTIONS: Mapping[str, tuple[Callable[..., Any], int | None]] = MappingProxyTyp
 )
 """Name -> the function and how many values it takes, None for two or more."""
 
-_NOT_SMOOTH = frozenset(("sqrt", "abs", "sign", "atan2", "hypot", "min", "max", "where", "log"))
-
 
 @dataclass(frozen=True)
 class Formula:
@@ -94,11 +92,6 @@ class Formula:
         with np.errstate(all="ignore"):
             values = _value(self.tree, {**CONSTANTS, **places})
         return np.array(np.broadcast_to(values, x.shape), dtype=float)
-
-    @property
-    def is_smooth_at_origin(self) -> bool:
-        """False where r, theta or a kinked function may leave a kink at the origin."""
-        return _is_smooth(self.tree)
 
 
 def _parsed(text: str) -> ast.expr:
@@ -184,7 +177,7 @@ def _value(node: ast.AST, names: Mapping[str, Any]) -> Any:
     if isinstance(node, ast.Name):
         return names[node.id]
     if isinstance(node, ast.Constant):
-        return np.float64(node.value)
+        return np.float64(str(node.value))
     values = [_value(part, names) for part in _parts(node)]
     if isinstance(node, ast.Call):
         return FUNCTIONS[ast.unparse(node.func)][0](*values)
@@ -192,26 +185,5 @@ def _value(node: ast.AST, names: Mapping[str, Any]) -> Any:
         pairs = zip(node.ops, values, values[1:], strict=False)
         holds = [_OPERATORS[type(operator)](a, b) for operator, a, b in pairs]
         return np.where(reduce(np.logical_and, holds), 1.0, 0.0)
+    assert isinstance(node, ast.BinOp | ast.UnaryOp), "every part has been checked"
     return _OPERATORS[type(node.op)](*values)
-
-
-def _is_smooth(node: ast.AST) -> bool:
-    """Only even powers of r are smooth at the origin: r**2 is x**2 + y**2."""
-    if isinstance(node, ast.Name):
-        return node.id not in ("r", "theta")
-    if isinstance(node, ast.BinOp) and isinstance(node.op, ast.Pow):
-        even = isinstance(node.right, ast.Constant) and node.right.value % 2 == 0
-        if even and node.right.value >= 0 and _is_r(node.left):
-            return True
-        whole = isinstance(node.right, ast.Constant) and node.right.value % 1 == 0
-        return whole and _is_smooth(node.left)
-    if isinstance(node, ast.BinOp) and _is_r(node.left) and _is_r(node.right):
-        return isinstance(node.op, ast.Mult)
-    kinked = isinstance(node, ast.Call) and ast.unparse(node.func) in _NOT_SMOOTH
-    if kinked or isinstance(node, ast.Compare):
-        return not any(isinstance(p, ast.Name) and p.id in PLACES for p in ast.walk(node))
-    return all(map(_is_smooth, _parts(node)))
-
-
-def _is_r(node: ast.AST) -> bool:
-    return isinstance(node, ast.Name) and node.id == "r"

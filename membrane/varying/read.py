@@ -14,6 +14,7 @@ from membrane.units import Point
 from membrane.varying.formula import Formula
 from membrane.varying.scattered import through_points
 from membrane.varying.scripted import from_script
+from membrane.varying.smoothness import is_smooth_at_origin
 
 KINDS = ("formula", "csv", "function")
 ORIGIN = (0.0, 0.0)
@@ -48,7 +49,7 @@ class _Formula(_Varying):
 
     def rule(self) -> tuple[Rule, Points]:
         formula = Formula.parsed(self.formula)
-        return formula, () if formula.is_smooth_at_origin else (ORIGIN,)
+        return formula, () if is_smooth_at_origin(formula) else (ORIGIN,)
 
 
 @dataclass(frozen=True, kw_only=True)
