@@ -100,7 +100,8 @@ def _amount(amount: Amount | Mapping[str, Any], unit: str) -> str:
 def _edge(edge: Edge) -> str:
     elastic = edge.support is Support.ELASTIC
     stiffness = f", {_amount(edge.stiffness, 'N/m^2')}" if elastic else ""
-    mass = f", with {_amount(edge.mass, 'kg/m')}" if edge.mass else ""
+    a_mass = "a mass " if isinstance(edge.mass, Function) else ""
+    mass = f", with {a_mass}{_amount(edge.mass, 'kg/m')}" if edge.mass else ""
     return f"{edge.support}{stiffness}{mass}"
 
 

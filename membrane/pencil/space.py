@@ -34,7 +34,7 @@ class Discretisation:
             self.topology,
             element(self.space.degree),
             self.mapping,
-            quadrature=triangle_rule(self._order(varying)),
+            quadrature=triangle_rule(self._order + self._more(varying)),
             elements=triangles_in(self.space.mesh, names),
             dofs=self.dofs,
             disable_doflocs=True,
@@ -46,17 +46,20 @@ class Discretisation:
             self.topology,
             element(self.space.degree),
             self.mapping,
-            quadrature=line_rule(self._order(varying)),
+            quadrature=line_rule(self._order + self._more(varying)),
             facets=facets_on(self.topology, self.space.mesh, names),
             dofs=self.dofs,
             disable_doflocs=True,
         )
 
-    def _order(self, varying: bool) -> int:
+    @property
+    def _order(self) -> int:
         # exact for the mass on curved triangles; the stiffness there is rational
-        order = 2 * self.space.degree + 2 * (self.space.mesh.order - 1)
+        return 2 * self.space.degree + 2 * (self.space.mesh.order - 1)
+
+    def _more(self, varying: bool) -> int:
         # a varying coefficient counts as a polynomial of the elements' own degree
-        return order + self.space.degree * varying
+        return self.space.degree if varying else 0
 
 
 def build_space(mesh: Mesh, degree: int, fixed_edges: tuple[str, ...]) -> Discretisation:

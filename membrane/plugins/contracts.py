@@ -132,8 +132,9 @@ def _check_part(part: Contribution | OwnForm, outline: Outline) -> None:
 
 def _check_value(part: Contribution) -> None:
     if isinstance(part.value, Function):
-        wanted = part.field is Field.TENSION
-        _must((part.value.tensor is not None) == wanted, f"{part.key} needs a tensor for a tension")
+        has, wanted = part.value.tensor is not None, part.field is Field.TENSION
+        worded = "with" if has else "without"
+        _must(has == wanted, f"the value of {part.key} is a function {worded} a tensor")
         return
     value = np.asarray(part.value, dtype=float)
     shapes = ((), (2, 2)) if part.field is Field.TENSION else ((),)

@@ -100,9 +100,8 @@ def _parsed(text: str) -> ast.expr:
         try:
             return ast.parse(text.strip(), mode="eval").body
         except SyntaxError as failure:
-            near = text.strip()[: max((failure.offset or 1) - 1, 0)][-20:]
-            after = f" after {shown(near)}" if near else ""
-            raise ValueError(f"the formula {shown(text)} breaks off{after}; repair it.") from None
+            reason = f"{shown(text)} cannot be read ({failure.msg})"
+            raise ValueError(f"the formula {reason}; repair it.") from None
         except (ValueError, RecursionError, MemoryError):
             raise ValueError(f"the formula {shown(text)} cannot be read; repair it.") from None
 
@@ -136,6 +135,8 @@ def _parts(node: ast.AST) -> list[ast.expr]:
 
 
 def _check_name(name: str) -> None:
+    if name in FUNCTIONS:
+        raise ValueError(f"in the formula {shown(name)} is a function; write {name}(…).")
     known = (*PLACES, *CONSTANTS)
     if name not in known:
         hint = nearest(name, (*known, *FUNCTIONS))

@@ -15,6 +15,7 @@ from membrane.varying.formula import Formula
 from membrane.varying.scattered import through_points
 from membrane.varying.scripted import from_script
 from membrane.varying.smoothness import is_smooth_at_origin
+from membrane.wording import listed
 
 KINDS = ("formula", "csv", "function")
 ORIGIN = (0.0, 0.0)
@@ -64,10 +65,16 @@ class _Csv(_Varying):
 @dataclass(frozen=True, kw_only=True)
 class _Scripted(_Varying):
     function: str
-    script: str
+    script: str | None = None
 
     def rule(self) -> tuple[Rule, Points]:
-        return from_script(Path(self.script), self.function), ()
+        if self.script is None:
+            sentence = 'is missing; give the script with the function, such as "my_fields.py".'
+            raise KeyProblem("script", sentence)
+        file = Path(self.script)
+        if file.suffix != ".py" or not file.is_file():
+            raise KeyProblem("script", f"there is no Python file {file}.")
+        return from_script(file, self.function), ()
 
 
 _READERS = {"formula": _Formula, "csv": _Csv, "function": _Scripted}
@@ -85,7 +92,9 @@ def read_function(value: Mapping[str, Any]) -> tuple[Function, str | None]:
     """
     from membrane.plugins.options import plain, read_options
 
-    kind = next(kind for kind in KINDS if kind in value)
+    kind, *others = (kind for kind in KINDS if kind in value)
+    if others:
+        raise KeyProblem("", f"give one of {listed(KINDS)}, not {' and '.join((kind, *others))}.")
     try:
         keys: Any = read_options(_READERS[kind], value)
     except StudyError as error:
@@ -93,6 +102,8 @@ def read_function(value: Mapping[str, Any]) -> tuple[Function, str | None]:
         raise KeyProblem(first.path, first.sentence) from None
     try:
         rule, kinks = keys.rule()
+    except KeyProblem:
+        raise
     except ValueError as failure:
         raise KeyProblem(kind, str(failure)) from None
     return Function(plain(keys), rule, (*kinks, *keys.kinks)), keys.unit

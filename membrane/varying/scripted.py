@@ -19,8 +19,6 @@ def from_script(file: Path, name: str) -> Rule:
 
     Raises ValueError with a sentence where there is no such script or function.
     """
-    if file.suffix != ".py":
-        raise ValueError(f"expected a Python file such as my_outline.py, got {shown(str(file))}.")
     try:
         module = load_script(str(file))
     except PluginError as failure:
