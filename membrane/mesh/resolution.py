@@ -112,10 +112,7 @@ def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
     count = A w^2/(4 pi) - L w/(4 pi), with area and fixed perimeter measured in travel
     time; H. Weyl 1911, second term after V. Ivrii 1980 (from memory).
     """
-    area = sum(
-        r.area * membrane.total(Field.AREAL_DENSITY, r.name) / _root_det(membrane, r.name)
-        for r in outline.regions
-    )
+    area = sum(r.area * _travel_area(membrane, r.name) for r in outline.regions)
     slowest = max(_slowness(membrane, region.name) for region in outline.regions)
     length = slowest * sum(outline.edge_length(name) for name in membrane.fixed_edges)
     length = min(length, 2.0 * sqrt(pi * count * area))  # a comb's perimeter says nothing
@@ -124,10 +121,14 @@ def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
 
 def _slowness(membrane: Membrane, region: str) -> float:
     """Seconds per metre of the slowest wave in a region."""
-    tension = membrane.total(Field.TENSION, region)
-    density = membrane.total(Field.AREAL_DENSITY, region)
-    return float(np.sqrt(density / np.linalg.eigvalsh(tension)[0]))
+    tension = membrane.sampled(Field.TENSION, region)
+    density = membrane.sampled(Field.AREAL_DENSITY, region)
+    return float(np.sqrt((density / np.linalg.eigvalsh(tension)[:, 0]).max()))
 
 
-def _root_det(membrane: Membrane, region: str) -> float:
-    return float(np.sqrt(np.linalg.det(membrane.total(Field.TENSION, region))))
+def _travel_area(membrane: Membrane, region: str) -> float:
+    """Area in travel time squared, s^2, of a square metre of a region on the mean."""
+    tension = membrane.sampled(Field.TENSION, region)
+    density = membrane.sampled(Field.AREAL_DENSITY, region)
+    local = density / np.sqrt(np.linalg.det(tension))
+    return float(local @ membrane.samples[region].weights if local.size > 1 else local[0])

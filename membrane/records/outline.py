@@ -6,6 +6,8 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
+from membrane.records.arrays import Floats
+
 HEAD = "head"
 
 
@@ -53,11 +55,27 @@ class Curve:
 
 
 @dataclass(frozen=True)
+class Samples:
+    """Points spread over a region or along an edge.
+
+    points : (2, n), metres
+    weights : (n,), their shares of the area or the length, 1 together
+    """
+
+    points: Floats
+    weights: Floats
+
+
+@dataclass(frozen=True)
 class Outline:
-    """The cut outline as it stands in the open kernel session."""
+    """The cut outline as it stands in the open kernel session.
+
+    samples : name of a region or an edge -> its samples; empty where no coefficient can vary
+    """
 
     regions: tuple[Region, ...]
     curves: tuple[Curve, ...]
+    samples: Mapping[str, Samples] = field(default_factory=dict)
 
     @property
     def area(self) -> float:

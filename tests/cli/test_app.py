@@ -185,6 +185,27 @@ def test_check_says_what_would_be_solved(study):
     ]
 
 
+def test_check_says_how_a_coefficient_varies(tmp_path):
+    (tmp_path / "points.csv").write_text("-1,-1,1\n1,-1,2\n0,1,3\n")
+    file = tmp_path / "study.toml"
+    file.write_text(
+        '[outline]\nshape = "disc"\ndiameter = 1\n'
+        '[[patches]]\nname = "pad"\nshape = "disc"\ndiameter = 0.1\n'
+        'bedding = {csv = "points.csv"}\n'
+        '[head]\nareal_density = {formula = "1 + r", unit = "g/m^2"}\n'
+        'tension = {along = {formula = "2 + x"}, across = 1}\n'
+        '[edges.rim]\nsupport = "free"\nmass = {formula = "1 + x"}\n'
+    )
+    done = invoke("check", file)
+    assert done.exit_code == 0
+    assert done.stdout.splitlines()[1:4] == [
+        f"patch pad  disc: diameter 0.1 m; bedding by the csv {tmp_path}/points.csv in N/m^3",
+        "head       areal density by the formula 1 + r in g/m^2, "
+        "tension along by the formula 2 + x in N/m, across 1 N/m, angle 0 rad",
+        "edge rim   free, with a mass by the formula 1 + x in kg/m",
+    ]
+
+
 def test_plugins_are_listed(monkeypatch):
     done = invoke("plugins")
     assert done.exit_code == 0

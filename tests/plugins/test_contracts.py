@@ -14,6 +14,7 @@ from membrane.coefficients import STANDARD_TERMS
 from membrane.errors import PluginError
 from membrane.kernel import Kernel
 from membrane.plugins.contracts import check_eigensolver, check_outline, check_product, check_term
+from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Field, OwnForm
 from membrane.records.outline import Drawing
 from membrane.units import Length
@@ -167,6 +168,11 @@ def part(**changed: Any) -> Contribution:
         ([part(value=np.ones(2))], "has shape (2,)"),
         ([part(field=Field.BEDDING, value=np.eye(2))], "has shape (2, 2)"),
         ([part(value=np.inf)], "value of terms.x is not finite"),
+        ([part(value=Function({}, max))], "is a function without a tensor"),
+        (
+            [part(field=Field.BEDDING, value=Function({}, max).times(np.eye(2)))],
+            "is a function with a tensor",
+        ),
         ([OwnForm("terms.x", "damping", ("head",), 1.0, max)], "has side 'damping'"),
     ],
 )
