@@ -9,6 +9,7 @@ from pathlib import Path
 from time import perf_counter
 
 import numpy as np
+from threadpoolctl import threadpool_limits
 
 from membrane import plugins
 from membrane.accuracy import Estimate, estimate
@@ -81,9 +82,11 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
     Raises OutlineError, MeshError, SolveError or PluginError, each with its sentence.
     """
     clock = _Clock(progress)
-    solution = _solve(study, clock)
-    with clock.stage("nodal lines"):
-        patterns = nodal_patterns(solution.modes, study.edges)
+    # one head's matrices are too small to gain from threads: a second one doubles the time
+    with threadpool_limits(limits=1, user_api="blas"):
+        solution = _solve(study, clock)
+        with clock.stage("nodal lines"):
+            patterns = nodal_patterns(solution.modes, study.edges)
     rows = partials(solution.modes, solution.error.cents, patterns, study.modes)
     return Spectrum(
         study=study,
