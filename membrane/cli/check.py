@@ -8,17 +8,31 @@ from typing import Any
 
 from membrane.plugins.options import plain, unit_of
 from membrane.records.function import Amount, Function
+from membrane.records.plan import Plan
 from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support
 from membrane.study import read_study
 from membrane.varying import KINDS, is_varying
 
 
 def describe_study(file: Path) -> str:
-    """The lines that ``membrane check`` prints. Raises StudyError."""
+    """The lines that ``membrane check`` prints.
+
+    The outline is drawn and cut, but not meshed. Raises StudyError, or OutlineError for
+    shapes that do not fit together.
+    """
     study = read_study(file)
-    pairs = [pair for pairs in (_shapes(study), _physics(study), _wanted(study)) for pair in pairs]
+    from membrane.pipeline import plan
+
+    planned = plan(study)
+    parts = (_shapes(study), _physics(study), _wanted(study), _size(planned))
+    pairs = [pair for pairs in parts for pair in pairs]
     width = max(len(label) for label, _ in pairs)
     return "\n".join(f"{label:<{width}}  {text}" for label, text in pairs)
+
+
+def _size(planned: Plan) -> list[tuple[str, str]]:
+    work = f"about {planned.unknowns} unknowns of degree {planned.degree} at the first try"
+    return [("area", f"{planned.area:.6g} m^2"), ("mesh", work)]
 
 
 def _shapes(study: Study) -> list[tuple[str, str]]:
