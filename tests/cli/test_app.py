@@ -191,7 +191,7 @@ def test_check_says_how_a_coefficient_varies(tmp_path):
     file.write_text(
         '[outline]\nshape = "disc"\ndiameter = 1\n'
         '[[patches]]\nname = "pad"\nshape = "disc"\ndiameter = 0.1\n'
-        'bedding = {csv = "points.csv"}\n'
+        'bedding = {csv = "points.csv", outside = "nearest"}\n'
         '[head]\nareal_density = {formula = "1 + r", unit = "g/m^2"}\n'
         'tension = {along = {formula = "2 + x"}, across = 1}\n'
         '[edges.rim]\nsupport = "free"\nmass = {formula = "1 + x"}\n'
