@@ -96,10 +96,10 @@ def test_geometry_scripts_need_nothing_but_records_units_and_curves(file):
     allowed = ("membrane.records", "membrane.units", "membrane.beziers", "membrane.crossing")
     for name in imports(file):
         ours = name.startswith("membrane")
-        assert any(within(name, one) for one in allowed) if ours else _is_standard(name), name
+        assert any(within(name, one) for one in allowed) if ours else _is_plain_library(name), name
 
 
-def _is_standard(name: str) -> bool:
+def _is_plain_library(name: str) -> bool:
     return name.split(".")[0] in {*sys.stdlib_module_names, "__future__", "numpy", "scipy"}
 
 
