@@ -13,6 +13,7 @@ import numpy as np
 from membrane import plugins
 from membrane.accuracy import Estimate, estimate
 from membrane.coefficients import coefficients
+from membrane.errors import SolveError
 from membrane.kernel import Kernel
 from membrane.mesh import Resolution, first_resolution, make_mesh
 from membrane.modes import count_up_to, extract
@@ -123,10 +124,19 @@ def _solve_on(
         fine = assemble(membrane, mesh, resolution.degree)
         coarse = assemble(membrane, mesh, resolution.coarser_degree)
     with clock.stage("modes"):
-        count = count_up_to(fine, wanted.up_to) if wanted.up_to else wanted.count
+        count = _count(fine, wanted)
         modes = extract(fine, count, solver, wanted.accuracy)
         check = extract(coarse, len(modes.eigenvalues), solver, wanted.accuracy)
     return _Solution(mesh, fine, modes, estimate(modes, check, wanted.accuracy))
+
+
+def _count(pencil: Pencil, wanted: ModesWanted) -> int:
+    if wanted.up_to is None:
+        return wanted.count
+    count = count_up_to(pencil, wanted.up_to)
+    if count == 0:
+        raise SolveError(f"no mode lies below {wanted.up_to:g} Hz; raise modes.up_to")
+    return count
 
 
 def _facts(solution: _Solution) -> dict[str, float]:

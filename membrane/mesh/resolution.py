@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from math import factorial, pi, sqrt
 
 import numpy as np
@@ -13,6 +13,8 @@ from membrane.records.study import ModesWanted
 
 CENTS_PER_UNIT = 600.0 / np.log(2.0)
 """Cents per relative change of an eigenvalue: half of 1200 / ln 2."""
+
+HIGHEST_DEGREE = 12
 
 COARSER_BY = 2
 """How many degrees lower the second solve is that measures the error."""
@@ -25,11 +27,13 @@ class Resolution:
     degree : of the elements; the geometry follows it
     phase : longest edge times the highest wanted wave number, dimensionless
     tolerance : relative error of an eigenvalue that the corners may leave
+    degree_is_free : False where the user has set the degree
     """
 
     degree: int
     phase: float
     tolerance: float
+    degree_is_free: bool = True
 
     @property
     def coarser_degree(self) -> int:
@@ -41,20 +45,23 @@ class Resolution:
         order = 2 * self.coarser_degree
         shrink = float(np.clip(0.9 * excess ** (-1.0 / order), 0.45, 0.85))
         drop = max(0.1 / excess, 1e-3)
-        return replace(self, phase=shrink * self.phase, tolerance=drop * self.tolerance)
+        # in the layers around a corner only the degree helps, however small they begin
+        degree = min(self.degree + 2, HIGHEST_DEGREE) if self.degree_is_free else self.degree
+        return Resolution(degree, shrink * self.phase, drop * self.tolerance, self.degree_is_free)
 
 
 def first_resolution(wanted: ModesWanted) -> Resolution:
     """What should be fine enough for the wanted accuracy at the first try."""
     relative = wanted.accuracy / CENTS_PER_UNIT
     degree = wanted.degree or _degree_for(relative)
-    return Resolution(degree, _phase_for(relative, degree - COARSER_BY), 1e-4 * relative)
+    phase = _phase_for(relative, degree - COARSER_BY)
+    return Resolution(degree, phase, 1e-4 * relative, wanted.degree is None)
 
 
 def _degree_for(relative: float) -> int:
     """Two degrees more for every three digits, 8 at 0.01 cent: cheapest in our trials."""
     digits = -np.log10(relative)
-    return int(np.clip(2 * round((digits + 7.0) / 3.0), 4, 12))
+    return int(np.clip(2 * round((digits + 7.0) / 3.0), 4, HIGHEST_DEGREE))
 
 
 def _phase_for(relative: float, degree: int) -> float:

@@ -47,7 +47,7 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
     def invDF(self, X: Floats, tind: Ints | None = None) -> Floats:
         """Inverse jacobian, (2, 2, n_triangles, n)."""
         (a, b), (c, d) = self.DF(X, tind)
-        return np.array([[d, -b], [-c, a]]) / (a * d - b * c)
+        return np.asarray(np.array([[d, -b], [-c, a]]) / (a * d - b * c))
 
     def invF(self, x: Floats, tind: Ints | None = None) -> Floats:
         """Reference coordinates of the points x (2, n_triangles, n)."""

@@ -123,7 +123,7 @@ def test_the_users_gmsh_settings_change_nothing(tmp_path):
         capture_output=True,
         text=True,
         check=True,
-        cwd=Path(__file__).parents[1],
+        cwd=Path(__file__).parents[2],
     )
     count, factor = run.stdout.split()[-2:]
     assert float(factor) == 0.25  # the settings are found, and would count
