@@ -21,6 +21,12 @@ __all__ = ["Corner", "corners"]
 WHOLE = 1e-7
 """Rounding allowed where an exponent or an angle is compared to a whole number."""
 
+STEADY = 1e-5
+"""Jump of curvature, times the segments beside it, that no mode can tell from none."""
+
+_AHEAD = 1e-3
+"""Share of a segment after which a tangent shows which way its curve bends."""
+
 TENSION_JUMP = 0.5
 """Exponent assumed where tensions meet at a corner: the weakest that there can be."""
 
@@ -31,12 +37,14 @@ class Ray:
 
     chord, tangent : directions of its first segment and of the curve itself, radians
     bend : signed curvature, per metre, positive to the left of the tangent
+    length : of the chord, metres
     edge : the edge's name, None for the border of a patch
     """
 
     chord: float
     tangent: float
     bend: float
+    length: float
     curve: int
     edge: str | None
 
@@ -102,15 +110,16 @@ def _ray(
     here, there = raw.segments[end, segment], raw.segments[1 - end, segment]
     curve = int(raw.segment_curve[segment])
     parameter = raw.segment_parameters[[end], segment]
-    forward = 1.0 if end == 0 else -1.0
-    step = raw.segment_parameters[1, segment] - raw.segment_parameters[0, segment]
-    tangent = forward * np.sign(step) * kernel.tangent(curve, parameter)[:, 0]
-    chord = raw.vertices[:, there] - raw.vertices[:, here]
-    side = np.sign(tangent[0] * chord[1] - tangent[1] * chord[0])
+    step = float(raw.segment_parameters[1 - end, segment] - parameter[0])
+    tangents = kernel.tangent(curve, parameter + step * np.array([0.0, _AHEAD]))
+    tangent, ahead = (np.sign(step) * tangents).T
+    side = np.sign(tangent[0] * ahead[1] - tangent[1] * ahead[0])
     bend = float(side * kernel.curvature(curve, parameter)[0])
-    if abs(bend) * np.linalg.norm(chord) < WHOLE:
+    chord = raw.vertices[:, there] - raw.vertices[:, here]
+    length = float(np.hypot(*chord))
+    if abs(bend) * length < WHOLE:
         bend = 0.0  # a straight line, up to the kernel's rounding
-    return Ray(_direction(chord), _direction(tangent), bend, curve, edge_of[curve])
+    return Ray(_direction(chord), _direction(tangent), bend, length, curve, edge_of[curve])
 
 
 def _direction(vector: Floats) -> float:
@@ -124,7 +133,7 @@ def _passes_smoothly(rays: list[Ray], membrane: Membrane) -> bool:
     first, second = rays
     turn = (second.tangent - first.tangent) % (2 * pi)
     # leaving the vertex both ways, a steady curve bends to the left once, to the right once
-    steady = abs(first.bend + second.bend) <= 1e-6 * abs(first.bend)
+    steady = abs(first.bend + second.bend) * max(first.length, second.length) <= STEADY
     alike = (first.edge in membrane.fixed_edges) == (second.edge in membrane.fixed_edges)
     return abs(turn - pi) < WHOLE and steady and alike
 

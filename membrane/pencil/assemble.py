@@ -6,10 +6,9 @@ from collections.abc import Iterator
 from functools import cache
 from typing import Any
 
-from skfem import BilinearForm
-
 from membrane.pencil.coefficient import coefficient
 from membrane.pencil.forms import WEAK_FORMS, Integrand
+from membrane.pencil.integrate import integrated
 from membrane.pencil.space import Discretisation, build_space
 from membrane.records.function import Function
 from membrane.records.membrane import Membrane
@@ -47,4 +46,4 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
 
 
 def _matrix(form: Integrand, basis: Any, free: Any) -> Any:
-    return BilinearForm(form).assemble(basis)[free][:, free]
+    return integrated(form, basis)[free][:, free]

@@ -10,7 +10,7 @@ from skfem import FacetBasis, MeshTri
 from skfem.assembly.basis import CellBasis
 from skfem.assembly.dofs import Dofs
 
-from membrane.pencil.element import element
+from membrane.pencil.element import element, reference_element
 from membrane.pencil.mapping import CurvedMapping
 from membrane.pencil.quadrature import line_rule, triangle_rule
 from membrane.records.arrays import Floats, Ints
@@ -32,7 +32,7 @@ class Discretisation:
         """Basis on the triangles of some regions, for a constant or a varying coefficient."""
         return CellBasis(
             self.topology,
-            element(self.space.degree),
+            reference_element(self.space.degree),
             self.mapping,
             quadrature=triangle_rule(self._order + self._more(varying)),
             elements=triangles_in(self.space.mesh, names),

@@ -56,7 +56,8 @@ class OwnForm:
 
     side : "stiffness" or "mass"
     where : names of the regions that it lives on
-    form : ``form(u, v, w)``, a scikit-fem integrand, symmetric in u and v
+    form : ``form(u, v, w)``, a scikit-fem integrand, symmetric in u and v, of their values
+        and first derivatives
     """
 
     key: str

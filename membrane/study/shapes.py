@@ -15,7 +15,7 @@ from membrane.units import Angle, Point
 from membrane.wording import shown
 
 _OWN_KEYS = ("shape", "script", "at", "rotate")
-_LATER = ("rounded_rectangle", "spline", "fourier", "file")
+_LATER = ("file",)
 
 
 @dataclass(frozen=True)

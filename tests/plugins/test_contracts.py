@@ -28,6 +28,9 @@ OUTLINES = {
     "regular_polygon": {"sides": 7, "radius": 0.2},
     "sector": {"radius": 0.2, "angle": 4.0},
     "stadium": {"straight": 0.2, "width": 0.1},
+    "rounded_rectangle": {"width": 0.2, "height": 0.3, "radius": 0.05},
+    "spline": {"points": ((0.0, 0.0), (1.0, 0.0), (0.0, 1.0))},
+    "fourier": {"mean_radius": 0.2, "harmonics": ((3, 0.01, -0.02),)},
 }
 
 
