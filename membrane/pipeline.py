@@ -9,13 +9,21 @@ from pathlib import Path
 from time import perf_counter
 
 import numpy as np
+from threadpoolctl import threadpool_limits
 
 from membrane import plugins
 from membrane.accuracy import Estimate, estimate
 from membrane.coefficients import coefficients
 from membrane.errors import SolveError
 from membrane.kernel import Kernel
-from membrane.mesh import Resolution, first_resolution, make_mesh
+from membrane.mesh import (
+    Resolution,
+    check_affordable,
+    first_resolution,
+    make_mesh,
+    region_sizes,
+    unknowns,
+)
 from membrane.modes import count_up_to, extract
 from membrane.modes.extract import Eigensolver
 from membrane.nodal import nodal_patterns
@@ -26,6 +34,7 @@ from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
 from membrane.records.pencil import Pencil
+from membrane.records.plan import Plan
 from membrane.records.spectrum import Spectrum
 from membrane.records.study import ModesWanted, Study
 
@@ -34,8 +43,9 @@ Progress = Callable[[str], None]
 MESHES = 6
 """How many meshes are tried, each finer, before the accuracy reached is reported as it is."""
 
-ALWAYS_WRITTEN = ("summary", "modes_csv")
-"""Products of every run; the study's ``products.write`` names the others."""
+ALWAYS_WRITTEN = ("table", "modes_csv", "summary")
+"""Products of every run; the study's ``products.write`` names the others. The summary comes
+last: it lists the files."""
 
 
 @dataclass(frozen=True)
@@ -73,9 +83,11 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
     Raises OutlineError, MeshError, SolveError or PluginError, each with its sentence.
     """
     clock = _Clock(progress)
-    solution = _solve(study, clock)
-    with clock.stage("nodal lines"):
-        patterns = nodal_patterns(solution.modes, study.edges)
+    # one head's matrices are too small to gain from threads: a second one doubles the time
+    with threadpool_limits(limits=1, user_api="blas"):
+        solution = _solve(study, clock)
+        with clock.stage("nodal lines"):
+            patterns = nodal_patterns(solution.modes, study.edges)
     rows = partials(solution.modes, solution.error.cents, patterns, study.modes)
     return Spectrum(
         study=study,
@@ -88,10 +100,25 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
     )
 
 
+def plan(study: Study) -> Plan:
+    """What solving a study would take; the outline is drawn, nothing is meshed.
+
+    Raises OutlineError for shapes that do not fit together, MeshError where the modes wanted
+    need too many unknowns.
+    """
+    resolution = first_resolution(study.modes)
+    with Kernel.session() as kernel:
+        outline = draw(kernel, study)
+    sizes = region_sizes(outline, coefficients(study, outline), study.modes, resolution.phase)
+    check_affordable(outline, sizes, resolution.degree)
+    count = unknowns(outline, sizes, resolution.degree)
+    return Plan(outline.area, resolution.degree, count)
+
+
 def write(spectrum: Spectrum, folder: Path) -> None:
     """Write a spectrum's products into an existing folder."""
     wanted = spectrum.study.products
-    for name in (*ALWAYS_WRITTEN, *wanted.write):
+    for name in dict.fromkeys((*wanted.write, *ALWAYS_WRITTEN)):
         product = plugins.load("product", name)
         product.write(spectrum, folder, wanted.options.get(name) or product.Options())
 
@@ -137,7 +164,7 @@ def _count(pencil: Pencil, wanted: ModesWanted) -> int:
         return wanted.count
     count = count_up_to(pencil, wanted.up_to)
     if count == 0:
-        raise SolveError(f"no mode lies below {wanted.up_to:g} Hz; raise modes.up_to")
+        raise SolveError(f"no mode lies below {wanted.up_to:g} Hz; raise modes.up_to.")
     return count
 
 

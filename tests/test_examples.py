@@ -9,6 +9,7 @@ from shutil import copy
 import pytest
 
 from membrane import read_study, run
+from membrane.products.table import table_text
 
 ROOT = Path(__file__).parent.parent
 STUDIES = sorted((ROOT / "scripts").glob("*.toml"))
@@ -53,6 +54,7 @@ def test_kettledrum_ratios_are_the_published_ones():
     }
     published = {1: 1.0, 2: 1.34, 3: 1.66, 4: 1.98, 5: 2.29}
     assert max(abs(found[m] - ratio) for m, ratio in published.items()) < 0.01
+    assert table_text(spectrum) in README
 
 
 @pytest.mark.slow

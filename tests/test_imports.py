@@ -96,15 +96,16 @@ def test_nothing_but_the_commands_knows_the_pipeline(file):
 
 
 @pytest.mark.parametrize("file", GEOMETRIES, ids=lambda file: file.stem)
-def test_geometry_scripts_need_nothing_but_records_units_and_drawings(file):
-    allowed = ("membrane.records", "membrane.units", "membrane.drawings")
+def test_geometry_scripts_need_nothing_but_records_units_and_curves(file):
+    services = ("records", "units", "beziers", "crossing", "drawings")
+    allowed = tuple(f"membrane.{service}" for service in services)
     for name in imports(file):
         ours = name.startswith("membrane")
-        assert any(within(name, one) for one in allowed) if ours else _is_standard(name), name
+        assert any(within(name, one) for one in allowed) if ours else _is_plain_library(name), name
 
 
-def _is_standard(name: str) -> bool:
-    return name.split(".")[0] in {*sys.stdlib_module_names, "__future__"}
+def _is_plain_library(name: str) -> bool:
+    return name.split(".")[0] in {*sys.stdlib_module_names, "__future__", "numpy", "scipy"}
 
 
 @pytest.mark.parametrize(

@@ -26,7 +26,7 @@ SPECK = 0.02
 """Lines shorter than this share of the size of a domain, the root of the head's area over the
 mode's number, are dropped. Round a corner, where the mode is small and least well known, its
 error draws such specks; a mode hardly can, as each of its domains needs room for its
-frequency (G. Faber 1923, E. Krahn 1925)."""
+frequency (G. Faber 1923, E. Krahn 1925, from memory)."""
 
 
 def trace(

@@ -6,10 +6,11 @@ from collections.abc import Iterator
 from functools import cache
 from typing import Any
 
-from skfem import BilinearForm
-
+from membrane.pencil.coefficient import coefficient
 from membrane.pencil.forms import WEAK_FORMS, Integrand
+from membrane.pencil.integrate import integrated
 from membrane.pencil.space import Discretisation, build_space
+from membrane.records.function import Function
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.pencil import Part, Pencil
@@ -37,11 +38,12 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
     free = discretisation.space.free
     for c in membrane.contributions:
         weak = WEAK_FORMS[c.field]
-        basis = on_regions(c.where) if weak.on == "regions" else on_edges(c.where)
-        yield weak.side, Part(c.key, c.scale, _matrix(weak.integrand(c.value), basis, free))
+        on = on_regions if weak.on == "regions" else on_edges
+        basis = on(c.where, isinstance(c.value, Function))
+        yield weak.side, Part(c.key, c.scale, _matrix(weak.integrand(coefficient(c)), basis, free))
     for own in membrane.own_forms:
         yield own.side, Part(own.key, own.scale, _matrix(own.form, on_regions(own.where), free))
 
 
 def _matrix(form: Integrand, basis: Any, free: Any) -> Any:
-    return BilinearForm(form).assemble(basis)[free][:, free]
+    return integrated(form, basis)[free][:, free]

@@ -14,6 +14,7 @@ import numpy as np
 
 from membrane.errors import PluginError, Problem, StudyError
 from membrane.plugins.sentences import sentence
+from membrane.records.function import Function
 from membrane.units import Quantity
 from membrane.wording import nearest, shown
 
@@ -52,6 +53,8 @@ def read_options(
 
 def plain(options: Any) -> Any:
     """Options as plain data in the study file's own keys; what is None is left out."""
+    if isinstance(options, Function):
+        return plain(options.source)
     if is_dataclass(options):
         pairs = ((f.name, getattr(options, f.name)) for f in fields(options))
         return {name: plain(value) for name, value in pairs if value is not None}

@@ -29,7 +29,8 @@ GROUPS: Mapping[str, str] = MappingProxyType(
 _OWN = {
     "outline": (
         "membrane.geometries",
-        "disc ellipse rectangle polygon regular_polygon sector stadium file",
+        "disc ellipse rectangle polygon regular_polygon sector stadium rounded_rectangle spline"
+        " fourier file",
     ),
     "term": ("membrane.terms", "tension areal_density bedding edge_stiffness edge_mass"),
     "eigensolver": ("membrane.eigensolvers", "shift_invert arpack_superlu dense"),

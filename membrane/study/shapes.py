@@ -9,13 +9,11 @@ from typing import Any
 from membrane import plugins
 from membrane.errors import PluginError
 from membrane.records.study import Shape
-from membrane.study.problems import NOT_YET
 from membrane.study.table import Table
 from membrane.units import Angle, Point
 from membrane.wording import shown
 
 _OWN_KEYS = ("shape", "script", "at", "rotate")
-_LATER = ("rounded_rectangle", "spline", "fourier")
 
 
 @dataclass(frozen=True)
@@ -72,11 +70,7 @@ def _plugin(table: Table, which: _Which, base: Path) -> str | None:
     """Registered name, or whole path of the script."""
     if which.script is not None:
         return _script(table, which.script, base)
-    name = which.shape or ""
-    if name in _LATER and name not in plugins.names("outline"):
-        table.refuse("shape", f"the shape {shown(name)} is {NOT_YET}.")
-        return None
-    return name
+    return which.shape or ""
 
 
 def _script(table: Table, script: str, base: Path) -> str | None:

@@ -43,7 +43,7 @@ def test_it_keeps_its_schema(spectrum: Spectrum, tmp_path: Path) -> None:
     ],
 )
 def test_the_schema_refuses_what_is_wrong(patched: Spectrum, change, complaint: str) -> None:
-    contents = json.loads(json.dumps(summary.contents(patched)))
+    contents = json.loads(json.dumps({**summary.contents(patched), "files": []}))
     change(contents)
     found = complaints(load(SUMMARY), contents)
     assert len(found) == 1

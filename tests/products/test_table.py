@@ -56,8 +56,8 @@ def test_a_rigid_mode_has_no_pitch(free: Spectrum) -> None:
 @pytest.mark.parametrize(
     ("change", "words"),
     [
-        ({}, "no mode below the last is missing"),
-        ({"complete": False}, "Not proven complete"),
+        ({}, "solver missed no mode below"),
+        ({"complete": False}, "Not shown to be complete"),
         ({"mesh_facts": {"accuracy_met": False}}, "accuracy asked for was not reached"),
     ],
 )
