@@ -112,7 +112,7 @@ def plan(study: Study) -> Plan:
     sizes = region_sizes(outline, coefficients(study, outline), study.modes, resolution.phase)
     check_affordable(outline, sizes, resolution.degree)
     count = unknowns(outline, sizes, resolution.degree)
-    return Plan(outline.area, resolution.degree, count)
+    return Plan(outline.area, resolution.degree, count, outline.notes)
 
 
 def write(spectrum: Spectrum, folder: Path) -> None:

@@ -32,7 +32,8 @@ def describe_study(file: Path) -> str:
 
 def _size(planned: Plan) -> list[tuple[str, str]]:
     work = f"about {planned.unknowns} unknowns of degree {planned.degree} at the first try"
-    return [("area", f"{planned.area:.6g} m^2"), ("mesh", work)]
+    notes = [("note", note) for note in planned.notes]
+    return [("area", f"{planned.area:.6g} m^2"), ("mesh", work), *notes]
 
 
 def _shapes(study: Study) -> list[tuple[str, str]]:

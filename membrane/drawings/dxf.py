@@ -51,7 +51,7 @@ def read(path: Path) -> Sketch:
 
 
 def _short(failure: Exception) -> str:
-    return str(failure).splitlines()[0].rstrip(".") if str(failure) else type(failure).__name__
+    return str(failure).splitlines()[0].rstrip(".") if str(failure) else "it breaks off"
 
 
 def _hidden(document: Any) -> set[str]:

@@ -12,8 +12,10 @@ class Plan:
     area : of the head, square metres
     degree : of the elements
     unknowns : about how many
+    notes : sentences for the user on how the outline was come by
     """
 
     area: float
     degree: int
     unknowns: int
+    notes: tuple[str, ...] = ()

@@ -206,6 +206,20 @@ def test_check_says_how_a_coefficient_varies(tmp_path):
     ]
 
 
+def test_check_says_how_a_drawing_was_taken(tmp_path):
+    path = '<polyline points="0 0 9 0 9 9 0 9 0 .0005"/>'
+    page = 'xmlns="http://www.w3.org/2000/svg" width="10mm" viewBox="0 0 10 10"'
+    (tmp_path / "head.svg").write_text(f"<svg {page}>{path}</svg>")
+    file = tmp_path / "study.toml"
+    file.write_text(
+        '[outline]\nshape = "file"\npath = "head.svg"\n'
+        "[head]\nareal_density = 0.26\ntension = 3000\n"
+    )
+    done = CliRunner().invoke(app, ["check", str(file)])
+    assert done.exit_code == 0
+    assert "note      head.svg: closed 1 gap in the contour, the widest 0.0005 mm" in done.stdout
+
+
 def test_plugins_are_listed(monkeypatch):
     done = invoke("plugins")
     assert done.exit_code == 0

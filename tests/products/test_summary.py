@@ -50,6 +50,13 @@ def test_the_schema_refuses_what_is_wrong(patched: Spectrum, change, complaint: 
     assert complaint in found[0]
 
 
+def test_notes_are_handed_on(patched: Spectrum) -> None:
+    assert summary.contents(patched)["notes"] == []
+    assert summary.contents(replace(patched, notes=("a.dxf: closed.",)))["notes"] == [
+        "a.dxf: closed."
+    ]
+
+
 def test_every_digit_is_written(spectrum: Spectrum, tmp_path: Path) -> None:
     summary.write(spectrum, tmp_path, summary.Options())
     modes = summary.read(tmp_path)["modes"]

@@ -74,6 +74,12 @@ def test_it_says_what_is_left_out_and_warns(patched: Spectrum) -> None:
     assert "licensed practice" in text
 
 
+def test_it_says_how_the_outline_was_come_by(patched: Spectrum) -> None:
+    note = "head.dxf: closed 1 gap in the contour."
+    assert note in table_text(replace(patched, notes=(note,)))
+    assert "head.dxf" not in table_text(patched)
+
+
 def test_a_bracket_is_never_understated(patched: Spectrum) -> None:
     widths = {0.00001: "<0.001", 0.0124: "0.007", 0.5: "0.25", 2.001: "1.01", None: "–"}
     for bracket, shown in widths.items():
