@@ -15,7 +15,7 @@ from membrane.accuracy import Estimate, estimate
 from membrane.coefficients import coefficients
 from membrane.errors import SolveError
 from membrane.kernel import Kernel
-from membrane.mesh import Resolution, first_resolution, make_mesh
+from membrane.mesh import Resolution, make_mesh, suited_resolution
 from membrane.modes import count_up_to, extract
 from membrane.modes.extract import Eigensolver
 from membrane.nodal import nodal_patterns
@@ -97,11 +97,11 @@ def write(spectrum: Spectrum, folder: Path) -> None:
 def _solve(study: Study, clock: _Clock) -> _Solution:
     """Mesh and solve, finer each time, until the estimated error is within the wanted one."""
     solver = plugins.load("eigensolver", study.modes.eigensolver).solve
-    resolution = first_resolution(study.modes)
     with Kernel.session() as kernel:
         with clock.stage("outline"):
             outline = draw(kernel, study)
             membrane = coefficients(study, outline)
+            resolution = suited_resolution(kernel, outline, membrane, study.modes)
         for attempt in range(MESHES):
             with clock.stage("mesh"):
                 mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)

@@ -1,4 +1,4 @@
-"""How long a mesh edge may be at each place of an outline."""
+"""How long mesh edges may be along curves: their bends, and the gaps between them."""
 
 from __future__ import annotations
 
@@ -8,6 +8,7 @@ from typing import Protocol
 
 import numpy as np
 
+from membrane.kernel.size_map import SizeMap
 from membrane.records.arrays import Floats
 
 _FIRST_SAMPLES = 17
@@ -35,30 +36,8 @@ class Bend:
     per_gap: float = 1.0
     growth: float = 0.7
 
-    def closer(self, factor: float) -> Bend:
-        """Shorter edges along bends and beside gaps, by a factor."""
-        return Bend(factor * self.per_circle, self.per_gap / factor, self.growth)
 
-
-USUAL = Bend()
-
-
-@dataclass(frozen=True)
-class SizeMap:
-    """Edge length = the least of size + growth x distance over all samples.
-
-    points : (2, n), metres
-    sizes : (n,), metres
-    """
-
-    points: Floats
-    sizes: Floats
-    growth: float
-
-    def at(self, x: float, y: float) -> float:
-        """Longest edge, metres, at a point."""
-        px, py = self.points
-        return float((self.sizes + self.growth * np.hypot(px - x, py - y)).min())
+USUAL, COARSE = Bend(), Bend(per_circle=8.0)
 
 
 @dataclass(frozen=True)
@@ -85,13 +64,13 @@ def size_map(
     parameters = {c: np.linspace(*kernel.bounds(c), _FIRST_SAMPLES) for c in targets}
     for _ in range(_ROUNDS):
         sampled = [_sample(kernel, c, parameters[c], targets[c], bend) for c in targets]
-        sampled = [_beside_gaps(one, sampled, joined[one.curve], bend) for one in sampled]
+        sampled = _beside_gaps(sampled, joined, bend)
         finer = {one.curve: _bisected(one) for one in sampled}
         if all(finer[c].size == parameters[c].size for c in targets):
             break
         parameters = finer
     points = np.hstack([one.points for one in sampled])
-    return thinned(SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth))
+    return SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth).thinned()
 
 
 def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend) -> _Sampled:
@@ -102,15 +81,24 @@ def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend:
 
 
 def _beside_gaps(
-    one: _Sampled, sampled: Sequence[_Sampled], joined: Sequence[int], bend: Bend
-) -> _Sampled:
-    others = [o.points for o in sampled if o.curve != one.curve and o.curve not in joined]
-    if not others:
-        return one
-    (px, py), (qx, qy) = one.points[:, :, None], np.hstack(others)[:, None, :]
-    gaps = np.sqrt(((px - qx) ** 2 + (py - qy) ** 2).min(axis=1))
-    sizes = np.minimum(one.sizes, bend.per_gap * gaps)
-    return _Sampled(one.curve, one.parameters, one.points, sizes)
+    sampled: Sequence[_Sampled], joined: Mapping[int, Sequence[int]], bend: Bend
+) -> list[_Sampled]:
+    """The samples, with the sizes that gaps to other curves allow."""
+    from scipy.spatial import KDTree
+
+    tree = KDTree(np.hstack([one.points for one in sampled]).T)
+    owner = np.repeat([one.curve for one in sampled], [one.sizes.size for one in sampled])
+    found = []
+    for one in sampled:
+        beside = [one.curve, *joined[one.curve]]
+        sizes = one.sizes.copy()
+        within = tree.query_ball_point(one.points.T, sizes / bend.per_gap)
+        for k, near in enumerate(within):
+            others = tree.data[[n for n in near if owner[n] not in beside]]
+            gaps = np.hypot(*(others - one.points[:, k]).T)
+            sizes[k] = min(sizes[k], bend.per_gap * gaps.min(initial=np.inf))
+        found.append(_Sampled(one.curve, one.parameters, one.points, sizes))
+    return found
 
 
 def _bisected(one: _Sampled) -> Floats:
@@ -119,15 +107,3 @@ def _bisected(one: _Sampled) -> Floats:
     long = steps > 0.5 * np.minimum(one.sizes[:-1], one.sizes[1:])
     halves = 0.5 * (one.parameters[:-1] + one.parameters[1:])[long]
     return np.sort(np.concatenate([one.parameters, halves]))
-
-
-def thinned(sizes: SizeMap) -> SizeMap:
-    """Without the samples that others overrule everywhere."""
-    kept: list[int] = []
-    order = np.argsort(sizes.sizes, kind="stable")
-    for k in order:
-        x, y = sizes.points[:, k]
-        near = SizeMap(sizes.points[:, kept], sizes.sizes[kept], sizes.growth)
-        if not kept or near.at(x, y) > 1.000001 * sizes.sizes[k]:
-            kept.append(int(k))
-    return SizeMap(sizes.points[:, kept], sizes.sizes[kept], sizes.growth)

@@ -4,9 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from functools import cache
-from typing import Any
 
-from membrane.pencil.forms import WEAK_FORMS, Integrand
+from membrane.pencil.forms import WEAK_FORMS
 from membrane.pencil.integrate import integrated
 from membrane.pencil.space import Discretisation, build_space
 from membrane.records.membrane import Membrane
@@ -37,10 +36,6 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
     for c in membrane.contributions:
         weak = WEAK_FORMS[c.field]
         basis = on_regions(c.where) if weak.on == "regions" else on_edges(c.where)
-        yield weak.side, Part(c.key, c.scale, _matrix(weak.integrand(c.value), basis, free))
+        yield weak.side, Part(c.key, c.scale, integrated(weak.integrand(c.value), basis, free))
     for own in membrane.own_forms:
-        yield own.side, Part(own.key, own.scale, _matrix(own.form, on_regions(own.where), free))
-
-
-def _matrix(form: Integrand, basis: Any, free: Any) -> Any:
-    return integrated(form, basis)[free][:, free]
+        yield own.side, Part(own.key, own.scale, integrated(own.form, on_regions(own.where), free))
