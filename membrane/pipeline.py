@@ -16,7 +16,7 @@ from membrane.coefficients import coefficients
 from membrane.errors import SolveError
 from membrane.kernel import Kernel
 from membrane.mesh import Resolution, make_mesh, suited_resolution
-from membrane.modes import count_up_to, extract
+from membrane.modes import coarser_modes, count_up_to, extract
 from membrane.modes.extract import Eigensolver
 from membrane.nodal import nodal_patterns
 from membrane.outline import draw
@@ -126,7 +126,7 @@ def _solve_on(
     with clock.stage("modes"):
         count = _count(fine, wanted)
         modes = extract(fine, count, solver, wanted.accuracy)
-        check = extract(coarse, len(modes.eigenvalues), solver, wanted.accuracy)
+        check = coarser_modes(coarse, modes)
     return _Solution(mesh, fine, modes, estimate(modes, check, wanted.accuracy))
 
 

@@ -26,7 +26,7 @@ _PANELS, _PER_PANEL = 12, 12
 
 # How often a mesh is made anew, and how much shorter its edges then are where a triangle
 # could not take the shape of its curves.
-_TRIES, _SHORTER = 10, 0.7
+_TRIES, _SHORTER = 10, 0.5
 
 # Bits of a curve in which segments are counted without a mesh.
 _BITS = 32

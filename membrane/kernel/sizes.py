@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Protocol
 
 import numpy as np
 
 from membrane.kernel.size_map import SizeMap
-from membrane.records.arrays import Floats
+from membrane.records.arrays import Bools, Floats
 
 _FIRST_SAMPLES = 17
 _ROUNDS = 40
@@ -86,19 +86,27 @@ def _beside_gaps(
     """The samples, with the sizes that gaps to other curves allow."""
     from scipy.spatial import KDTree
 
-    tree = KDTree(np.hstack([one.points for one in sampled]).T)
-    owner = np.repeat([one.curve for one in sampled], [one.sizes.size for one in sampled])
-    found = []
-    for one in sampled:
-        beside = [one.curve, *joined[one.curve]]
-        sizes = one.sizes.copy()
-        within = tree.query_ball_point(one.points.T, sizes / bend.per_gap)
-        for k, near in enumerate(within):
-            others = tree.data[[n for n in near if owner[n] not in beside]]
-            gaps = np.hypot(*(others - one.points[:, k]).T)
-            sizes[k] = min(sizes[k], bend.per_gap * gaps.min(initial=np.inf))
-        found.append(_Sampled(one.curve, one.parameters, one.points, sizes))
-    return found
+    owner = np.repeat(np.arange(len(sampled)), [one.sizes.size for one in sampled])
+    points = np.hstack([one.points for one in sampled])
+    sizes = np.concatenate([one.sizes for one in sampled])
+    near = KDTree(points.T).query_ball_point(points.T, sizes / bend.per_gap)
+    one = np.repeat(np.arange(sizes.size), [len(others) for others in near])
+    other = np.concatenate(near).astype(np.int64)
+    apart = _apart([o.curve for o in sampled], joined)[owner[one], owner[other]]
+    one, other = one[apart], other[apart]
+    gaps = np.hypot(*(points[:, one] - points[:, other]))
+    np.minimum.at(sizes, one, bend.per_gap * gaps)
+    parts = np.split(sizes, np.cumsum([o.sizes.size for o in sampled])[:-1])
+    return [replace(o, sizes=part) for o, part in zip(sampled, parts, strict=True)]
+
+
+def _apart(curves: Sequence[int], joined: Mapping[int, Sequence[int]]) -> Bools:
+    """(n, n) whether a gap between two curves counts: they are not one, nor do they meet."""
+    number = {curve: k for k, curve in enumerate(curves)}
+    apart: Bools = ~np.eye(len(curves), dtype=bool)
+    for curve, others in joined.items():
+        apart[number[curve], [number[other] for other in others]] = False
+    return apart
 
 
 def _bisected(one: _Sampled) -> Floats:
