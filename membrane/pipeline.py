@@ -19,12 +19,12 @@ from membrane.kernel import Kernel
 from membrane.mesh import (
     Resolution,
     check_affordable,
-    first_resolution,
     make_mesh,
     region_sizes,
+    suited_resolution,
     unknowns,
 )
-from membrane.modes import count_up_to, extract
+from membrane.modes import coarser_modes, count_up_to, extract
 from membrane.modes.extract import Eigensolver
 from membrane.nodal import nodal_patterns
 from membrane.outline import draw
@@ -106,10 +106,11 @@ def plan(study: Study) -> Plan:
     Raises OutlineError for shapes that do not fit together, MeshError where the modes wanted
     need too many unknowns.
     """
-    resolution = first_resolution(study.modes)
     with Kernel.session() as kernel:
         outline = draw(kernel, study)
-    sizes = region_sizes(outline, coefficients(study, outline), study.modes, resolution.phase)
+        membrane = coefficients(study, outline)
+        resolution = suited_resolution(kernel, outline, membrane, study.modes)
+    sizes = region_sizes(outline, membrane, study.modes, resolution.phase)
     check_affordable(outline, sizes, resolution.degree)
     count = unknowns(outline, sizes, resolution.degree)
     return Plan(outline.area, resolution.degree, count, outline.notes)
@@ -126,11 +127,11 @@ def write(spectrum: Spectrum, folder: Path) -> None:
 def _solve(study: Study, clock: _Clock) -> _Solution:
     """Mesh and solve, finer each time, until the estimated error is within the wanted one."""
     solver = plugins.load("eigensolver", study.modes.eigensolver).solve
-    resolution = first_resolution(study.modes)
     with Kernel.session() as kernel:
         with clock.stage("outline"):
             outline = draw(kernel, study)
             membrane = coefficients(study, outline)
+            resolution = suited_resolution(kernel, outline, membrane, study.modes)
         for attempt in range(MESHES):
             with clock.stage("mesh"):
                 mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
@@ -155,7 +156,7 @@ def _solve_on(
     with clock.stage("modes"):
         count = _count(fine, wanted)
         modes = extract(fine, count, solver, wanted.accuracy)
-        check = extract(coarse, len(modes.eigenvalues), solver, wanted.accuracy)
+        check = coarser_modes(coarse, modes)
     return _Solution(mesh, fine, modes, estimate(modes, check, wanted.accuracy))
 
 

@@ -37,7 +37,7 @@ def test_a_coarse_start_is_refined_until_the_accuracy_is_met(monkeypatch):
         meshes.append(make_mesh(*arguments).size)
         return make_mesh(*arguments)
 
-    monkeypatch.setattr(pipeline, "first_resolution", lambda wanted: Resolution(4, 3.0, 1e-3))
+    monkeypatch.setattr(pipeline, "suited_resolution", lambda *_: Resolution(4, 3.0, 1e-3))
     monkeypatch.setattr(pipeline, "make_mesh", counted)
     spectrum = solved(zoo.L_SHAPE, count=4, accuracy=0.05)
     assert len(meshes) > 1
@@ -47,7 +47,7 @@ def test_a_coarse_start_is_refined_until_the_accuracy_is_met(monkeypatch):
 
 
 def test_what_falls_short_is_said(monkeypatch):
-    monkeypatch.setattr(pipeline, "first_resolution", lambda wanted: Resolution(4, 3.0, 1e-3))
+    monkeypatch.setattr(pipeline, "suited_resolution", lambda *_: Resolution(4, 3.0, 1e-3))
     monkeypatch.setattr(pipeline, "MESHES", 1)
     spectrum = solved(zoo.L_SHAPE, count=4, accuracy=1e-6)
     assert not spectrum.mesh_facts["accuracy_met"]

@@ -12,6 +12,7 @@ import numpy as np
 
 from membrane.errors import MembraneError, MeshError, OutlineError
 from membrane.kernel.bent_corners import spoilt
+from membrane.kernel.size_map import SizeMap
 from membrane.kernel.sizes import USUAL, Bend, size_map
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
@@ -23,8 +24,12 @@ _lock = threading.RLock()
 # Gauss points by which lengths are measured; the kernel's own lengths are coarse.
 _PANELS, _PER_PANEL = 12, 12
 
-# How much more closely curves are followed, try by try.
-_CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0, 16.0)
+# How often a mesh is made anew, and how much shorter its edges then are where a triangle
+# could not take the shape of its curves.
+_TRIES, _SHORTER = 10, 0.5
+
+# Bits of a curve in which segments are counted without a mesh.
+_BITS = 32
 
 # How far a vertex may lie off its curve, as a share of the outline's size.
 _JOINED = 1e-9
@@ -197,22 +202,44 @@ class Kernel:
         """Cover the outline with straight triangles, the same ones every time.
 
         sizes : region name -> longest wanted edge, metres
-        bend : how edges shorten along bent curves and beside gaps; followed more
-            closely where a triangle could not take the shape of its curves
+        bend : how edges shorten along bent curves and beside gaps
 
+        Edges are shorter still where a triangle could not take the shape of its curves.
         Raises MeshError where gmsh fails or its mesh is not sound.
         """
-        for closer in _CLOSER:
-            raw = self._straight_mesh(outline, sizes, bend.closer(closer))
-            if not spoilt(raw, self._tangents(raw)).any():
+        self._set_options()
+        nearby = self._size_map(outline, sizes, bend)
+        for _ in range(_TRIES):
+            self._set_sizes(outline, sizes, nearby)
+            raw = self._straight_mesh(outline)
+            wrong = spoilt(raw, self._tangents(raw))
+            if not wrong.any():
                 return raw
+            nearby = nearby.shortened(raw.vertices[:, np.unique(raw.triangles[:, wrong])], _SHORTER)
         raise MeshError(
             "No mesh follows the curves of the outline; "
             "move apart or leave out shapes that all but touch."
         )
 
-    def _straight_mesh(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> RawMesh:
-        self._set_sizes(outline, sizes, bend)
+    def segments(
+        self, outline: Outline, sizes: Mapping[str, float], bend: Bend = USUAL
+    ) -> tuple[Floats, Floats]:
+        """How finely a mesh of these sizes follows the curves, without making it.
+
+        returns : for each bit of every curve (n,) how many segments it gets, and how long
+            they are over the longest wanted there
+        """
+        nearby, longest = self._size_map(outline, sizes, bend), self._longest(outline, sizes)
+        counts, shares = [], []
+        for curve, most in longest.items():
+            at = np.linspace(*self.bounds(curve), _BITS + 1)
+            places = self.evaluate(curve, at)
+            size = np.minimum([nearby.at(x, y) for x, y in places[:, 1:].T], most)
+            counts.append(np.hypot(*np.diff(places)) / size)
+            shares.append(size / most)
+        return np.concatenate(counts), np.concatenate(shares)
+
+    def _straight_mesh(self, outline: Outline) -> RawMesh:
         self._gmsh.model.mesh.clear()
         with _gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
             self._gmsh.model.mesh.generate(2)
@@ -255,15 +282,24 @@ class Kernel:
         order = np.argsort(numbers)
         return self._plane(coordinates)[:, order[np.searchsorted(numbers[order], nodes)]]
 
-    def _set_sizes(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> None:
+    def _set_options(self) -> None:
         for name, value in _MESH_OPTIONS.items():
             self._gmsh.option.setNumber(name, value)
-        wanted = {f: sizes[region.name] for region in outline.regions for f in region.faces}
-        along = {
+
+    def _size_map(self, outline: Outline, sizes: Mapping[str, float], bend: Bend) -> SizeMap:
+        longest = self._longest(outline, sizes)
+        return size_map(self, longest, self._joined(longest), bend)
+
+    def _longest(self, outline: Outline, sizes: Mapping[str, float]) -> dict[int, float]:
+        """Longest wanted edge along each curve, metres."""
+        wanted = _by_face(outline, sizes)
+        return {
             curve.tag: min(wanted[face] for face in self.neighbours(curve.tag))
             for curve in outline.curves
         }
-        nearby = size_map(self, along, self._joined(along), bend)
+
+    def _set_sizes(self, outline: Outline, sizes: Mapping[str, float], nearby: SizeMap) -> None:
+        wanted = _by_face(outline, sizes)
 
         def size(dim: int, tag: int, x: float, y: float, z: float, default: float) -> float:
             try:
@@ -276,8 +312,12 @@ class Kernel:
 
     def _joined(self, curves: Iterable[int]) -> dict[int, list[int]]:
         """For each curve the curves that share an end with it."""
-        ends = {curve: set(self.ends(curve)) for curve in curves}
-        return {c: [o for o, theirs in ends.items() if theirs & ends[c]] for c in ends}
+        ends = {curve: self.ends(curve) for curve in curves}
+        meeting: dict[int, set[int]] = {}
+        for curve, points in ends.items():
+            for point in points:
+                meeting.setdefault(point, set()).add(curve)
+        return {c: sorted(meeting[first] | meeting[last]) for c, (first, last) in ends.items()}
 
     def _triangles(self, outline: Outline) -> tuple[Ints, Ints]:
         corners, faces = [], []
@@ -316,6 +356,10 @@ class Kernel:
     def _corner_node(self, point: int) -> int:
         numbers, _, _ = self._gmsh.model.mesh.getNodes(0, point)
         return int(numbers[0])
+
+
+def _by_face(outline: Outline, sizes: Mapping[str, float]) -> dict[int, float]:
+    return {face: sizes[region.name] for region in outline.regions for face in region.faces}
 
 
 def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:

@@ -1,14 +1,15 @@
-"""How long a mesh edge may be at each place of an outline."""
+"""How long mesh edges may be along curves: their bends, and the gaps between them."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Protocol
 
 import numpy as np
 
-from membrane.records.arrays import Floats
+from membrane.kernel.size_map import SizeMap
+from membrane.records.arrays import Bools, Floats
 
 _FIRST_SAMPLES = 17
 _ROUNDS = 40
@@ -35,30 +36,8 @@ class Bend:
     per_gap: float = 1.0
     growth: float = 0.7
 
-    def closer(self, factor: float) -> Bend:
-        """Shorter edges along bends and beside gaps, by a factor."""
-        return Bend(factor * self.per_circle, self.per_gap / factor, self.growth)
 
-
-USUAL = Bend()
-
-
-@dataclass(frozen=True)
-class SizeMap:
-    """Edge length = the least of size + growth x distance over all samples.
-
-    points : (2, n), metres
-    sizes : (n,), metres
-    """
-
-    points: Floats
-    sizes: Floats
-    growth: float
-
-    def at(self, x: float, y: float) -> float:
-        """Longest edge, metres, at a point."""
-        px, py = self.points
-        return float((self.sizes + self.growth * np.hypot(px - x, py - y)).min())
+USUAL, COARSE = Bend(), Bend(per_circle=8.0)
 
 
 @dataclass(frozen=True)
@@ -85,13 +64,13 @@ def size_map(
     parameters = {c: np.linspace(*kernel.bounds(c), _FIRST_SAMPLES) for c in targets}
     for _ in range(_ROUNDS):
         sampled = [_sample(kernel, c, parameters[c], targets[c], bend) for c in targets]
-        sampled = [_beside_gaps(one, sampled, joined[one.curve], bend) for one in sampled]
+        sampled = _beside_gaps(sampled, joined, bend)
         finer = {one.curve: _bisected(one) for one in sampled}
         if all(finer[c].size == parameters[c].size for c in targets):
             break
         parameters = finer
     points = np.hstack([one.points for one in sampled])
-    return thinned(SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth))
+    return SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth).thinned()
 
 
 def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend) -> _Sampled:
@@ -102,15 +81,32 @@ def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend:
 
 
 def _beside_gaps(
-    one: _Sampled, sampled: Sequence[_Sampled], joined: Sequence[int], bend: Bend
-) -> _Sampled:
-    others = [o.points for o in sampled if o.curve != one.curve and o.curve not in joined]
-    if not others:
-        return one
-    (px, py), (qx, qy) = one.points[:, :, None], np.hstack(others)[:, None, :]
-    gaps = np.sqrt(((px - qx) ** 2 + (py - qy) ** 2).min(axis=1))
-    sizes = np.minimum(one.sizes, bend.per_gap * gaps)
-    return _Sampled(one.curve, one.parameters, one.points, sizes)
+    sampled: Sequence[_Sampled], joined: Mapping[int, Sequence[int]], bend: Bend
+) -> list[_Sampled]:
+    """The samples, with the sizes that gaps to other curves allow."""
+    from scipy.spatial import KDTree
+
+    owner = np.repeat(np.arange(len(sampled)), [one.sizes.size for one in sampled])
+    points = np.hstack([one.points for one in sampled])
+    sizes = np.concatenate([one.sizes for one in sampled])
+    near = KDTree(points.T).query_ball_point(points.T, sizes / bend.per_gap)
+    one = np.repeat(np.arange(sizes.size), [len(others) for others in near])
+    other = np.concatenate(near).astype(np.int64)
+    apart = _apart([o.curve for o in sampled], joined)[owner[one], owner[other]]
+    one, other = one[apart], other[apart]
+    gaps = np.hypot(*(points[:, one] - points[:, other]))
+    np.minimum.at(sizes, one, bend.per_gap * gaps)
+    parts = np.split(sizes, np.cumsum([o.sizes.size for o in sampled])[:-1])
+    return [replace(o, sizes=part) for o, part in zip(sampled, parts, strict=True)]
+
+
+def _apart(curves: Sequence[int], joined: Mapping[int, Sequence[int]]) -> Bools:
+    """(n, n) whether a gap between two curves counts: they are not one, nor do they meet."""
+    number = {curve: k for k, curve in enumerate(curves)}
+    apart: Bools = ~np.eye(len(curves), dtype=bool)
+    for curve, others in joined.items():
+        apart[number[curve], [number[other] for other in others]] = False
+    return apart
 
 
 def _bisected(one: _Sampled) -> Floats:
@@ -119,15 +115,3 @@ def _bisected(one: _Sampled) -> Floats:
     long = steps > 0.5 * np.minimum(one.sizes[:-1], one.sizes[1:])
     halves = 0.5 * (one.parameters[:-1] + one.parameters[1:])[long]
     return np.sort(np.concatenate([one.parameters, halves]))
-
-
-def thinned(sizes: SizeMap) -> SizeMap:
-    """Without the samples that others overrule everywhere."""
-    kept: list[int] = []
-    order = np.argsort(sizes.sizes, kind="stable")
-    for k in order:
-        x, y = sizes.points[:, k]
-        near = SizeMap(sizes.points[:, kept], sizes.sizes[kept], sizes.growth)
-        if not kept or near.at(x, y) > 1.000001 * sizes.sizes[k]:
-            kept.append(int(k))
-    return SizeMap(sizes.points[:, kept], sizes.sizes[kept], sizes.growth)

@@ -1,10 +1,10 @@
 """The stage from the outline to a curved, graded mesh."""
 
+from membrane.mesh.economy import suited_resolution
 from membrane.mesh.make import make_mesh
 from membrane.mesh.resolution import (
     Resolution,
     check_affordable,
-    first_resolution,
     region_sizes,
     unknowns,
 )
@@ -12,8 +12,8 @@ from membrane.mesh.resolution import (
 __all__ = [
     "Resolution",
     "check_affordable",
-    "first_resolution",
     "make_mesh",
     "region_sizes",
+    "suited_resolution",
     "unknowns",
 ]

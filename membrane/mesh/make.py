@@ -5,12 +5,17 @@ from __future__ import annotations
 from collections.abc import Mapping
 
 from membrane.errors import MeshError
-from membrane.kernel import Kernel
+from membrane.kernel import COARSE, USUAL, Kernel
 from membrane.mesh.checks import check_mesh
 from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
 from membrane.mesh.grade import graded
-from membrane.mesh.resolution import Resolution, check_affordable, region_sizes
+from membrane.mesh.resolution import (
+    LOWEST_DEGREE,
+    Resolution,
+    check_affordable,
+    region_sizes,
+)
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
@@ -52,9 +57,11 @@ def _attempt(
     sizes: Mapping[str, float],
     resolution: Resolution,
 ) -> Mesh:
-    raw = kernel.triangulate(outline, sizes)
+    # the lowest degree is for very many small shapes, each exact enough with fewer segments
+    bend = COARSE if resolution.degree == LOWEST_DEGREE else USUAL
+    raw = kernel.triangulate(outline, sizes, bend)
     found = corners(kernel, outline, membrane, raw)
-    raw = graded(kernel, raw, found, resolution.tolerance)
+    raw = graded(kernel, raw, found, resolution.tolerance, resolution.degree)
     mesh = curved(kernel, outline, raw, resolution.degree)
     check_mesh(mesh, outline)
     return mesh

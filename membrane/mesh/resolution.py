@@ -14,13 +14,11 @@ from membrane.records.membrane import Field, Membrane
 from membrane.records.outline import Outline
 from membrane.records.study import ModesWanted
 
-HIGHEST_DEGREE = 12
+LOWEST_DEGREE, HIGHEST_DEGREE = 4, 12
+"""Degrees that are chosen where the user sets none."""
 
 MOST_UNKNOWNS = 1_000_000
 """More than this takes hours and tens of gigabytes."""
-
-COARSER_BY = 2
-"""How many degrees lower the second solve is that measures the error."""
 
 
 @dataclass(frozen=True)
@@ -41,7 +39,7 @@ class Resolution:
     @property
     def coarser_degree(self) -> int:
         """Degree of the second solve, which measures the error of the first."""
-        return self.degree - COARSER_BY
+        return _coarser(self.degree)
 
     def finer(self, excess: float) -> Resolution:
         """The next to try, where the measured error was ``excess`` times the wanted one."""
@@ -53,18 +51,26 @@ class Resolution:
         return Resolution(degree, shrink * self.phase, drop * self.tolerance, self.degree_is_free)
 
 
-def first_resolution(wanted: ModesWanted) -> Resolution:
-    """What should be fine enough for the wanted accuracy at the first try."""
+def first_resolution(wanted: ModesWanted, degree: int | None = None) -> Resolution:
+    """What should be fine enough for the wanted accuracy at the first try.
+
+    degree : to use unless the user has set one; None lets the accuracy choose
+    """
     relative = wanted.accuracy / CENTS_PER_EIGENVALUE
-    degree = wanted.degree or _degree_for(relative)
-    phase = _phase_for(relative, degree - COARSER_BY)
+    degree = wanted.degree or degree or _degree_for(relative)
+    phase = _phase_for(relative, _coarser(degree))
     return Resolution(degree, phase, 1e-4 * relative, wanted.degree is None)
+
+
+def _coarser(degree: int) -> int:
+    """Two degrees less, but one less of the lowest: of degree 2 the triangles are too many."""
+    return degree - (2 if degree > LOWEST_DEGREE else 1)
 
 
 def _degree_for(relative: float) -> int:
     """Two degrees more for every three digits, 8 at 0.01 cent: cheapest in our trials."""
     digits = -np.log10(relative)
-    return int(np.clip(2 * round((digits + 7.0) / 3.0), 4, HIGHEST_DEGREE))
+    return int(np.clip(2 * round((digits + 7.0) / 3.0), LOWEST_DEGREE, HIGHEST_DEGREE))
 
 
 def _phase_for(relative: float, degree: int) -> float:

@@ -4,10 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from functools import cache
-from typing import Any
 
 from membrane.pencil.coefficient import coefficient
-from membrane.pencil.forms import WEAK_FORMS, Integrand
+from membrane.pencil.forms import WEAK_FORMS
 from membrane.pencil.integrate import integrated
 from membrane.pencil.space import Discretisation, build_space
 from membrane.records.function import Function
@@ -40,10 +39,9 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
         weak = WEAK_FORMS[c.field]
         on = on_regions if weak.on == "regions" else on_edges
         basis = on(c.where, isinstance(c.value, Function))
-        yield weak.side, Part(c.key, c.scale, _matrix(weak.integrand(coefficient(c)), basis, free))
+        yield (
+            weak.side,
+            Part(c.key, c.scale, integrated(weak.integrand(coefficient(c)), basis, free)),
+        )
     for own in membrane.own_forms:
-        yield own.side, Part(own.key, own.scale, _matrix(own.form, on_regions(own.where), free))
-
-
-def _matrix(form: Integrand, basis: Any, free: Any) -> Any:
-    return integrated(form, basis)[free][:, free]
+        yield own.side, Part(own.key, own.scale, integrated(own.form, on_regions(own.where), free))

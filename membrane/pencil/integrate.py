@@ -23,8 +23,10 @@ CONSTANT = 1e-12
 """Relative variation over a triangle below which a coefficient is constant."""
 
 
-def integrated(form: Integrand, basis: Any) -> Any:
-    """The symmetric matrix (n_dofs, n_dofs) of a form in u, v and their first derivatives.
+def integrated(form: Integrand, basis: Any, free: Ints) -> Any:
+    """The symmetric matrix (n_free, n_free) of a form in u, v and their first derivatives.
+
+    free : the dofs to keep, rising
 
     Over triangles the form is called once for each pair of the three unit fields
     u = 1, u = xi and u = eta of the reference triangle. By linearity what it makes of them,
@@ -32,15 +34,17 @@ def integrated(form: Integrand, basis: Any) -> Any:
     products of matrices. Along facets, which are few, scikit-fem sums up pair by pair.
     """
     if not isinstance(basis, CellBasis):
-        return BilinearForm(form).assemble(basis)
+        return BilinearForm(form).assemble(basis)[free][:, free]
     pairs = np.triu_indices(basis.Nbfun)
     local = np.hstack([np.zeros((len(pairs[0]), 0)), *_chunks(form, basis, pairs)])
-    rows, columns = (np.asarray(basis.element_dofs)[pair].astype(np.int64) for pair in pairs)
-    twice = pairs[0] != pairs[1]
-    places = np.hstack([rows.ravel(), columns[twice].ravel()])
-    others = np.hstack([columns.ravel(), rows[twice].ravel()])
-    data = np.hstack([local.ravel(), local[twice].ravel()])
-    return csr_array((data, (places, others)), shape=(basis.N, basis.N))
+    number = np.full(basis.N, -1)
+    number[free] = np.arange(free.size)
+    rows, columns = (number[basis.element_dofs[pair]] for pair in pairs)
+    kept = (rows >= 0) & (columns >= 0)
+    rows, columns, data = rows[kept], columns[kept], local[kept]
+    twice = rows != columns
+    places = np.concatenate([rows, columns[twice]]), np.concatenate([columns, rows[twice]])
+    return csr_array((np.concatenate([data, data[twice]]), places), shape=(free.size, free.size))
 
 
 def _chunks(form: Integrand, basis: CellBasis, pairs: tuple[Ints, Ints]) -> Iterator[Floats]:

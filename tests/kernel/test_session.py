@@ -262,7 +262,7 @@ def test_an_interrupt_while_sizes_are_asked_for_is_not_lost(monkeypatch):
     with Kernel.session() as kernel:
         outline = draw(kernel, study(disc(2.0)))
         monkeypatch.setattr("membrane.kernel.sizes.SizeMap.at", interrupted)
-        monkeypatch.setattr("membrane.kernel.sizes.thinned", lambda sizes: sizes)
+        monkeypatch.setattr("membrane.kernel.sizes.SizeMap.thinned", lambda sizes: sizes)
         with pytest.raises(KeyboardInterrupt):
             kernel.triangulate(outline, {"head": 0.5})
 

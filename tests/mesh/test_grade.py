@@ -44,7 +44,7 @@ def test_a_fine_polygon_costs_little_and_keeps_its_accuracy(monkeypatch):
     wanted = {"outline": {"shape": "regular_polygon", "sides": 20, "radius": 1.0}}
     study = study_from({**wanted, "head": zoo.HEAD, "modes": {"count": 6}})
     ours = run(study)
-    monkeypatch.setattr(grade, "depth", lambda exponent, share, tolerance: 10)
+    monkeypatch.setattr(grade, "depth", lambda exponent, share, tolerance, degree: 10)
     exact = run(study)
     error = np.abs(ours.modes.eigenvalues / exact.modes.eigenvalues - 1)
     assert error.max() < 1e-9
