@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from membrane.drawings import Found, find_contour
-from membrane.drawings.pieces import Arc, Bezier, Piece
+from membrane.drawings.pieces import Bezier, Line, Piece
 from membrane.records.outline import Drawing
 from membrane.units import File, PositiveLength, UnitOfLength
 
@@ -62,23 +62,26 @@ def _place(point: complex) -> list[float]:
 
 
 def _curve(geometry: Any, piece: Piece, start: Any, end: Any) -> Any:
-    """The kernel's own curve of the same kind, between points that its neighbours share."""
-    if isinstance(piece, Arc):
-        return _arc(geometry, piece, start, end)
+    """The kernel's own curve of the same kind, between points that its neighbours share.
+
+    The kernel finds an elliptic arc from its ends, which does not work for every arc, so
+    it gets the conic as a rational Bézier.
+    """
+    if isinstance(piece, Line):
+        return geometry.add_line(start, end)
     if isinstance(piece, Bezier):
-        inner = [geometry.add_point(_place(point)) for point in piece.points[1:-1]]
-        if piece.weights:
-            return _Rational(geometry.env, [start, *inner, end], piece.weights)
-        return geometry.add_bezier([start, *inner, end])
-    return geometry.add_line(start, end)
+        return _bezier(geometry, piece, start, end)
+    if piece.is_circle:
+        return geometry.add_circle_arc(start, geometry.add_point(_place(piece.centre)), end)
+    return _bezier(geometry, piece.conic, start, end)
 
 
-def _arc(geometry: Any, arc: Arc, start: Any, end: Any) -> Any:
-    centre = geometry.add_point(_place(arc.centre))
-    if arc.is_circle:
-        return geometry.add_circle_arc(start, centre, end)
-    major = geometry.add_point(_place(arc.centre + arc.major))
-    return geometry.add_ellipse_arc(start, centre, major, end)
+def _bezier(geometry: Any, bezier: Bezier, start: Any, end: Any) -> Any:
+    inner = [geometry.add_point(_place(point)) for point in bezier.points[1:-1]]
+    points = [start, *inner, end]
+    if bezier.weights:
+        return _Rational(geometry.env, points, bezier.weights)
+    return geometry.add_bezier(points)
 
 
 class _Rational:

@@ -11,6 +11,9 @@ import numpy as np
 from membrane.drawings.pieces import Arc, Bezier, Line, Piece
 
 _WIDEST = 2.0 * pi / 3.0
+_WIDEST_OF_ELLIPSE = pi / 3.0
+"""Radians; the kernel measures areas beside longer conics to no more than nine digits."""
+
 _ROUND = 1e-12
 
 _STANDS_STILL = 1e-9
@@ -30,7 +33,8 @@ def parts(piece: Piece, tolerance: float) -> tuple[Piece, ...]:
     if isinstance(piece, Line):
         return (piece,)
     if isinstance(piece, Arc):
-        count = ceil(abs(piece.last - piece.first) / _WIDEST - 1e-9)
+        widest = _WIDEST if piece.is_circle else _WIDEST_OF_ELLIPSE
+        count = ceil(abs(piece.last - piece.first) / widest - 1e-9)
         shares = [k / count for k in range(count + 1)]
         return tuple(piece.between(s, t) for s, t in pairwise(shares))
     if _is_straight(piece):

@@ -96,20 +96,24 @@ class Arc:
 
     @property
     def is_circle(self) -> bool:
-        """Whether the axes are equal, up to rounding."""
-        one, other = sorted(abs(z) for z in self._turning())
+        """Whether the axes are equal, up to rounding.
+
+        The arc is u exp(it) + v exp(-it) around its centre; a circle turns one way only.
+        """
+        one, other = sorted((abs(self.a - 1j * self.b), abs(self.a + 1j * self.b)))
         return one <= _ROUND * other
 
     @property
-    def major(self) -> complex:
-        """The longer half axis, as a vector."""
-        one, other = self._turning()
-        turn = 0.5 * (np.angle(one) + np.angle(other))
-        return complex((abs(one) + abs(other)) * np.exp(1j * turn))
+    def conic(self) -> Bezier:
+        """The same curve, of less than half a turn, as a rational quadratic Bézier.
 
-    def _turning(self) -> tuple[complex, complex]:
-        """u and v of u exp(it) + v exp(-it)."""
-        return 0.5 * (self.a - 1j * self.b), 0.5 * (self.a + 1j * self.b)
+        G. Farin, Curves and Surfaces for CAGD, on conics (from memory); exact for ellipses,
+        as maps of the plane keep the weights.
+        """
+        middle, half = 0.5 * (self.first + self.last), 0.5 * (self.last - self.first)
+        weight = float(np.cos(half))
+        tip = self.centre + (self.a * np.cos(middle) + self.b * np.sin(middle)) / weight
+        return Bezier((self.start, complex(tip), self.end), (1.0, weight, 1.0))
 
     def at(self, t: Floats) -> Points:
         """Points (n,) at shares ``t`` (n,) of the angle."""

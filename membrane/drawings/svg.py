@@ -220,14 +220,13 @@ def _arc(segment: Any) -> Iterator[Piece]:
     half = 0.5 * complex(back(end - start))
     offset = 1.0 - abs(half) ** 2
     side = 1.0 if (back(rough - start) / half).imag > 0 else -1.0
-    is_half = abs(offset) < 1e-9  # radii too small for their chord were stretched to fit it
-    scale = abs(half) if is_half else 1.0
+    is_half = abs(offset) < 1e-9  # of radii that are too small, stretched to fit
     towards = 0.0 if is_half else side * np.sqrt(offset) * 1j * half / abs(half)
     centre = start + complex(turned(half + towards))
     first = float(np.angle(-half - towards))
     turn = (float(np.angle(half - towards)) - first) % (2 * pi)
     sweep = turn if segment.sweep * area > 0 else turn - 2 * pi
-    yield Arc(centre, scale * a, scale * b, first, first + sweep)
+    yield Arc(centre, a, b, first, first + sweep)
 
 
 def _ellipse(element: ElementTree.Element) -> Iterator[Piece]:

@@ -49,3 +49,8 @@ def test_a_retracted_handle(turned):
     straight = [part for part in found if isinstance(part, Line)]
     assert len(straight) == 1
     assert abs(straight[0].end - straight[0].start) < 1e-4
+
+
+def test_an_ellipse_comes_in_sixths():
+    """Shorter than a circle's parts, for the kernel's areas: tests/geometries/test_file.py."""
+    assert len(parts(Arc(0j, 2 + 0j, 1j, 0.3, 0.3 - 2 * np.pi), 1e-6)) == 6

@@ -79,6 +79,14 @@ def test_a_circle_as_svg_is_the_disc(svg, body):
     assert np.abs(values * 0.03**2 / DISC - 1).max() < 1e-9
 
 
+def test_an_ellipse_as_dxf(tmp_path):
+    document = ezdxf.new(units=6)
+    document.modelspace().add_ellipse((5, -2), (0.9, 1.2), 2 / 3)
+    document.saveas(tmp_path / "ellipse.dxf")
+    values, _ = eigenvalues(tmp_path / "ellipse.dxf")
+    assert np.abs(values / reference("ellipse_a1p5_b1") - 1).max() < 1e-9
+
+
 def test_a_gap_that_is_closed_hardly_changes_the_disc(tmp_path):
     document = ezdxf.new(units=6)
     document.modelspace().add_arc((0, 0), 1.0, 0, 180.0002)

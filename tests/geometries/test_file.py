@@ -62,6 +62,19 @@ def test_an_elliptic_arc_is_exact_and_edges_are_layers(dxf):
     assert found.area == pytest.approx(PI * 0.25, rel=1e-10)
 
 
+@pytest.mark.parametrize("ratio", [0.9, 0.1, 0.9999999])
+@pytest.mark.parametrize("first", [0.0, 0.3, PI / 2, -PI / 3, PI / 6])
+def test_a_whole_ellipse_is_exact_wherever_it_starts(dxf, ratio, first):
+    """Also where its parts lie evenly about an axis."""
+    major = (np.cos(0.3), np.sin(0.3))
+    path = dxf(lambda space: space.add_ellipse((0.2, 0.1), major, ratio, first, first + 2 * PI))
+    found, points = drawn(file(path))
+    x, y = points["rim"]
+    z = (x - 0.2 + 1j * (y - 0.1)) * np.exp(-0.3j)
+    np.testing.assert_allclose(z.real**2 + (z.imag / ratio) ** 2, 1.0, rtol=1e-12)
+    assert found.area == pytest.approx(PI * ratio, rel=1e-10)
+
+
 def test_a_rational_spline_is_exact(dxf):
     """Weights 1, 1/sqrt 2, 1 make a quarter circle (Piegl & Tiller, The NURBS Book)."""
 
