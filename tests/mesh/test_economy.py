@@ -12,7 +12,7 @@ from tests import zoo
 
 def dots(across, **more):
     """A square grid of dots on a disc."""
-    places = np.linspace(-0.65, 0.65, across)
+    places = np.linspace(-0.6, 0.6, across)
     patches = [
         {"name": f"dot{i}and{j}", "shape": "disc", "diameter": 0.5 / max(across, 4), "at": [x, y]}
         for i, x in enumerate(places.tolist())
