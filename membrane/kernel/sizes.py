@@ -9,10 +9,11 @@ from typing import Protocol
 import numpy as np
 
 from membrane.kernel.size_map import SizeMap
-from membrane.records.arrays import Bools, Floats
+from membrane.records.arrays import Bools, Floats, Ints
 
 _FIRST_SAMPLES = 17
 _ROUNDS = 40
+_NEIGHBOURS = 8
 
 
 class Curves(Protocol):
@@ -84,20 +85,35 @@ def _beside_gaps(
     sampled: Sequence[_Sampled], joined: Mapping[int, Sequence[int]], bend: Bend
 ) -> list[_Sampled]:
     """The samples, with the sizes that gaps to other curves allow."""
+    counts = [one.sizes.size for one in sampled]
+    owner = np.repeat(np.arange(len(sampled)), counts)
+    sizes = np.concatenate([one.sizes for one in sampled])
+    apart = _apart([one.curve for one in sampled], joined)
+    gaps = _gaps(np.hstack([one.points for one in sampled]), owner, apart, sizes / bend.per_gap)
+    parts = np.split(np.minimum(sizes, bend.per_gap * gaps), np.cumsum(counts)[:-1])
+    return [replace(one, sizes=part) for one, part in zip(sampled, parts, strict=True)]
+
+
+def _gaps(points: Floats, owner: Ints, apart: Bools, reach: Floats) -> Floats:
+    """(n,) distance of each point from the nearest point of a curve apart, inf beyond ``reach``.
+
+    owner : (n,) number of each point's curve
+    apart : (n_curves, n_curves)
+    """
     from scipy.spatial import KDTree
 
-    owner = np.repeat(np.arange(len(sampled)), [one.sizes.size for one in sampled])
-    points = np.hstack([one.points for one in sampled])
-    sizes = np.concatenate([one.sizes for one in sampled])
-    near = KDTree(points.T).query_ball_point(points.T, sizes / bend.per_gap)
-    one = np.repeat(np.arange(sizes.size), [len(others) for others in near])
-    other = np.concatenate(near).astype(np.int64)
-    apart = _apart([o.curve for o in sampled], joined)[owner[one], owner[other]]
-    one, other = one[apart], other[apart]
-    gaps = np.hypot(*(points[:, one] - points[:, other]))
-    np.minimum.at(sizes, one, bend.per_gap * gaps)
-    parts = np.split(sizes, np.cumsum([o.sizes.size for o in sampled])[:-1])
-    return [replace(o, sizes=part) for o, part in zip(sampled, parts, strict=True)]
+    tree, gaps = KDTree(points.T), np.full(owner.size, np.inf)
+    open_, looked_at = np.arange(owner.size), _NEIGHBOURS
+    while open_.size:
+        looked_at = min(looked_at, owner.size)
+        found = tree.query(points[:, open_].T, np.arange(1, looked_at + 1))
+        away, other = np.asarray(found[0]), np.asarray(found[1])
+        counts = apart[owner[open_, None], owner[other]]
+        gaps[open_] = np.where(counts, away, np.inf).min(axis=1)
+        done = counts.any(axis=1) | (away[:, -1] > reach[open_])
+        open_ = open_[~done & (looked_at < owner.size)]
+        looked_at *= 4
+    return gaps
 
 
 def _apart(curves: Sequence[int], joined: Mapping[int, Sequence[int]]) -> Bools:
