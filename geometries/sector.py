@@ -46,7 +46,7 @@ def build(geometry: Any, options: Options) -> Drawing:
     start = geometry.add_line(apex, ends[0])
     if options.is_slit_disc:
         surface = geometry.add_plane_surface(geometry.add_curve_loop(arc))
-        return Drawing(surface, {"arc": arc}, [Lips(start, left="start", right="end")])
+        return Drawing(surface, {"arc": arc}, slits=[Lips(start, left="start", right="end")])
     end = geometry.add_line(ends[-1], apex)
     surface = geometry.add_plane_surface(geometry.add_curve_loop([start, *arc, end]))
     return Drawing(surface, {"arc": arc, "start": [start], "end": [end]})

@@ -34,7 +34,7 @@ def wheel(tmp_path: Path) -> Path:
     source = tmp_path / "source"
     for folder in INSTALLED_AS:
         shutil.copytree(ROOT / folder, source / folder)
-    for name in ("pyproject.toml", "LICENSE"):
+    for name in ("pyproject.toml", "README.md", "LICENSE"):
         shutil.copy(ROOT / name, source)
     options = ["--quiet", "--no-deps", "--no-index", "--no-build-isolation"]
     command = [sys.executable, "-m", "pip", "wheel", *options, "--wheel-dir", str(tmp_path)]

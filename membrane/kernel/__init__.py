@@ -1,5 +1,6 @@
 """The geometry kernel: the only room that knows gmsh and pygmsh."""
 
 from membrane.kernel.session import Kernel
+from membrane.kernel.sizes import COARSE, USUAL
 
-__all__ = ["Kernel"]
+__all__ = ["COARSE", "USUAL", "Kernel"]

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import threading
-from collections.abc import Iterable, Iterator, Mapping, Sequence
+from collections.abc import Collection, Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from functools import cache
 from math import inf
@@ -15,6 +15,7 @@ import numpy as np
 from membrane.errors import MeshError, OutlineError
 from membrane.kernel.bent_corners import spoilt
 from membrane.kernel.failures import gmsh_failures
+from membrane.kernel.size_map import SizeMap
 from membrane.kernel.sizes import USUAL, Bend, size_map
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
@@ -28,8 +29,12 @@ _PANELS, _PER_PANEL = 12, 12
 
 NOTHING: Mapping[int, float] = MappingProxyType({})
 
-# How much more closely curves are followed, try by try.
-_CLOSER = (1.0, 1.5, 2.0, 3.0, 5.0, 8.0, 16.0)
+# How often a mesh is made anew, and how much shorter its edges then are where a triangle
+# could not take the shape of its curves.
+_TRIES, _SHORTER = 10, 0.5
+
+# Bits of a curve in which segments are counted without a mesh.
+_BITS = 32
 
 # How far a vertex may lie off its curve, as a share of the outline's size.
 _JOINED = 1e-9
@@ -173,18 +178,20 @@ class Kernel:
         if at != (0.0, 0.0):
             self._gmsh.model.occ.translate(things, *at, 0)
 
-    def add_point(self, x: float, y: float) -> int:
-        """A loose point, for ``fragment``."""
-        return int(self._gmsh.model.occ.addPoint(x, y, 0.0))
-
     def fragment(
-        self, faces: Sequence[int], curves: Iterable[int] = (), points: Iterable[int] = ()
+        self,
+        faces: Sequence[int],
+        points: Iterable[tuple[float, float]] = (),
+        curves: Iterable[int] = (),
     ) -> list[set[int]]:
-        """Cut faces by each other, by curves and by points: for each face what covers it.
+        """Cut faces by each other, and by curves: for each face what covers it.
 
+        points : places (x, y), metres, that become vertices of every mesh of the faces
         Raises OutlineError where the kernel cannot cut them.
         """
-        finer = [(1, curve) for curve in curves] + [(0, point) for point in points]
+        occ = self._gmsh.model.occ
+        finer = [(1, curve) for curve in curves]
+        finer += [(0, occ.addPoint(*point, 0.0)) for point in points]
         if len(faces) > 1 or finer:
             first, *others = [(2, face) for face in faces] + finer
             with gmsh_failures(OutlineError, "The shapes could not be cut by each other"):
@@ -216,17 +223,17 @@ class Kernel:
         """Whether a point (2,), metres, lies in a face."""
         return bool(self._gmsh.model.isInside(2, face, [*point, 0.0]))
 
-    def keep_only(self, faces: Iterable[int]) -> None:
-        """Remove all faces but these, and every curve and point that bounds none."""
+    def keep_only(self, faces: Collection[int]) -> None:
+        """Remove all faces but these, and every curve and point that is not of them."""
         model = self._gmsh.model
         kept = {(2, face) for face in faces}
         model.occ.remove([face for face in model.getEntities(2) if face not in kept], True)
         self.synchronize()
-        model.occ.remove([e for e in model.getEntities(1) if not self.neighbours(e[1])], True)
-        self.synchronize()
-        loose = [e for e in model.getEntities(0) if not len(model.getAdjacencies(*e)[0])]
-        model.occ.remove(loose, True)
-        self.synchronize()
+        inner = {e for face in faces for e in model.mesh.getEmbedded(2, face)}
+        for dim in (1, 0):
+            loose = [e for e in model.getEntities(dim) if not len(model.getAdjacencies(*e)[0])]
+            model.occ.remove([e for e in loose if e not in inner], True)
+            self.synchronize()
 
     # Mesh
 
@@ -241,28 +248,44 @@ class Kernel:
 
         sizes : region name -> longest wanted edge, metres
         along : curve -> longest wanted edge beside it, where that is shorter
-        bend : how edges shorten along bent curves and beside gaps; followed more
-            closely where a triangle could not take the shape of its curves
+        bend : how edges shorten along bent curves and beside gaps
 
+        Edges are shorter still where a triangle could not take the shape of its curves.
         Raises MeshError where gmsh fails or its mesh is not sound.
         """
-        for closer in _CLOSER:
-            raw = self._straight_mesh(outline, sizes, bend.closer(closer), along)
-            if not spoilt(raw, self._tangents(raw)).any():
+        self._set_options()
+        nearby = self._size_map(outline, sizes, bend, along)
+        for _ in range(_TRIES):
+            self._set_sizes(outline, sizes, nearby)
+            raw = self._straight_mesh(outline)
+            wrong = spoilt(raw, self._tangents(raw))
+            if not wrong.any():
                 return raw
+            nearby = nearby.shortened(raw.vertices[:, np.unique(raw.triangles[:, wrong])], _SHORTER)
         raise MeshError(
             "No mesh follows the curves of the outline; "
             "move apart or leave out shapes that all but touch."
         )
 
-    def _straight_mesh(
-        self,
-        outline: Outline,
-        sizes: Mapping[str, float],
-        bend: Bend,
-        along: Mapping[int, float],
-    ) -> RawMesh:
-        self._set_sizes(outline, sizes, bend, along)
+    def segments(
+        self, outline: Outline, sizes: Mapping[str, float], bend: Bend = USUAL
+    ) -> tuple[Floats, Floats]:
+        """How finely a mesh of these sizes follows the curves, without making it.
+
+        returns : for each bit of every curve (n,) how many segments it gets, and how long
+            they are over the longest wanted there
+        """
+        nearby, longest = self._size_map(outline, sizes, bend), self._longest(outline, sizes)
+        counts, shares = [], []
+        for curve, most in longest.items():
+            at = np.linspace(*self.bounds(curve), _BITS + 1)
+            places = self.evaluate(curve, at)
+            size = np.minimum([nearby.at(x, y) for x, y in places[:, 1:].T], most)
+            counts.append(np.hypot(*np.diff(places)) / size)
+            shares.append(size / most)
+        return np.concatenate(counts), np.concatenate(shares)
+
+    def _straight_mesh(self, outline: Outline) -> RawMesh:
         self._gmsh.model.mesh.clear()
         with gmsh_failures(MeshError, "gmsh could not cover the outline with triangles"):
             self._gmsh.model.mesh.generate(2)
@@ -305,24 +328,31 @@ class Kernel:
         order = np.argsort(numbers)
         return self._plane(coordinates)[:, order[np.searchsorted(numbers[order], nodes)]]
 
-    def _set_sizes(
+    def _set_options(self) -> None:
+        for name, value in _MESH_OPTIONS.items():
+            self._gmsh.option.setNumber(name, value)
+
+    def _size_map(
         self,
         outline: Outline,
         sizes: Mapping[str, float],
         bend: Bend,
-        shorter: Mapping[int, float],
-    ) -> None:
-        for name, value in _MESH_OPTIONS.items():
-            self._gmsh.option.setNumber(name, value)
-        wanted = {f: sizes[region.name] for region in outline.regions for f in region.faces}
-        along = {
-            curve.tag: min(
-                *(wanted[face] for face in self.neighbours(curve.tag)),
-                shorter.get(curve.tag, inf),
-            )
+        along: Mapping[int, float] = NOTHING,
+    ) -> SizeMap:
+        longest = self._longest(outline, sizes)
+        longest = {curve: min(most, along.get(curve, inf)) for curve, most in longest.items()}
+        return size_map(self, longest, self._joined(longest), bend)
+
+    def _longest(self, outline: Outline, sizes: Mapping[str, float]) -> dict[int, float]:
+        """Longest wanted edge along each curve, metres."""
+        wanted = _by_face(outline, sizes)
+        return {
+            curve.tag: min(wanted[face] for face in self.neighbours(curve.tag))
             for curve in outline.curves
         }
-        nearby = size_map(self, along, self._joined(along), bend)
+
+    def _set_sizes(self, outline: Outline, sizes: Mapping[str, float], nearby: SizeMap) -> None:
+        wanted = _by_face(outline, sizes)
 
         def size(dim: int, tag: int, x: float, y: float, z: float, default: float) -> float:
             try:
@@ -335,8 +365,12 @@ class Kernel:
 
     def _joined(self, curves: Iterable[int]) -> dict[int, list[int]]:
         """For each curve the curves that share an end with it."""
-        ends = {curve: set(self.ends(curve)) for curve in curves}
-        return {c: [o for o, theirs in ends.items() if theirs & ends[c]] for c in ends}
+        ends = {curve: self.ends(curve) for curve in curves}
+        meeting: dict[int, set[int]] = {}
+        for curve, points in ends.items():
+            for point in points:
+                meeting.setdefault(point, set()).add(curve)
+        return {c: sorted(meeting[first] | meeting[last]) for c, (first, last) in ends.items()}
 
     def _triangles(self, outline: Outline) -> tuple[Ints, Ints]:
         corners, faces = [], []
@@ -375,6 +409,10 @@ class Kernel:
     def _corner_node(self, point: int) -> int:
         numbers, _, _ = self._gmsh.model.mesh.getNodes(0, point)
         return int(numbers[0])
+
+
+def _by_face(outline: Outline, sizes: Mapping[str, float]) -> dict[int, float]:
+    return {face: sizes[region.name] for region in outline.regions for face in region.faces}
 
 
 def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:

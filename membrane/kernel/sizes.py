@@ -1,17 +1,19 @@
-"""How long a mesh edge may be at each place of an outline."""
+"""How long mesh edges may be along curves: their bends, and the gaps between them."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Protocol
 
 import numpy as np
 
-from membrane.records.arrays import Floats
+from membrane.kernel.size_map import SizeMap
+from membrane.records.arrays import Bools, Floats, Ints
 
 _FIRST_SAMPLES = 17
 _ROUNDS = 40
+_NEIGHBOURS = 8
 
 
 class Curves(Protocol):
@@ -35,30 +37,8 @@ class Bend:
     per_gap: float = 1.0
     growth: float = 0.7
 
-    def closer(self, factor: float) -> Bend:
-        """Shorter edges along bends and beside gaps, by a factor."""
-        return Bend(factor * self.per_circle, self.per_gap / factor, self.growth)
 
-
-USUAL = Bend()
-
-
-@dataclass(frozen=True)
-class SizeMap:
-    """Edge length = the least of size + growth x distance over all samples.
-
-    points : (2, n), metres
-    sizes : (n,), metres
-    """
-
-    points: Floats
-    sizes: Floats
-    growth: float
-
-    def at(self, x: float, y: float) -> float:
-        """Longest edge, metres, at a point."""
-        px, py = self.points
-        return float((self.sizes + self.growth * np.hypot(px - x, py - y)).min())
+USUAL, COARSE = Bend(), Bend(per_circle=8.0)
 
 
 @dataclass(frozen=True)
@@ -85,13 +65,13 @@ def size_map(
     parameters = {c: np.linspace(*kernel.bounds(c), _FIRST_SAMPLES) for c in targets}
     for _ in range(_ROUNDS):
         sampled = [_sample(kernel, c, parameters[c], targets[c], bend) for c in targets]
-        sampled = [_beside_gaps(one, sampled, joined[one.curve], bend) for one in sampled]
+        sampled = _beside_gaps(sampled, joined, bend)
         finer = {one.curve: _bisected(one) for one in sampled}
         if all(finer[c].size == parameters[c].size for c in targets):
             break
         parameters = finer
     points = np.hstack([one.points for one in sampled])
-    return thinned(SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth))
+    return SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth).thinned()
 
 
 def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend) -> _Sampled:
@@ -102,15 +82,47 @@ def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend:
 
 
 def _beside_gaps(
-    one: _Sampled, sampled: Sequence[_Sampled], joined: Sequence[int], bend: Bend
-) -> _Sampled:
-    others = [o.points for o in sampled if o.curve != one.curve and o.curve not in joined]
-    if not others:
-        return one
-    (px, py), (qx, qy) = one.points[:, :, None], np.hstack(others)[:, None, :]
-    gaps = np.sqrt(((px - qx) ** 2 + (py - qy) ** 2).min(axis=1))
-    sizes = np.minimum(one.sizes, bend.per_gap * gaps)
-    return _Sampled(one.curve, one.parameters, one.points, sizes)
+    sampled: Sequence[_Sampled], joined: Mapping[int, Sequence[int]], bend: Bend
+) -> list[_Sampled]:
+    """The samples, with the sizes that gaps to other curves allow."""
+    counts = [one.sizes.size for one in sampled]
+    owner = np.repeat(np.arange(len(sampled)), counts)
+    sizes = np.concatenate([one.sizes for one in sampled])
+    apart = _apart([one.curve for one in sampled], joined)
+    gaps = _gaps(np.hstack([one.points for one in sampled]), owner, apart, sizes / bend.per_gap)
+    parts = np.split(np.minimum(sizes, bend.per_gap * gaps), np.cumsum(counts)[:-1])
+    return [replace(one, sizes=part) for one, part in zip(sampled, parts, strict=True)]
+
+
+def _gaps(points: Floats, owner: Ints, apart: Bools, reach: Floats) -> Floats:
+    """(n,) distance of each point from the nearest point of a curve apart, inf beyond ``reach``.
+
+    owner : (n,) number of each point's curve
+    apart : (n_curves, n_curves)
+    """
+    from scipy.spatial import KDTree
+
+    tree, gaps = KDTree(points.T), np.full(owner.size, np.inf)
+    open_, looked_at = np.arange(owner.size), _NEIGHBOURS
+    while open_.size:
+        looked_at = min(looked_at, owner.size)
+        found = tree.query(points[:, open_].T, np.arange(1, looked_at + 1))
+        away, other = np.asarray(found[0]), np.asarray(found[1])
+        counts = apart[owner[open_, None], owner[other]]
+        gaps[open_] = np.where(counts, away, np.inf).min(axis=1)
+        done = counts.any(axis=1) | (away[:, -1] > reach[open_])
+        open_ = open_[~done & (looked_at < owner.size)]
+        looked_at *= 4
+    return gaps
+
+
+def _apart(curves: Sequence[int], joined: Mapping[int, Sequence[int]]) -> Bools:
+    """(n, n) whether a gap between two curves counts: they are not one, nor do they meet."""
+    number = {curve: k for k, curve in enumerate(curves)}
+    apart: Bools = ~np.eye(len(curves), dtype=bool)
+    for curve, others in joined.items():
+        apart[number[curve], [number[other] for other in others]] = False
+    return apart
 
 
 def _bisected(one: _Sampled) -> Floats:
@@ -119,15 +131,3 @@ def _bisected(one: _Sampled) -> Floats:
     long = steps > 0.5 * np.minimum(one.sizes[:-1], one.sizes[1:])
     halves = 0.5 * (one.parameters[:-1] + one.parameters[1:])[long]
     return np.sort(np.concatenate([one.parameters, halves]))
-
-
-def thinned(sizes: SizeMap) -> SizeMap:
-    """Without the samples that others overrule everywhere."""
-    kept: list[int] = []
-    order = np.argsort(sizes.sizes, kind="stable")
-    for k in order:
-        x, y = sizes.points[:, k]
-        near = SizeMap(sizes.points[:, kept], sizes.sizes[kept], sizes.growth)
-        if not kept or near.at(x, y) > 1.000001 * sizes.sizes[k]:
-            kept.append(int(k))
-    return SizeMap(sizes.points[:, kept], sizes.sizes[kept], sizes.growth)

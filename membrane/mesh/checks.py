@@ -25,8 +25,8 @@ def check_mesh(mesh: Mesh, outline: Outline) -> None:
         raise MeshError("a curved triangle folds over")
     if np.any(mesh.region < 0):
         raise MeshError("a triangle belongs to no region")
-    for number, region in enumerate(outline.regions):
-        covered = _areas(mesh)[mesh.region == number].sum()
+    covers = np.bincount(mesh.region, _areas(mesh), len(outline.regions))
+    for region, covered in zip(outline.regions, covers, strict=True):
         if abs(covered - region.area) > AREA * outline.area:
             raise MeshError(
                 f'region "{region.name}" is covered by {covered:.6g} m^2, '
@@ -50,7 +50,7 @@ def jacobians(mesh: Mesh) -> Floats:
 
 
 def _oriented(mesh: Mesh, slopes: Floats) -> Floats:
-    (a, b), (c, d) = np.einsum("dit,kin->dknt", mesh.nodes, slopes)
+    (a, c), (b, d) = np.tensordot(slopes, mesh.nodes, (1, 1)).transpose(0, 2, 1, 3)
     determinant = a * d - b * c
     return np.asarray(determinant * np.sign(determinant.mean(axis=0)))
 
@@ -66,7 +66,8 @@ def _areas(mesh: Mesh) -> Floats:
     total = np.zeros(mesh.size)
     for loop, direction in zip(loops, directions, strict=True):
         values, slopes = shapes(loop, mesh.order)
-        x, y = np.einsum("dit,in->dnt", mesh.nodes, values)
-        dx, dy = np.einsum("dit,kin,k->dnt", mesh.nodes, slopes, direction)
-        total += np.einsum("n,nt->t", weights / 4, x * dy - y * dx)
+        x, y = np.tensordot(values, mesh.nodes, (0, 1)).transpose(1, 0, 2)
+        along = np.tensordot(direction, slopes, 1)
+        dx, dy = np.tensordot(along, mesh.nodes, (0, 1)).transpose(1, 0, 2)
+        total += weights / 4 @ (x * dy - y * dx)
     return np.abs(total)

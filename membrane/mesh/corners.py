@@ -9,13 +9,23 @@ from math import inf, pi
 import numpy as np
 
 from membrane.kernel import Kernel
+from membrane.mesh.corner import Corner
+from membrane.mesh.kinks import kinks
 from membrane.records.arrays import Floats
 from membrane.records.membrane import Field, Membrane
 from membrane.records.outline import Curve, Outline
 from membrane.records.raw_mesh import RawMesh
 
+__all__ = ["Corner", "corners"]
+
 WHOLE = 1e-7
 """Rounding allowed where an exponent or an angle is compared to a whole number."""
+
+STEADY = 1e-5
+"""Jump of curvature, times the segments beside it, that no mode can tell from none."""
+
+_AHEAD = 1e-3
+"""Share of a segment after which a tangent shows which way its curve bends."""
 
 TENSION_JUMP = 0.5
 """Exponent assumed where tensions meet at a corner: the weakest that there can be."""
@@ -29,19 +39,12 @@ potential of a charge c u: that of a charged half line has r log r at its end.
 
 
 @dataclass(frozen=True)
-class Corner:
-    """A vertex near which modes behave like r^exponent, with no whole exponent."""
-
-    vertex: int
-    exponent: float
-
-
-@dataclass(frozen=True)
 class Ray:
     """A kernel curve leaving a vertex.
 
     chord, tangent : directions of its first segment and of the curve itself, radians
     bend : signed curvature, per metre, positive to the left of the tangent
+    length : of the chord, metres
     left, right : names of the edges on its two sides, None within the head; the two
         differ along a slit only
     lines : names of the line loads that run along it
@@ -50,6 +53,7 @@ class Ray:
     chord: float
     tangent: float
     bend: float
+    length: float
     curve: int
     left: str | None
     right: str | None
@@ -74,7 +78,7 @@ class Wedge:
 def corners(
     kernel: Kernel, outline: Outline, membrane: Membrane, raw: RawMesh
 ) -> tuple[Corner, ...]:
-    """Every vertex of the mesh that spoils the convergence of smooth elements.
+    """Every vertex of the mesh that spoils the convergence of smooth elements, kinks included.
 
     The leading exponent at a corner of opening w is pi/w between like supports and pi/2w
     between a fixed and a moving one (P. Grisvard, Elliptic Problems in Nonsmooth Domains,
@@ -82,15 +86,24 @@ def corners(
     sides add terms one order weaker.
     """
     found = []
-    fan = _Fan(_Holds(membrane))
+    holds = _Holds(membrane)
     for vertex, rays in _rays(kernel, outline, raw).items():
-        if _passes_smoothly(rays, fan.holds):
+        if _passes_smoothly(rays, holds):
             continue
         wedges = _wedges(vertex, rays, outline, raw)
+        fan = _Fan(holds, raw.vertices[:, [vertex]])
         exponent = min(map(fan.exponent, _fans(wedges)), default=inf)
         if exponent < inf:
             found.append(Corner(vertex, exponent))
-    return tuple(found)
+    return _with_kinks(found, kinks(outline, membrane, raw))
+
+
+def _with_kinks(corners: list[Corner], kinks: tuple[Corner, ...]) -> tuple[Corner, ...]:
+    """Each vertex once, with the weaker of its exponents."""
+    weakest = {corner.vertex: corner.exponent for corner in corners}
+    for kink in kinks:
+        weakest[kink.vertex] = min(kink.exponent, weakest.get(kink.vertex, inf))
+    return tuple(Corner(vertex, exponent) for vertex, exponent in weakest.items())
 
 
 def _rays(kernel: Kernel, outline: Outline, raw: RawMesh) -> dict[int, list[Ray]]:
@@ -113,18 +126,18 @@ def _ray(kernel: Kernel, raw: RawMesh, curve_of: dict[int, Curve], segment: int,
     here, there = raw.segments[end, segment], raw.segments[1 - end, segment]
     curve = int(raw.segment_curve[segment])
     parameter = raw.segment_parameters[[end], segment]
-    away = 1.0 if end == 0 else -1.0
-    step = raw.segment_parameters[1, segment] - raw.segment_parameters[0, segment]
-    forward = float(away * np.sign(step))
-    tangent = forward * kernel.tangent(curve, parameter)[:, 0]
-    chord = raw.vertices[:, there] - raw.vertices[:, here]
-    side = np.sign(tangent[0] * chord[1] - tangent[1] * chord[0])
+    step = float(raw.segment_parameters[1 - end, segment] - parameter[0])
+    tangents = kernel.tangent(curve, parameter + step * np.array([0.0, _AHEAD]))
+    tangent, ahead = (np.sign(step) * tangents).T
+    side = np.sign(tangent[0] * ahead[1] - tangent[1] * ahead[0])
     bend = float(side * kernel.curvature(curve, parameter)[0])
-    if abs(bend) * np.linalg.norm(chord) < WHOLE:
+    chord = raw.vertices[:, there] - raw.vertices[:, here]
+    length = float(np.hypot(*chord))
+    if abs(bend) * length < WHOLE:
         bend = 0.0  # a straight line, up to the kernel's rounding
-    left, right = _edges_beside(curve_of[curve], forward)
+    left, right = _edges_beside(curve_of[curve], step)
     lines = curve_of[curve].lines
-    return Ray(_direction(chord), _direction(tangent), bend, curve, left, right, lines)
+    return Ray(_direction(chord), _direction(tangent), bend, length, curve, left, right, lines)
 
 
 def _edges_beside(curve: Curve, forward: float) -> tuple[str | None, str | None]:
@@ -172,7 +185,7 @@ def _passes_smoothly(rays: list[Ray], holds: _Holds) -> bool:
     first, second = rays
     turn = (second.tangent - first.tangent) % (2 * pi)
     # leaving the vertex both ways, a steady curve bends to the left once, to the right once
-    steady = abs(first.bend + second.bend) <= 1e-6 * abs(first.bend)
+    steady = abs(first.bend + second.bend) * max(first.length, second.length) <= STEADY
     alike = (
         holds.alike(first.left, second.right)
         and holds.alike(first.right, second.left)
@@ -222,13 +235,14 @@ def _fans(wedges: list[Wedge]) -> list[list[Wedge]]:
 class _Fan:
     """The exponent of a run of wedges under one membrane."""
 
-    def __init__(self, holds: _Holds) -> None:
+    def __init__(self, holds: _Holds, place: Floats) -> None:
         self.holds = holds
         self.membrane = holds.membrane
+        self.place = place
 
     def exponent(self, fan: list[Wedge]) -> float:
         """Smallest exponent that spoils smoothness; infinite where none does."""
-        tensions = [self.membrane.total(Field.TENSION, str(w.region)) for w in fan]
+        tensions = [self._here(Field.TENSION, w.region) for w in fan]
         if any(not np.allclose(tensions[0], other, rtol=1e-12) for other in tensions):
             return TENSION_JUMP
         if not fan[0].first.parts:
@@ -237,12 +251,12 @@ class _Fan:
 
     def _inside(self, fan: list[Wedge], tension: Floats) -> float:
         """Around an inner vertex densities jump, u has r^2 log r; lines end, cross or bend."""
-        names = {str(wedge.region) for wedge in fan}
-        densities = {float(self.membrane.total(Field.AREAL_DENSITY, n)) for n in names}
+        densities = [float(self._here(Field.AREAL_DENSITY, wedge.region)) for wedge in fan]
         loads = [self.holds.loads(wedge.first) for wedge in fan]
         if not _balanced(loads, [wedge.first.tangent for wedge in fan], tension):
             return LOAD_ENDS
-        return 2.0 if len(densities) > 1 or np.any(loads) else inf
+        jumps = not np.allclose(densities[0], densities, rtol=1e-12)
+        return 2.0 if jumps or np.any(loads) else inf
 
     def _at_edge(self, fan: list[Wedge], tension: Floats) -> float:
         first, last = fan[0].first.left, fan[-1].second.right
@@ -258,7 +272,15 @@ class _Fan:
             return leading
         bent = abs(fan[0].first.bend) + abs(fan[-1].second.bend) > 0.0
         several = len(fan) > 1
-        return leading + 1.0 if bent or np.any(springs) or several else inf
+        if bent or np.any(springs) or several:
+            return leading + 1.0
+        return leading + _weaker_by(self.membrane, str(fan[0].region))
+
+    def _here(self, field: Field, name: str | None) -> Floats:
+        """A field of a region at the vertex, or its mean where it has no sound value there."""
+        here = np.asarray(self.membrane.at(field, str(name), self.place)[0])
+        sound = np.isfinite(here).all() and np.trace(np.atleast_2d(here)) > 0.0
+        return here if sound else np.asarray(self.membrane.total(field, str(name)))
 
 
 def _balanced(loads: list[tuple[float, float]], directions: list[float], tension: Floats) -> bool:
@@ -271,6 +293,18 @@ def _balanced(loads: list[tuple[float, float]], directions: list[float], tension
     pull = e / np.einsum("in,ij,jn->n", e, np.linalg.inv(tension), e)
     sums = pull @ np.array(loads)
     return bool(np.all(np.abs(sums) <= WHOLE * (np.abs(pull) @ np.array(loads)).max(axis=0)))
+
+
+def _weaker_by(membrane: Membrane, region: str) -> float:
+    """How much a varying coefficient adds to a whole exponent before it spoils smoothness.
+
+    Where u goes like r^k, grad T . grad u has terms r^k and rho u terms r^(k+1); each makes
+    a term two orders higher, with a logarithm where that exponent is a corner's own.
+    """
+    if membrane.varies(Field.TENSION, region):
+        return 2.0
+    others = (Field.AREAL_DENSITY, Field.BEDDING)
+    return 3.0 if any(membrane.varies(field, region) for field in others) else inf
 
 
 def _opening(fan: list[Wedge], tension: Floats) -> float:

@@ -8,7 +8,6 @@ from itertools import combinations
 
 from membrane.errors import OutlineError
 from membrane.kernel import Kernel
-from membrane.records.arrays import Floats
 
 # Less than this share of a shape may stick out: rounding where it follows the edge.
 _ROUNDING = 1e-7
@@ -35,18 +34,17 @@ def cut(
     outline: int,
     patches: Mapping[str, int],
     holes: Mapping[str, int],
+    points: Sequence[tuple[float, float]] = (),
     lines: Iterable[int] = (),
-    points: Iterable[Floats] = (),
 ) -> Cut:
-    """Cut an outline's face by the faces of patches and holes, by lines and by points.
+    """Cut an outline's face by the faces of patches and holes, and by lines.
 
+    points : places (x, y), metres, that become vertices of the mesh where they are on the head
     lines : the kernel's curves; they are left as they are
-    points : (2,) metres each; they split the curves on which they lie
-
     Raises OutlineError for shapes that do not fit together.
     """
     faces = [outline, *patches.values(), *holes.values()]
-    head, *others = _fragments(kernel, faces, lines, points)
+    head, *others = _fragments(kernel, faces, points, lines)
     over = dict(zip(patches, others[: len(patches)], strict=True))
     away = dict(zip(holes, others[len(patches) :], strict=True))
     for name, cover in over.items():
@@ -61,7 +59,10 @@ def cut(
 
 
 def _fragments(
-    kernel: Kernel, faces: Sequence[int], lines: Iterable[int], points: Iterable[Floats]
+    kernel: Kernel,
+    faces: Sequence[int],
+    points: Sequence[tuple[float, float]],
+    lines: Iterable[int],
 ) -> list[set[int]]:
     """For each face the faces that cover it after all are cut by each other."""
     areas = [kernel.area(face) for face in faces]
@@ -70,8 +71,7 @@ def _fragments(
             f"The outline is too small to be cut by patches and holes: {1e6 * areas[0]:.3g} mm^2; "
             f"the geometry kernel needs {1e6 * _SMALLEST:.3g} mm^2."
         )
-    corners = [kernel.add_point(*map(float, point)) for point in points]
-    covers = kernel.fragment(faces, kernel.copies(lines), corners)
+    covers = kernel.fragment(faces, points, kernel.copies(lines))
     _check_kept(kernel, areas, covers)
     return covers
 

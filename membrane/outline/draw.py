@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
+from dataclasses import replace
 
 from membrane.kernel import Kernel
 from membrane.outline.curves import check_lines, curves
 from membrane.outline.cut import Cut, cut
 from membrane.outline.names import names
 from membrane.outline.place import Placed, place
+from membrane.outline.samples import samples
 from membrane.outline.soundness import check_slivers, check_whole
 from membrane.records.outline import HEAD, Outline, Region
 from membrane.records.study import Hole, Patch, Study
@@ -22,22 +24,35 @@ def draw(kernel: Kernel, study: Study) -> Outline:
     outline = place(kernel, study.outline)
     patches, holes = _placed(kernel, study.patches), _placed(kernel, study.holes)
     known = names(kernel, study, outline, holes)
-    corners = [point for split in known.splits.values() for point in split.points()]
-    pieces = cut(kernel, outline.surface, _faces(patches), _faces(holes), known.cuts, corners)
+    points = (*_kinks(study), *known.corners)
+    pieces = cut(kernel, outline.surface, _faces(patches), _faces(holes), points, known.cuts)
     named = curves(kernel, pieces, known)
     check_lines(kernel, known, named)
     check_whole(kernel, named, pieces.patches)
     check_slivers(kernel, named, pieces.patches)
     kernel.keep_only(pieces.patches)
-    return Outline(_regions(kernel, pieces), named)
+    head = Outline(_regions(kernel, pieces), named, _notes(outline, patches, holes))
+    return replace(head, samples=samples(kernel, head)) if study.functions or study.terms else head
 
 
 def _placed(kernel: Kernel, shapes: Iterable[Patch | Hole]) -> dict[str, Placed]:
     return {shape.name: place(kernel, shape.shape) for shape in shapes}
 
 
-def _faces(placed: Mapping[str, Placed]) -> dict[str, int]:
-    return {name: shape.surface for name, shape in placed.items()}
+def _faces(shapes: Mapping[str, Placed]) -> dict[str, int]:
+    return {name: placed.surface for name, placed in shapes.items()}
+
+
+def _notes(outline: Placed, *shapes: Mapping[str, Placed]) -> tuple[str, ...]:
+    """What the plugins said about the shapes they drew, each sentence once."""
+    every = [outline, *(placed for named in shapes for placed in named.values())]
+    return tuple(dict.fromkeys(note for placed in every for note in placed.notes))
+
+
+def _kinks(study: Study) -> tuple[tuple[float, float], ...]:
+    """Where a coefficient is not smooth, (x, y), metres, each place once."""
+    places = (place for f in study.functions for place in f.places_of_kinks.T)
+    return tuple(dict.fromkeys((float(x), float(y)) for x, y in places))
 
 
 def _regions(kernel: Kernel, pieces: Cut) -> tuple[Region, ...]:

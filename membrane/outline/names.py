@@ -43,6 +43,12 @@ class Names:
         slits = (copy for found in self.slits.values() for copy in found)
         return [copy.tag for copy in (*self.lines, *slits)]
 
+    @property
+    def corners(self) -> list[tuple[float, float]]:
+        """Where parts of edges begin and end, (x, y), metres."""
+        points = (point for split in self.splits.values() for point in split.points())
+        return [(float(x), float(y)) for x, y in points]
+
     def _parts_of(self, edge: str) -> list[str]:
         return [part.name for part in self.splits[edge].parts] if edge in self.splits else []
 

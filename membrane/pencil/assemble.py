@@ -4,12 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from functools import cache
-from typing import Any
 
-from skfem import BilinearForm
-
-from membrane.pencil.forms import WEAK_FORMS, Integrand
+from membrane.pencil.coefficient import coefficient
+from membrane.pencil.forms import WEAK_FORMS
+from membrane.pencil.integrate import integrated
 from membrane.pencil.space import Discretisation, build_space
+from membrane.records.function import Function
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.pencil import Part, Pencil
@@ -42,11 +42,10 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
     free = discretisation.space.free
     for c in membrane.contributions:
         weak = WEAK_FORMS[c.field]
-        basis = basis_on[weak.on](c.where)
-        yield weak.side, Part(c.key, c.scale, _matrix(weak.integrand(c.value), basis, free))
+        basis = basis_on[weak.on](c.where, isinstance(c.value, Function))
+        yield (
+            weak.side,
+            Part(c.key, c.scale, integrated(weak.integrand(coefficient(c)), basis, free)),
+        )
     for own in membrane.own_forms:
-        yield own.side, Part(own.key, own.scale, _matrix(own.form, on_regions(own.where), free))
-
-
-def _matrix(form: Integrand, basis: Any, free: Any) -> Any:
-    return BilinearForm(form).assemble(basis)[free][:, free]
+        yield own.side, Part(own.key, own.scale, integrated(own.form, on_regions(own.where), free))

@@ -45,6 +45,19 @@ class ElementTriNodal(ElementH1):  # type: ignore[misc]  # scikit-fem is untyped
         return self._last[1], self._last[2]
 
 
+class ReferenceElement(ElementTriNodal):
+    """The same element, its shapes never mapped: on many triangles they fill the memory."""
+
+    def gbasis(self, mapping: Any, X: Floats, i: int, tind: Any = None) -> tuple[()]:
+        return ()
+
+
+@cache
+def reference_element(degree: int) -> ReferenceElement:
+    """The element of a degree from 1, for integrals over triangles."""
+    return ReferenceElement(degree)
+
+
 @cache
 def element(degree: int) -> ElementTriNodal:
     """The element of a degree from 1."""

@@ -23,6 +23,7 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
         self.mesh = mesh
         self.topology = topology
         self._last: tuple[Any, Any, Floats] | None = None
+        self._shaped: tuple[Any, Floats, Floats] | None = None
 
     def F(self, X: Floats, tind: Ints | None = None) -> Floats:
         """Points (2, n_triangles, n) of the head, metres."""
@@ -47,7 +48,7 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
     def invDF(self, X: Floats, tind: Ints | None = None) -> Floats:
         """Inverse jacobian, (2, 2, n_triangles, n)."""
         (a, b), (c, d) = self.DF(X, tind)
-        return np.array([[d, -b], [-c, a]]) / (a * d - b * c)
+        return np.asarray(np.array([[d, -b], [-c, a]]) / (a * d - b * c))
 
     def invF(self, x: Floats, tind: Ints | None = None) -> Floats:
         """Reference coordinates of the points x (2, n_triangles, n)."""
@@ -87,6 +88,8 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
         return self.mesh.nodes if tind is None else self.mesh.nodes[:, :, tind]
 
     def _shapes(self, X: Floats) -> tuple[Floats, Floats]:
-        values, slopes = shapes(np.reshape(X, (2, -1)), self.mesh.order)
-        points = X.shape[1:]
-        return values.reshape(-1, *points), slopes.reshape(2, -1, *points)
+        if self._shaped is None or self._shaped[0] is not X:
+            values, slopes = shapes(np.reshape(X, (2, -1)), self.mesh.order)
+            points = X.shape[1:]
+            self._shaped = (X, values.reshape(-1, *points), slopes.reshape(2, -1, *points))
+        return self._shaped[1:]

@@ -11,7 +11,7 @@ from skfem import FacetBasis, MeshTri
 from skfem.assembly.basis import CellBasis
 from skfem.assembly.dofs import Dofs
 
-from membrane.pencil.element import element
+from membrane.pencil.element import element, reference_element
 from membrane.pencil.mapping import CurvedMapping
 from membrane.pencil.quadrature import line_rule, triangle_rule
 from membrane.records.arrays import Floats, Ints
@@ -29,32 +29,32 @@ class Discretisation:
     mapping: CurvedMapping
     dofs: Dofs
 
-    def on_regions(self, names: tuple[str, ...]) -> CellBasis:
-        """Basis on the triangles of some regions."""
+    def on_regions(self, names: tuple[str, ...], varying: bool = False) -> CellBasis:
+        """Basis on the triangles of some regions, for a constant or a varying coefficient."""
         return CellBasis(
             self.topology,
-            element(self.space.degree),
+            reference_element(self.space.degree),
             self.mapping,
-            quadrature=triangle_rule(self._order),
+            quadrature=triangle_rule(self._order + self._more(varying)),
             elements=triangles_in(self.space.mesh, names),
             dofs=self.dofs,
             disable_doflocs=True,
         )
 
-    def on_edges(self, names: tuple[str, ...]) -> FacetBasis:
-        """Basis on the facets of some edges."""
-        return self._on_facets([self.space.mesh.edges[name] for name in names])
+    def on_edges(self, names: tuple[str, ...], varying: bool = False) -> FacetBasis:
+        """Basis on the facets of some edges, for a constant or a varying coefficient."""
+        return self._on_facets([self.space.mesh.edges[name] for name in names], varying)
 
-    def on_lines(self, names: tuple[str, ...]) -> FacetBasis:
-        """Basis on the facets of some line loads."""
-        return self._on_facets([self.space.mesh.lines[name] for name in names])
+    def on_lines(self, names: tuple[str, ...], varying: bool = False) -> FacetBasis:
+        """Basis on the facets of some line loads, for a constant or a varying coefficient."""
+        return self._on_facets([self.space.mesh.lines[name] for name in names], varying)
 
-    def _on_facets(self, pairs: Sequence[Ints]) -> FacetBasis:
+    def _on_facets(self, pairs: Sequence[Ints], varying: bool) -> FacetBasis:
         return FacetBasis(
             self.topology,
             element(self.space.degree),
             self.mapping,
-            quadrature=line_rule(self._order),
+            quadrature=line_rule(self._order + self._more(varying)),
             facets=facets_at(self.topology, pairs),
             dofs=self.dofs,
             disable_doflocs=True,
@@ -64,6 +64,10 @@ class Discretisation:
     def _order(self) -> int:
         # exact for the mass on curved triangles; the stiffness there is rational
         return 2 * self.space.degree + 2 * (self.space.mesh.order - 1)
+
+    def _more(self, varying: bool) -> int:
+        # a varying coefficient counts as a polynomial of the elements' own degree
+        return self.space.degree if varying else 0
 
 
 def build_space(mesh: Mesh, degree: int, fixed_edges: tuple[str, ...]) -> Discretisation:

@@ -29,7 +29,8 @@ GROUPS: Mapping[str, str] = MappingProxyType(
 _OWN = {
     "outline": (
         "membrane.geometries",
-        "disc ellipse rectangle polygon regular_polygon sector stadium polyline arc",
+        "disc ellipse rectangle polygon regular_polygon sector stadium rounded_rectangle spline"
+        " fourier file polyline arc",
     ),
     "term": (
         "membrane.terms",

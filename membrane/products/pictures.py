@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Any, Literal
 
 import numpy as np
 
+from membrane.products.caution import CAUTION
 from membrane.products.sheet import Sheet, lay_out
 from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
@@ -16,17 +17,24 @@ from membrane.records.spectrum import Partial, Spectrum
 from membrane.records.study import Support
 from membrane.sides import inner_borders, lie_on, lie_on_lines
 from membrane.subdivision import Subdivision, subdivide
+from membrane.triangle import EDGES
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
 
 STEM = "modes"
 INK, PENCIL = "#1a1a1a", "#8c8c8c"
-TRIANGLES = 3000
-"""Of smooth colour, for each mode."""
+TRIANGLES_PER_INCH = 16
+"""Of smooth colour, along the longest side of the mesh."""
 
-MOST_PARTS = 24
-LEGEND = "Black lines stay at rest; red and blue move against each other."
+MOST_PARTS = 32
+LETTER = 0.6
+"""Width of a letter of average text, as a share of its size; on the safe side."""
+
+LEGEND = (
+    "Black lines stay at rest; red and blue move against each other, each mode to its own scale. "
+    "Grey: borders of patches, free edges."
+)
 
 
 @dataclass(frozen=True)
@@ -49,9 +57,9 @@ def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
     from matplotlib.figure import Figure
 
     mesh = spectrum.modes.space.mesh
-    divided = subdivide(mesh, _parts(mesh))
+    sheet = lay_out(mesh.nodes.reshape(2, -1), len(spectrum.partials))
+    divided = subdivide(mesh, _parts(mesh, sheet))
     positions = divided.positions(mesh)
-    sheet = lay_out(positions, len(spectrum.partials))
     figure = Figure(figsize=sheet.inches, dpi=options.dpi)
     FigureCanvasAgg(figure)
     axes = figure.add_axes((0.0, 0.0, 1.0, 1.0))
@@ -65,9 +73,12 @@ def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
     figure.savefig(folder / f"{STEM}.{options.format}", dpi=options.dpi, **light)
 
 
-def _parts(mesh: Mesh) -> int:
+def _parts(mesh: Mesh, sheet: Sheet) -> int:
     """Lattice parts for triangles of a few dots, whatever the mesh."""
-    return int(np.clip(np.ceil(np.sqrt(TRIANGLES / mesh.size)), 2, MOST_PARTS))
+    corners = mesh.vertices[:, mesh.triangles]
+    longest = max(np.hypot(*(corners[:, a] - corners[:, b])).max() for a, b in EDGES)
+    inches = longest * sheet.inches[0] / sheet.width
+    return int(np.clip(np.ceil(TRIANGLES_PER_INCH * inches), 2, MOST_PARTS))
 
 
 def _draw_shapes(
@@ -142,19 +153,21 @@ def _write_titles(axes: Axes, spectrum: Spectrum, sheet: Sheet) -> None:
         style: dict[str, Any] = {"ha": "center", "color": INK}
         axes.text(x, y, first, va="bottom", fontsize=sheet.font, fontweight="bold", **style)
         axes.text(x, y, second, va="top", fontsize=0.85 * sheet.font, **style)
-    left, right = sheet.margin, sheet.width - sheet.margin
     title = spectrum.study.title or "Untitled"
-    axes.text(left, sheet.head_line, title, fontsize=12, va="center", color=INK)
-    legend: dict[str, Any] = {"fontsize": 8, "ha": "right", "va": "center", "color": PENCIL}
-    axes.text(right, sheet.head_line, LEGEND, **legend)
+    room = 72.0 * sheet.inches[0] * (1.0 - 2.0 * sheet.margin / sheet.width)
+    font = min(12.0, room / (LETTER * len(title)))
+    axes.text(sheet.margin, sheet.head_line, title, fontsize=font, va="center", color=INK)
+    foot = f"{LEGEND}\n{CAUTION}"
+    axes.text(sheet.margin, sheet.foot_line, foot, fontsize=6, va="center", color=PENCIL)
 
 
 def _title(partial: Partial) -> tuple[str, str]:
-    """The (m,n) or the number with the frequency; below, the ratio and the note."""
+    """The number, the (m,n) of a round head and the frequency; below, ratio and note."""
     nodal = partial.nodal
     named = nodal.diameters is not None
-    name = f"({nodal.diameters},{nodal.circles})" if named else f"{partial.number}"
-    return f"{name}  {partial.frequency:.1f} Hz", "    ".join(_pitch(partial))
+    name = f"  ({nodal.diameters},{nodal.circles})" if named else ""
+    first = f"{partial.number}:{name}  {partial.frequency:.1f} Hz"
+    return first, "    ".join(_pitch(partial))
 
 
 def _pitch(partial: Partial) -> Iterator[str]:

@@ -15,7 +15,7 @@ SHAPE = 1.4
 GAP = 0.12
 """Between two heads, as a share of the larger side of a head."""
 
-LARGEST, SMALLEST = 3.2, 1.35
+LARGEST, SMALLEST = 4.5, 1.35
 """Inches that a head with its gap may take."""
 
 
@@ -27,8 +27,8 @@ class Sheet:
     width, height : of the sheet
     places : (2, n), what is added to a head's coordinates to put it into its cell
     titles : (2, n), the middle of each title
-    head_line : y of the line above all
-    margin : left and right of it
+    head_line, foot_line : y of the line above all and of the line below all
+    margin : left and right of these
     font : size of the titles, points
     """
 
@@ -38,6 +38,7 @@ class Sheet:
     places: Floats
     titles: Floats
     head_line: float
+    foot_line: float
     margin: float
     font: float
 
@@ -55,7 +56,7 @@ def lay_out(positions: Floats, count: int) -> Sheet:
     columns = _columns(count, wide, high_cell)
     row, column = np.divmod(np.arange(count), columns)
     head_line = 0.4 * metres_per_inch
-    width, height = columns * wide + gap, ceil(count / columns) * high_cell + head_line + gap
+    width, height = columns * wide + gap, ceil(count / columns) * high_cell + 1.7 * head_line
     width = max(width, 6.5 * metres_per_inch)
     left = 0.5 * (width - columns * wide)
     centres = np.stack([left + (column + 0.5) * wide, -head_line - row * high_cell])
@@ -68,7 +69,8 @@ def lay_out(positions: Floats, count: int) -> Sheet:
         places=centres - drop - middle[:, None],
         titles=centres - 0.52 * drop,
         head_line=-0.5 * head_line,
-        margin=float(left + 0.5 * gap),
+        foot_line=float(-height + 0.4 * head_line),
+        margin=float(min(left + 0.5 * gap, 0.3 * metres_per_inch)),
         font=font,
     )
 
@@ -79,6 +81,6 @@ def _columns(count: int, wide: float, high: float) -> int:
     def badness(columns: int) -> float:
         rows = ceil(count / columns)
         shape = columns * wide / (rows * high)
-        return float(abs(np.log(shape / SHAPE)) + np.log(rows * columns / count))
+        return float(abs(np.log(shape / SHAPE)) + 1.5 * np.log(rows * columns / count))
 
     return min(range(1, count + 1), key=badness)

@@ -6,6 +6,8 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import Any
 
+import numpy as np
+
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
 
@@ -65,5 +67,10 @@ class Pencil:
 
 
 def _combine(parts: tuple[Part, ...]) -> Any:
-    first, *others = parts
-    return sum((p.scale * p.matrix for p in others), first.scale * first.matrix).tocsc()
+    """The sum of all parts at once: one by one, many small ones would take long."""
+    from scipy.sparse import coo_array, csc_array
+
+    entries = [coo_array(part.matrix) for part in parts]
+    data = np.concatenate([p.scale * e.data for p, e in zip(parts, entries, strict=True)])
+    rows, columns = (np.concatenate([e.coords[axis] for e in entries]) for axis in (0, 1))
+    return csc_array((data, (rows, columns)), shape=parts[0].matrix.shape)

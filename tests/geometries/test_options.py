@@ -3,7 +3,16 @@
 import numpy as np
 import pytest
 
-from membrane.geometries import arc, polygon, polyline, regular_polygon, sector
+from membrane.geometries import (
+    arc,
+    fourier,
+    polygon,
+    polyline,
+    regular_polygon,
+    rounded_rectangle,
+    sector,
+    spline,
+)
 
 SQUARE = ((0.0, 0.0), (1.0, 0.0), (1.0, 1.0), (0.0, 1.0))
 
@@ -76,3 +85,46 @@ def test_a_bad_arc(start, end):
 def test_an_angle_out_of_range(angle):
     with pytest.raises(ValueError, match="between 0 deg and 360 deg"):
         sector.Options(radius=1.0, angle=angle)
+
+
+@pytest.mark.parametrize(("width", "height"), [(0.2, 0.4), (0.4, 0.2)])
+def test_a_radius_too_large_for_its_rectangle(width, height):
+    with pytest.raises(ValueError, match=r"110 mm, is more than half .* at most 100 mm"):
+        rounded_rectangle.Options(width=width, height=height, radius=0.11)
+
+
+@pytest.mark.parametrize(
+    ("points", "sentence"),
+    [
+        (SQUARE[:2], "at least 3 points, not 2"),
+        ((*SQUARE, SQUARE[0]), "points 1 and 5 are the same point"),
+        ((SQUARE[0], SQUARE[2], SQUARE[1], SQUARE[3]), "crosses itself after point 1 and .* 3"),
+        (((0, 0), (1, 1), (2, 2)), "crosses itself"),
+    ],
+)
+def test_a_bad_spline(points, sentence):
+    with pytest.raises(ValueError, match=sentence):
+        spline.Options(tuple((float(x), float(y)) for x, y in points))
+
+
+def test_good_splines_of_any_size_sense_and_start():
+    star = [(r * np.cos(t), r * np.sin(t)) for t, r in zip(np.arange(12), [2, 1] * 6, strict=True)]
+    star = sorted(star, key=lambda p: np.arctan2(p[1], p[0]))
+    for scale in (1e-4, 1.0, 100.0):
+        points = tuple((float(scale * x), float(scale * y)) for x, y in star)
+        for turned in (points, points[::-1], points[5:] + points[:5]):
+            assert spline.Options(turned).points == turned
+
+
+@pytest.mark.parametrize(
+    ("harmonics", "sentence"),
+    [
+        (((0, 0.1, 0.0),), "must be 1 or more, not 0; the mean belongs in mean_radius"),
+        (((2, 0.1, 0.0), (2, 0.0, 0.1)), "harmonic 2 is given twice"),
+        (((2, 1.1, 0.0),), "falls to -100 mm near 90 deg"),
+        (((40, 0.0, 1.0),), "falls to 0 mm near"),
+    ],
+)
+def test_a_bad_fourier_curve(harmonics, sentence):
+    with pytest.raises(ValueError, match=sentence):
+        fourier.Options(1.0, harmonics)

@@ -2,6 +2,7 @@
 
 import numpy as np
 import pytest
+from scipy.integrate import quad
 from scipy.special import ellipe
 
 from membrane.kernel import Kernel
@@ -50,6 +51,33 @@ SHAPES = {
         shape("stadium", straight=0.5, width=0.3),
         0.15 + PI * 0.15**2,
         {"rim": 1.0 + PI * 0.3},
+    ),
+    "rounded rectangle": (
+        shape("rounded_rectangle", width=0.4, height=0.3, radius=0.05),
+        0.12 - (4 - PI) * 0.0025,
+        {"rim": 1.4 - (8 - 2 * PI) * 0.05},
+    ),
+    "rounded square that is a disc": (
+        shape("rounded_rectangle", width=0.4, height=0.4, radius=0.2),
+        PI * 0.04,
+        {"rim": PI * 0.4},
+    ),
+    "disc without harmonics": (shape("fourier", mean_radius=0.3), PI * 0.09, {"rim": PI * 0.6}),
+    "limaçon": (  # r = 1 + a cos theta: perimeter 4 (1 + a) E(4a/(1 + a)^2)
+        shape("fourier", mean_radius=1.0, harmonics=((1, 0.5, 0.0),)),
+        PI * (1 + 0.5**2 / 2),
+        {"rim": 6.0 * ellipe(2.0 / 1.5**2)},
+    ),
+    # x(s) = 1 - 3/2 s^2 + 1/2 s^3, y(s) = x(1 - s) over a quarter, solved by hand
+    "spline through a square": (
+        shape("spline", points=((1, 0), (0, 1), (-1, 0), (0, -1))),
+        61 / 20,
+        {"rim": 4 * quad(lambda s: np.hypot(1.5 * s * (s - 2), 1.5 * (1 - s * s)), 0, 1)[0]},
+    ),
+    "clockwise spline": (
+        shape("spline", points=((0, -1), (-1, 0), (0, 1), (1, 0))),
+        61 / 20,
+        {"rim": 4 * quad(lambda s: np.hypot(1.5 * s * (s - 2), 1.5 * (1 - s * s)), 0, 1)[0]},
     ),
 } | {
     f"sector of {degrees} deg": (
@@ -102,6 +130,57 @@ def test_the_ends_of_a_stadium_are_exact():
     x, y = rim_points(shape("stadium", straight=0.5, width=0.3), "rim")
     beyond = np.maximum(np.abs(x) - 0.25, 0.0)
     np.testing.assert_allclose(np.hypot(beyond, y), 0.15, rtol=1e-13)
+
+
+def test_the_corners_of_a_rounded_rectangle_are_exact():
+    x, y = rim_points(shape("rounded_rectangle", width=0.4, height=0.3, radius=0.1), "rim")
+    beyond = np.maximum(np.abs(x) - 0.1, 0.0), np.maximum(np.abs(y) - 0.05, 0.0)
+    np.testing.assert_allclose(np.hypot(*beyond), 0.1, rtol=1e-13)
+
+
+@pytest.mark.parametrize("highest", [1, 3, 8, 20])
+def test_a_fourier_curve_is_followed_to_a_millionth_of_a_millionth(highest):
+    a, b = 0.3 / highest, -0.2 / highest
+    harmonics = ((1, 0.01, 0.0), (highest, a, b)) if highest > 1 else ((1, a, b),)
+    x, y = rim_points(shape("fourier", mean_radius=1.0, harmonics=harmonics), "rim")
+    theta = np.arctan2(y, x)
+    r = 1.0 + sum(p * np.cos(k * theta) + q * np.sin(k * theta) for k, p, q in harmonics)
+    np.testing.assert_allclose(np.hypot(x, y), r, rtol=2e-12)
+
+
+UNEVEN = ((1.0, 0.0), (0.6, 0.5), (0.1, 0.9), (-1.0, 0.2), (-0.3, -0.2), (0.2, -0.8))
+
+
+def test_a_spline_goes_through_its_points():
+    x, y = rim_points(shape("spline", points=UNEVEN), "rim")
+    for px, py in UNEVEN:
+        assert np.hypot(x - px, y - py).min() < 1e-14
+
+
+def test_a_spline_has_no_corner_and_no_jump_of_curvature():
+    with Kernel.session() as kernel:
+        tags = [curve.tag for curve in draw(kernel, study(shape("spline", points=UNEVEN))).curves]
+        ends = [kernel.ends(tag) for tag in tags]
+        at = {tag: np.array(kernel.bounds(tag)) for tag in tags}
+        slope = {tag: kernel.tangent(tag, at[tag]) for tag in tags}
+        bend = {tag: kernel.curvature(tag, at[tag]) for tag in tags}
+    assert len(tags) == len(UNEVEN)
+    for one, (_, stop) in zip(tags, ends, strict=True):
+        other = next(tag for tag, (start, _) in zip(tags, ends, strict=True) if start == stop)
+        (ux, uy), (vx, vy) = slope[one][:, 1], slope[other][:, 0]
+        assert abs(ux * vy - uy * vx) < 1e-12 * np.hypot(ux, uy) * np.hypot(vx, vy)
+        assert bend[one][1] == pytest.approx(bend[other][0], rel=1e-9)
+
+
+def test_crowded_points_are_followed_by_few_pieces():
+    """A cubic spline leaves a circle by h^4/384 (de Boor, A Practical Guide to Splines)."""
+    theta = 2 * PI * np.arange(1000) / 1000
+    points = tuple(map(tuple, np.array([np.cos(theta), np.sin(theta)]).T.tolist()))
+    wanted = shape("spline", points=points)
+    with Kernel.session() as kernel:
+        assert len(draw(kernel, study(wanted)).curves) < 100
+    x, y = rim_points(wanted, "rim")
+    np.testing.assert_allclose(np.hypot(x, y), 1.0, atol=5e-10)
 
 
 def test_a_side_of_a_polygon_starts_at_its_corner():

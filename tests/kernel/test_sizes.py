@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from membrane.kernel.sizes import Bend, SizeMap, size_map, thinned
+from membrane.kernel.sizes import Bend, size_map
 
 
 class Circles:
@@ -47,18 +47,3 @@ def test_sizes_grow_with_the_distance():
 def test_a_gap_sets_the_size_beside_it(gap):
     found = sizes((0, 0, 1.0), (0.5 - gap, 0, 0.5), bend=Bend(per_circle=8, per_gap=2.0))
     assert found.at(1.0, 0.0) == pytest.approx(2.0 * gap, rel=0.15)
-
-
-def test_closer_means_shorter_edges():
-    bend = Bend().closer(2.0)
-    assert bend.per_circle == 2 * Bend().per_circle
-    assert bend.per_gap == Bend().per_gap / 2
-
-
-def test_dropping_overruled_samples_changes_no_size():
-    rng = np.random.default_rng(1)
-    whole = SizeMap(rng.uniform(-1, 1, (2, 300)), rng.uniform(0.01, 1.0, 300), 0.7)
-    thin = thinned(whole)
-    assert thin.sizes.size < 200
-    for x, y in rng.uniform(-1, 1, (200, 2)):
-        assert thin.at(x, y) == pytest.approx(whole.at(x, y), rel=1e-5)

@@ -88,6 +88,16 @@ def test_junction_of_straight_and_curved_sides():
     assert set(np.round(list(singular.values()), 6)) == {2.0}
 
 
+FIVE_WAVES = {"shape": "fourier", "mean_radius": 1.0, "harmonics": [[5, 0.3, 0.1]]}
+UNEVEN = {"shape": "spline", "points": [[1, 0], [0.2, 0.3], [0, 1], [-1, 0.1], [0, -1]]}
+
+
+@pytest.mark.parametrize("outline", [FIVE_WAVES, UNEVEN])
+def test_pieces_of_one_smooth_curve_meet_without_a_corner(outline):
+    """Through inflections too, where the curvature is next to nothing."""
+    assert found({"outline": outline, "head": zoo.HEAD}) == {}
+
+
 def test_patch_corners_inside_the_head():
     patch = {"name": "square", "shape": "rectangle", "width": 0.4, "height": 0.4}
     heavy = found({**zoo.DISC, "patches": [{**patch, "added_density": 2.0}]})

@@ -49,3 +49,9 @@ def test_finer_is_finer():
         assert after.phase < start.phase
         assert after.tolerance < start.tolerance
     assert np.isfinite(start.finer(1e300).phase)
+
+
+def test_the_degree_rises_unless_it_is_set():
+    assert Resolution(6, 2.0, 1e-6).finer(3.0).degree == 8
+    assert Resolution(12, 2.0, 1e-6).finer(3.0).degree == 12
+    assert Resolution(6, 2.0, 1e-6, degree_is_free=False).finer(3.0).degree == 6

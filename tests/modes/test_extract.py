@@ -5,12 +5,14 @@ from itertools import product
 
 import numpy as np
 import pytest
+from scipy.sparse import diags_array, eye_array
 
 from membrane import plugins
 from membrane.eigensolvers import dense, shift_invert
 from membrane.errors import SolveError
 from membrane.modes import count_up_to, extract
 from membrane.pencil import assemble
+from membrane.records.pencil import Part, Pencil, Space
 from tests import zoo
 
 
@@ -53,6 +55,18 @@ def test_the_last_cluster_is_whole(square):
     """Modes 2 and 3 of the square are a pair."""
     modes = extract(square, 2, shift_invert.solve, 0.01)
     assert modes.clusters.tolist() == [1, 2, 2]
+
+
+def test_a_cluster_longer_than_the_extras_is_whole():
+    """Ten equal eigenvalues after the first, of which the second is asked for."""
+    values = np.array([1.0, *[2.0] * 10, 3.0, 4.0, 5.0, *np.arange(6.0, 40.0)])
+    size = len(values)
+    places = np.random.default_rng(0).random((2, size))
+    space = Space(zoo.straight_square(), 1, np.empty((3, 2), dtype=int), places, np.arange(size))
+    stiffness = Part("key", 1.0, diags_array(values).tocsc())
+    mass = Part("key", 1.0, eye_array(size).tocsc())
+    modes = extract(Pencil(space, (stiffness,), (mass,), False), 2, dense.solve, 0.01)
+    np.testing.assert_allclose(modes.eigenvalues, values[:11], rtol=1e-12)
 
 
 def test_free_head_has_one_rigid_mode(free_square):

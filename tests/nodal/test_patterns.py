@@ -15,6 +15,9 @@ from membrane.study import study_from
 from tests import zoo
 from tests.synthetic import modes_of
 
+FREE = {"rim": Edge(Support.FREE)}
+SECTOR = {"outline": {"shape": "sector", "radius": 1.0, "angle": "270 deg"}, "head": zoo.HEAD}
+
 
 def solved(keys: dict, count: int = 20) -> Spectrum:
     return pipeline.run(study_from({**keys, "modes": {"count": count}}))
@@ -64,11 +67,11 @@ def test_every_point_lies_on_the_head_and_on_the_zero_set(disc: Spectrum) -> Non
     checked = 0
     for index, partial in enumerate(disc.partials):
         for line in partial.nodal.lines:
-            inside = line[:, np.hypot(*line) < 1.0 - 1e-9]
+            inside = line[:, np.hypot(*line) < 1.0 - 1e-9][:, ::5]
             values = disc.modes.at(inside)[index]
             assert np.abs(values).max() < 1e-11 * largest[index]
             checked += inside.shape[1]
-    assert checked > 1000
+    assert checked > 500
 
 
 def test_lines_are_closed_or_end_on_the_rim(disc: Spectrum) -> None:
@@ -129,8 +132,22 @@ def test_only_round_heads_are_named() -> None:
 def test_a_mode_of_mixed_orders_has_no_name() -> None:
     mesh = zoo.prepared(zoo.DISC).mesh
     mixed = modes_of(mesh, 6, [lambda x, y: x + 3 * x * y, lambda x, y: 2 * x * y])
-    patterns = nodal_patterns(mixed, {"rim": Edge(Support.FREE)})
+    patterns = nodal_patterns(mixed, FREE)
     assert [(p.diameters, p.circles) for p in patterns] == [(None, None), (2, 0)]
+
+
+@pytest.mark.parametrize("shape", [zoo.L_SHAPE, SECTOR])
+def test_corners_shed_no_specks(shape: dict) -> None:
+    lengths = [length(line) for p in solved(shape, 20).partials for line in p.nodal.lines]
+    assert min(lengths) > 0.1
+    assert len(lengths) > 40
+
+
+def test_all_orders_but_the_first_count_twice() -> None:
+    # int 7^2 r^2 cos^2 = 12.25 pi against int 1 = pi: 0.925 of the energy is of order 1
+    mesh = zoo.prepared(zoo.DISC).mesh
+    (pattern,) = nodal_patterns(modes_of(mesh, 4, [lambda x, y: 1 + 7 * x]), FREE)
+    assert (pattern.diameters, pattern.circles) == (1, 0)
 
 
 def test_a_square_against_sines() -> None:

@@ -101,5 +101,9 @@ CASES: dict[str, dict[str, Any]] = {
         DISC,
         line_loads=[{"name": "ring", "shape": "disc", "diameter": 1.0, "line_density": 0.3}],
     ),
+    "disc_rho_r2": case(DISC, {"areal_density": {"formula": "r**2"}, "tension": 1.0}),
+    "rect_linear_density_a1": case(
+        RECTANGLE, {"areal_density": {"formula": "1 + x"}, "tension": 1.0}
+    ),
     "stadium_a1_r1_fixed": case({"shape": "stadium", "straight": 2.0, "width": 2.0}),
 }

@@ -29,3 +29,8 @@ def test_a_replacing_patch_hides_what_lies_below():
 def test_adding_on_top_of_a_replacing_patch():
     found = density({**BASE, "areal_density": 4.0}, {**TOP, "added_density": 5.0})
     assert found == {"head": 1.0, "base": 4.0, "base+top": 9.0}
+
+
+def test_of_two_replacing_patches_the_later_rules():
+    found = density({**BASE, "areal_density": 4.0}, {**TOP, "areal_density": 5.0})
+    assert found == {"head": 1.0, "base": 4.0, "base+top": 5.0}
