@@ -15,6 +15,8 @@ import numpy as np
 from membrane.errors import MeshError, OutlineError
 from membrane.kernel.bent_corners import spoilt
 from membrane.kernel.failures import gmsh_failures
+from membrane.kernel.options import MESH_OPTIONS
+from membrane.kernel.raw_checks import check_raw
 from membrane.kernel.size_map import SizeMap
 from membrane.kernel.sizes import USUAL, Bend, size_map
 from membrane.records.arrays import Floats, Ints
@@ -35,25 +37,6 @@ _TRIES, _SHORTER = 10, 0.5
 
 # Bits of a curve in which segments are counted without a mesh.
 _BITS = 32
-
-# How far a vertex may lie off its curve, as a share of the outline's size.
-_JOINED = 1e-9
-
-# Set afresh for every mesh, so that nothing but these and the sizes shapes a mesh.
-_MESH_OPTIONS = {
-    "Mesh.Algorithm": 6,  # frontal Delaunay
-    "Mesh.MeshSizeFactor": 1.0,
-    "Mesh.MeshSizeMin": 0.0,
-    "Mesh.MeshSizeMax": 1e22,
-    "Mesh.MeshSizeFromPoints": 0,
-    "Mesh.MeshSizeExtendFromBoundary": 0,
-    "Mesh.LcIntegrationPrecision": 1e-3,
-    "Mesh.RandomSeed": 1,
-    "Mesh.ElementOrder": 1,
-    "Mesh.Optimize": 1,
-    "Mesh.Smoothing": 5,
-    "General.NumThreads": 1,
-}
 
 
 class Kernel:
@@ -302,8 +285,9 @@ class Kernel:
             curve,
             parameters,
         )
-        _check(raw, outline, used, segments)
-        self._check_ends(raw, outline)
+        if not np.isin(segments, used).all():
+            raise MeshError("gmsh left a curve of the outline without triangles.")
+        check_raw(self, raw, outline)
         return raw
 
     def _tangents(self, raw: RawMesh) -> Floats:
@@ -315,21 +299,13 @@ class Kernel:
             found[:, :, of_curve] = self.tangent(curve, ends.ravel()).reshape(2, *ends.shape)
         return found
 
-    def _check_ends(self, raw: RawMesh, outline: Outline) -> None:
-        for curve in outline.curves:
-            mine = raw.segment_curve == curve.tag
-            exact = self.evaluate(curve.tag, raw.segment_parameters[:, mine])
-            off = np.abs(exact - raw.vertices[:, raw.segments[:, mine].ravel()]).max()
-            if off > _JOINED * np.sqrt(outline.area):
-                raise MeshError(f"Curves that should meet are {off:.1e} m apart.")
-
     def _places(self, nodes: Ints) -> Floats:
         numbers, coordinates, _ = self._gmsh.model.mesh.getNodes()
         order = np.argsort(numbers)
         return self._plane(coordinates)[:, order[np.searchsorted(numbers[order], nodes)]]
 
     def _set_options(self) -> None:
-        for name, value in _MESH_OPTIONS.items():
+        for name, value in MESH_OPTIONS.items():
             self._gmsh.option.setNumber(name, value)
 
     def _size_map(
@@ -413,15 +389,6 @@ class Kernel:
 
 def _by_face(outline: Outline, sizes: Mapping[str, float]) -> dict[int, float]:
     return {face: sizes[region.name] for region in outline.regions for face in region.faces}
-
-
-def _check(raw: RawMesh, outline: Outline, used: Ints, segments: Ints) -> None:
-    if not np.all(raw.areas > 0.0):
-        raise MeshError("gmsh made a triangle that is turned over or flat.")
-    if not np.isin(segments, used).all():
-        raise MeshError("gmsh left a curve of the outline without triangles.")
-    if not 0.5 < raw.areas.sum() / outline.area < 1.5:
-        raise MeshError("The triangles do not cover the outline.")
 
 
 @cache
