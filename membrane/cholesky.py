@@ -1,7 +1,7 @@
 """Factorisations of sparse symmetric matrices: solves, and counts of negative eigenvalues.
 
-CHOLMOD (Chen, Davis, Hager & Rajamanickam, ACM TOMS 35 (2008) 22) through cvxopt where it
-is installed; else SuperLU in its symmetric mode, slower and to the same accuracy.
+CHOLMOD (Chen, Davis, Hager & Rajamanickam, ACM TOMS 35 (2008) 22, from memory) through cvxopt
+where it is installed; else SuperLU in its symmetric mode, slower and to the same accuracy.
 """
 
 from __future__ import annotations
@@ -25,10 +25,10 @@ SIMPLICIAL, SUPERNODAL = 0, 2
 DIAGONAL = 6
 """CHOLMOD's number for the system D x = b."""
 
-_ZERO_PIVOT = "the count of modes met a zero pivot; move the limit slightly"
+_ZERO_PIVOT = "the count of modes met a zero pivot; move the limit slightly."
 _NOT_FACTORED = {
     SIMPLICIAL: _ZERO_PIVOT,
-    SUPERNODAL: "the stiffness matrix is not positive definite",
+    SUPERNODAL: "the stiffness matrix is not positive definite; check tensions and terms.",
 }
 
 

@@ -5,6 +5,7 @@
     │   └── NotAvailableYet           a key that a later version will bring
     ├── PluginError                   a plugin is missing, broken or named twice
     ├── OutlineError                  the shapes cannot be put together
+    │   └── DrawingError              a drawing that holds no sound outline
     ├── MeshError                     no valid mesh could be made
     ├── SolveError                    the modes could not be found or counted
     └── OutputError                   a result could not be written or read
@@ -60,6 +61,13 @@ class OutlineError(MembraneError):
     """Shapes that do not fit together: outside, overlapping, self-crossing."""
 
     exit_code = 2
+
+
+class DrawingError(OutlineError, ValueError):
+    """A drawing that cannot be read, or holds no sound outline.
+
+    A ValueError as well, so that a study reports it as it does any wrong option.
+    """
 
 
 class MeshError(MembraneError):

@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-import numpy as np
-
 from membrane.errors import StudyError
 from membrane.pitch import CENTS_PER_OCTAVE, note
 from membrane.records.arrays import Floats
@@ -36,7 +34,7 @@ def partials(
                 high=float(frequency * spread),
                 bracket="estimated",
                 bracket_cents=None if name is None else float(2 * cents),
-                ratio=float(frequency / reference),
+                ratio=None if reference is None else float(frequency / reference),
                 note=name,
                 note_cents=above,
                 cluster=int(modes.clusters[index]),
@@ -46,13 +44,13 @@ def partials(
     return tuple(rows)
 
 
-def _reference(frequencies: Floats, number: int | None) -> float:
-    """The frequency of ratio 1: the mode asked for, or the first above 0 Hz."""
+def _reference(frequencies: Floats, number: int | None) -> float | None:
+    """The frequency of ratio 1: the mode asked for, or the first above 0 Hz if any."""
     if number is None:
-        return float(frequencies[np.argmax(frequencies > 0.0)])
+        return next((float(f) for f in frequencies if f > 0.0), None)
     if number > len(frequencies) or frequencies[number - 1] == 0.0:
         raise StudyError(
             f"modes.ratio_to: mode {number} is not among the {len(frequencies)} found "
-            "with a pitch; name another one"
+            "with a pitch; name another one."
         )
     return float(frequencies[number - 1])

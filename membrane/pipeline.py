@@ -4,18 +4,26 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from time import perf_counter
 
 import numpy as np
+from threadpoolctl import threadpool_limits
 
 from membrane import plugins
 from membrane.accuracy import Estimate, estimate
 from membrane.coefficients import coefficients
 from membrane.errors import SolveError
 from membrane.kernel import Kernel
-from membrane.mesh import Resolution, make_mesh, suited_resolution
+from membrane.mesh import (
+    Resolution,
+    check_affordable,
+    make_mesh,
+    region_sizes,
+    suited_resolution,
+    unknowns,
+)
 from membrane.modes import coarser_modes, count_up_to, extract
 from membrane.modes.extract import Eigensolver
 from membrane.nodal import nodal_patterns
@@ -26,6 +34,7 @@ from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
 from membrane.records.pencil import Pencil
+from membrane.records.plan import Plan
 from membrane.records.spectrum import Spectrum
 from membrane.records.study import ModesWanted, Study
 
@@ -34,18 +43,20 @@ Progress = Callable[[str], None]
 MESHES = 6
 """How many meshes are tried, each finer, before the accuracy reached is reported as it is."""
 
-ALWAYS_WRITTEN = ("summary", "modes_csv")
-"""Products of every run; the study's ``products.write`` names the others."""
+ALWAYS_WRITTEN = ("table", "modes_csv", "summary")
+"""Products of every run; the study's ``products.write`` names the others. The summary comes
+last: it lists the files."""
 
 
 @dataclass(frozen=True)
 class _Solution:
-    """One mesh with its modes and their estimated error."""
+    """One mesh with its modes and their estimated error; notes on the outline."""
 
     mesh: Mesh
     pencil: Pencil
     modes: Modes
     error: Estimate
+    notes: tuple[str, ...] = ()
 
 
 class _Clock:
@@ -72,9 +83,11 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
     Raises OutlineError, MeshError, SolveError or PluginError, each with its sentence.
     """
     clock = _Clock(progress)
-    solution = _solve(study, clock)
-    with clock.stage("nodal lines"):
-        patterns = nodal_patterns(solution.modes, study.edges)
+    # one head's matrices are too small to gain from threads: a second one doubles the time
+    with threadpool_limits(limits=1, user_api="blas"):
+        solution = _solve(study, clock)
+        with clock.stage("nodal lines"):
+            patterns = nodal_patterns(solution.modes, study.edges)
     rows = partials(solution.modes, solution.error.cents, patterns, study.modes)
     return Spectrum(
         study=study,
@@ -83,13 +96,30 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
         complete=solution.modes.complete,
         mesh_facts=_facts(solution),
         timings=clock.seconds,
+        notes=solution.notes,
     )
+
+
+def plan(study: Study) -> Plan:
+    """What solving a study would take; the outline is drawn, nothing is meshed.
+
+    Raises OutlineError for shapes that do not fit together, MeshError where the modes wanted
+    need too many unknowns.
+    """
+    with Kernel.session() as kernel:
+        outline = draw(kernel, study)
+        membrane = coefficients(study, outline)
+        resolution = suited_resolution(kernel, outline, membrane, study.modes)
+    sizes = region_sizes(outline, membrane, study.modes, resolution.phase)
+    check_affordable(outline, sizes, resolution.degree)
+    count = unknowns(outline, sizes, resolution.degree)
+    return Plan(outline.area, resolution.degree, count, outline.notes)
 
 
 def write(spectrum: Spectrum, folder: Path) -> None:
     """Write a spectrum's products into an existing folder."""
     wanted = spectrum.study.products
-    for name in (*ALWAYS_WRITTEN, *wanted.write):
+    for name in dict.fromkeys((*wanted.write, *ALWAYS_WRITTEN)):
         product = plugins.load("product", name)
         product.write(spectrum, folder, wanted.options.get(name) or product.Options())
 
@@ -109,7 +139,7 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             if solution.error.excess <= 1.0 or attempt == MESHES - 1:
                 break
             resolution = resolution.finer(solution.error.excess)
-    return solution
+    return replace(solution, notes=outline.notes)
 
 
 def _solve_on(
@@ -135,7 +165,7 @@ def _count(pencil: Pencil, wanted: ModesWanted) -> int:
         return wanted.count
     count = count_up_to(pencil, wanted.up_to)
     if count == 0:
-        raise SolveError(f"no mode lies below {wanted.up_to:g} Hz; raise modes.up_to")
+        raise SolveError(f"no mode lies below {wanted.up_to:g} Hz; raise modes.up_to.")
     return count
 
 

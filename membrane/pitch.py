@@ -2,9 +2,13 @@
 
 from __future__ import annotations
 
-from math import log2
+from math import log, log2
 
 CENTS_PER_OCTAVE = 1200.0
+
+CENTS_PER_EIGENVALUE = CENTS_PER_OCTAVE / (2.0 * log(2.0))
+"""Cents per relative change of an eigenvalue, which is a frequency squared."""
+
 A4 = 440.0
 """Hz; the usual reference pitch (ISO 16)."""
 

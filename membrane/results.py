@@ -6,8 +6,8 @@ either what was there before or the new result whole. Where there was an earlier
 the two folders change places in one step (renameat2 with RENAME_EXCHANGE, on Linux). A file
 system without that step takes two; a kill between them leaves the earlier result in the
 hidden folder ``.NAME.earlier``, and the next run puts it back before anything else.
-Hidden folders that a killed run has left are removed by the next. The earlier folder goes as
-a whole, with whatever was added to it by hand. A power cut is not covered.
+Hidden folders that a killed run has left are removed by the next. A folder with files in it
+that no run has written is refused, so that they are not lost. A power cut is not covered.
 """
 
 from __future__ import annotations
@@ -24,6 +24,7 @@ from contextlib import contextmanager
 from glob import escape
 from pathlib import Path
 from secrets import token_hex
+from typing import Any
 
 from membrane.errors import OutputError
 
@@ -46,11 +47,8 @@ def check_free(folder: Path | str) -> Path:
         _recover(place)
         if place.exists() and not place.is_dir():
             raise OutputError(f"{place} is a file; choose another folder for the result.")
-        if place.is_dir() and any(place.iterdir()) and not _is_result(place):
-            raise OutputError(
-                f"{place} holds something else than an earlier result; "
-                "choose another folder, so that nothing is lost."
-            )
+        if place.is_dir():
+            _check_only_results(place)
     return place
 
 
@@ -79,12 +77,30 @@ def in_place(folder: Path | str) -> Iterator[Path]:
             os.close(claim)
 
 
-def _is_result(place: Path) -> bool:
+def _check_only_results(place: Path) -> None:
+    """Raise OutputError where a folder holds anything that no earlier run has written."""
+    names = {entry.name for entry in place.iterdir()}
+    summary = _summary(place)
+    if names and summary is None:
+        raise OutputError(
+            f"{place} holds something else than an earlier result; "
+            "choose another folder, so that nothing is lost."
+        )
+    strange = sorted(names - set((summary or {}).get("files", names)))
+    if strange:
+        raise OutputError(
+            f"{place} holds {', '.join(strange)}, which no run has written; "
+            "move that elsewhere or choose another folder, so that nothing is lost."
+        )
+
+
+def _summary(place: Path) -> dict[str, Any] | None:
+    """The summary of an earlier result; None where there is none."""
     try:
         summary = json.loads((place / SUMMARY).read_bytes())
     except (FileNotFoundError, NotADirectoryError, ValueError):
-        return False
-    return isinstance(summary, dict) and summary.keys() >= _KEYS
+        return None
+    return summary if isinstance(summary, dict) and summary.keys() >= _KEYS else None
 
 
 def _prefix(place: Path) -> str:

@@ -1,20 +1,23 @@
 """Physical quantities: field types that take "356 mm" or a bare SI number and give a float.
 
-Each type is a float for type checkers; pydantic calls its ``Quantity`` to read a value.
+Each type is a float for type checkers, a Varying one a float or a function of place;
+pydantic calls its ``Quantity`` to read a value.
 Inside the program every quantity is in SI units, an angle in radians, an interval in cents.
 """
 
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
-from enum import Enum
+from dataclasses import dataclass, replace
 from fractions import Fraction
 from functools import lru_cache
 from math import inf, isclose, isfinite, pi
 from numbers import Real
+from pathlib import Path
 from typing import Annotated, Any, TypeAlias
 
+from membrane.records.function import Amount, Function
+from membrane.records.sign import Sign
 from membrane.wording import nearest, shown
 
 _NUMBER_AND_UNIT = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*")
@@ -32,26 +35,6 @@ _COMMON_UNITS = (
 """Spellings offered where a unit is unknown."""
 
 
-class Sign(Enum):
-    """Which numbers a quantity may have."""
-
-    ANY = "any"
-    NOT_NEGATIVE = "not negative"
-    POSITIVE = "positive"
-
-    def allows(self, number: float) -> bool:
-        """Whether a number has this sign."""
-        if self is Sign.POSITIVE:
-            return number > 0.0
-        return self is Sign.ANY or number >= 0.0
-
-    def worded(self, noun: str) -> str:
-        """ "a length" as "a positive length"."""
-        if self is Sign.POSITIVE:
-            return f"a positive {noun.split(' ', 1)[1]}"
-        return noun if self is Sign.ANY else f"{noun} of zero or more"
-
-
 @dataclass(frozen=True)
 class Quantity:
     """What a field measures.
@@ -59,24 +42,29 @@ class Quantity:
     noun : with its article, such as "a length"
     unit : the SI unit, as pint spells it
     example : a value that a user could write
+    varying : which numbers it may have where it varies over the head; None where it
+        may not vary
     """
 
     noun: str
     unit: str
     example: str
     sign: Sign = Sign.ANY
+    varying: Sign | None = None
 
-    def read(self, value: Any) -> float:
-        """The SI number of "356 mm", or of a bare SI number.
+    def read(self, value: Any) -> Amount:
+        """The SI number of "356 mm", or of a bare SI number; a function of place of a table.
 
         Raises ValueError with a sentence.
         """
+        from membrane.varying import is_varying
+
+        if is_varying(value):
+            return self._function(value)
         if isinstance(value, str):
             number = self._from_text(value)
         elif isinstance(value, Real) and not isinstance(value, bool):
             number = float(value)
-        elif isinstance(value, dict) and "formula" in value:
-            raise ValueError("a formula is not available yet; give a number with its unit.")
         else:
             raise ValueError(self._expected(f"got {shown(value)}."))
         self._check(number, value)
@@ -86,6 +74,19 @@ class Quantity:
         from pydantic_core import core_schema
 
         return core_schema.no_info_plain_validator_function(self.read)
+
+    def _function(self, value: Any) -> Function:
+        """Raises KeyProblem where the table of a formula and the like is not sound."""
+        from membrane.varying import KeyProblem, read_function
+
+        if self.varying is None:
+            raise ValueError("cannot vary over the head; give one number with its unit.")
+        function, unit = read_function(value)
+        try:
+            factor = 1.0 if unit is None else float(self._factor(unit, unit))
+        except ValueError as failure:
+            raise KeyProblem("unit", str(failure)) from None
+        return replace(function, factor=factor, unit=self.unit, noun=self.noun, sign=self.varying)
 
     def _from_text(self, text: str) -> float:
         found = _NUMBER_AND_UNIT.fullmatch(text)
@@ -139,6 +140,38 @@ class _Angle(Quantity):
             raise ValueError(f"expected an angle within one turn, got {shown(value)}{hint}.")
 
 
+@dataclass(frozen=True)
+class _Unit(Quantity):
+    """A unit by its name, "mm", or by what it measures, "25.4 mm"."""
+
+    def read(self, value: Any) -> float | Function:
+        named = isinstance(value, str) and value.strip()[:1].isalpha()
+        return super().read(f"1 {value.strip()}" if named else value)
+
+
+@dataclass(frozen=True)
+class _File:
+    """The path of a file that is there; a relative one starts from the study's folder.
+
+    The reader of a study hands that folder over as the pydantic context's ``base``.
+    """
+
+    def read(self, value: Any, info: Any) -> Path:
+        """The whole path. Raises ValueError with a sentence."""
+        if not isinstance(value, str | Path):
+            raise ValueError(f"expected the path of a file, got {shown(value)}.")
+        base = Path((info.context or {}).get("base", "."))
+        path = (base / Path(value).expanduser()).resolve()
+        if not path.is_file():
+            raise ValueError(f"there is no file {path}; its path starts from the study file.")
+        return path
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: Any) -> Any:
+        from pydantic_core import core_schema
+
+        return core_schema.with_info_plain_validator_function(self.read)
+
+
 @lru_cache(maxsize=256)
 def _root(unit: str) -> tuple[float, str]:
     """Factor and name of pint's root unit. Raises ValueError for an unknown unit."""
@@ -177,7 +210,11 @@ def _exact(factor: float) -> Fraction:
 
 
 def _positive(quantity: Quantity) -> Quantity:
-    return Quantity(quantity.noun, quantity.unit, quantity.example, Sign.POSITIVE)
+    return replace(quantity, sign=Sign.POSITIVE)
+
+
+def _varying(quantity: Quantity) -> Quantity:
+    return replace(quantity, varying=quantity.sign)
 
 
 _LENGTH = Quantity("a length", "m", "356 mm")
@@ -193,6 +230,7 @@ _DENSITY = Quantity("a density", "kg/m^3", "1390 kg/m^3", Sign.NOT_NEGATIVE)
 _PRESSURE = Quantity("a pressure", "Pa", "101 kPa")
 
 Length: TypeAlias = Annotated[float, _LENGTH]
+UnitOfLength: TypeAlias = Annotated[float, _Unit("a unit of length", "m", "mm", Sign.POSITIVE)]
 PositiveLength: TypeAlias = Annotated[float, _positive(_LENGTH)]
 Point: TypeAlias = tuple[Length, Length]
 Angle: TypeAlias = Annotated[float, _ANGLE]
@@ -208,6 +246,17 @@ Frequency: TypeAlias = Annotated[float, _FREQUENCY]
 PositiveFrequency: TypeAlias = Annotated[float, _positive(_FREQUENCY)]
 Cents: TypeAlias = Annotated[float, _CENTS]
 PositiveCents: TypeAlias = Annotated[float, _positive(_CENTS)]
+VaryingArealDensity: TypeAlias = Annotated[Amount, _varying(_AREAL_DENSITY)]
+PositiveVaryingArealDensity: TypeAlias = Annotated[Amount, _varying(_positive(_AREAL_DENSITY))]
+VaryingLineTension: TypeAlias = Annotated[Amount, _varying(_LINE_TENSION)]
+PositiveVaryingLineTension: TypeAlias = Annotated[Amount, _varying(_positive(_LINE_TENSION))]
+VaryingBedding: TypeAlias = Annotated[Amount, _varying(_BEDDING)]
+VaryingLineDensity: TypeAlias = Annotated[Amount, _varying(_LINE_DENSITY)]
+# an edge may be elastic along a part of it alone
+PositiveVaryingLineStiffness: TypeAlias = Annotated[
+    Amount, replace(_positive(_LINE_STIFFNESS), varying=Sign.NOT_NEGATIVE)
+]
 Density: TypeAlias = Annotated[float, _DENSITY]
 PositiveDensity: TypeAlias = Annotated[float, _positive(_DENSITY)]
 Pressure: TypeAlias = Annotated[float, _PRESSURE]
+File: TypeAlias = Annotated[Path, _File()]

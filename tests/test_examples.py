@@ -4,10 +4,12 @@ import re
 import subprocess
 import sys
 from pathlib import Path
+from shutil import copy
 
 import pytest
 
 from membrane import read_study, run
+from membrane.products.table import table_text
 
 ROOT = Path(__file__).parent.parent
 STUDIES = sorted((ROOT / "scripts").glob("*.toml"))
@@ -22,7 +24,7 @@ def snippets(language):
 def test_there_are_examples():
     assert len(STUDIES) >= 5
     assert len(SCRIPTS) >= 2
-    assert len(snippets("toml")) == 3
+    assert len(snippets("toml")) == 4
 
 
 @pytest.mark.slow
@@ -52,6 +54,7 @@ def test_kettledrum_ratios_are_the_published_ones():
     }
     published = {1: 1.0, 2: 1.34, 3: 1.66, 4: 1.98, 5: 2.29}
     assert max(abs(found[m] - ratio) for m, ratio in published.items()) < 0.01
+    assert table_text(spectrum) in README
 
 
 @pytest.mark.slow
@@ -72,6 +75,7 @@ def test_readme(tmp_path):
     studies, (script, outline) = snippets("toml"), snippets("python")
     exec(compile(script, "README", "exec"), {})
     (tmp_path / "half_moon.py").write_text(outline)
+    copy(ROOT / "tests" / "drawings" / "files" / "frame_drum.dxf", tmp_path / "drum.dxf")
     for number, text in enumerate(studies):
         head = "" if "[head]" in text else "\n[head]\nareal_density = 0.26\ntension = 3000\n"
         path = tmp_path / f"study{number}.toml"

@@ -5,8 +5,9 @@ import pytest
 from scipy.special import jn_zeros
 
 from membrane import pipeline, run, study_from, write
-from membrane.errors import SolveError, StudyError
+from membrane.errors import MeshError, OutlineError, SolveError, StudyError
 from membrane.mesh import Resolution
+from membrane.products import summary
 from tests import zoo
 
 
@@ -61,6 +62,31 @@ def test_interval_of_an_elastic_disc_is_narrower_for_more_accuracy():
     assert widths[0] <= 1.0
 
 
+@pytest.mark.parametrize("modes", [{"count": 1}, {"up_to": 0.01}])
+def test_a_free_head_may_be_asked_for_its_rigid_mode_alone(modes):
+    free = {
+        **zoo.SQUARE,
+        "edges": {n: {"support": "free"} for n in ["left", "right", "bottom", "top"]},
+    }
+    (rigid,) = solved(free, **modes).partials
+    assert (rigid.frequency, rigid.ratio, rigid.note) == (0.0, None, None)
+
+
+def test_a_slip_of_the_unit_is_refused_before_it_takes_hours():
+    with pytest.raises(MeshError, match="ask for fewer modes, a lower up_to"):
+        solved(zoo.DISC, up_to=1e6)
+
+
+def test_plan_draws_the_outline_and_finds_shapes_that_do_not_fit():
+    planned = pipeline.plan(study_from(zoo.PATCHED))
+    assert abs(planned.area - np.pi) < 1e-9
+    assert planned.degree == 8
+    assert 500 < planned.unknowns < 5000
+    away = {"name": "away", "shape": "disc", "diameter": 0.1, "at": [3.0, 0.0], "tension": 2.0}
+    with pytest.raises(OutlineError, match="wholly outside"):
+        pipeline.plan(study_from({**zoo.DISC, "patches": [away]}))
+
+
 def test_ratio_to_a_mode_that_is_not_there():
     with pytest.raises(StudyError, match="mode 7 is not among the"):
         solved(zoo.DISC, up_to=0.7, ratio_to=7)
@@ -86,6 +112,11 @@ def test_rim_mass_lowers_every_mode_of_an_elastic_disc_as_bessel_says():
     assert abs(first / k**2 - 1) < 1e-9
 
 
+def test_a_spectrum_is_shown_in_one_line():
+    spectrum = solved(zoo.SQUARE, count=1)
+    assert repr(spectrum) == "<Spectrum of a study: 1 modes, 0.707107 to 0.707107 Hz>"
+
+
 def test_stages_are_told_in_order():
     told = []
     run(study_from({**zoo.SQUARE, "modes": {"count": 2}}), told.append)
@@ -97,6 +128,7 @@ def test_write_writes_what_is_wanted(tmp_path):
     write(run(study_from(keys)), tmp_path)
     found = sorted(path.name for path in tmp_path.iterdir())
     assert found == ["modes.csv", "summary.json", "table.txt"]
+    assert summary.read(tmp_path)["files"] == found
 
 
 def test_all_eigensolvers_agree():

@@ -15,7 +15,7 @@ import pytest
 
 from membrane import results
 from membrane.errors import OutputError
-from membrane.results import check_free, in_place
+from membrane.results import SUMMARY, check_free, in_place
 
 FILES = 12
 
@@ -57,6 +57,19 @@ def test_a_first_and_a_second_result(tmp_path):
         put(place, stamp)
         assert stamp_of(place) == stamp
     assert os.listdir(place.parent) == ["out"]
+
+
+def test_files_that_no_run_has_written_are_not_lost(tmp_path):
+    place = tmp_path / "out"
+    with in_place(place) as folder:
+        names = [SUMMARY, "modes.csv"]
+        (folder / "modes.csv").write_text("")
+        (folder / SUMMARY).write_text(json.dumps({"software": "", "modes": [], "files": names}))
+    assert check_free(place) == place
+    (place / "view.pvsm").write_text("mine")
+    with pytest.raises(OutputError, match=r"holds view\.pvsm, which no run has written"):
+        put(place, 2)
+    assert (place / "view.pvsm").read_text() == "mine"
 
 
 def fail_halfway(place: Path) -> None:

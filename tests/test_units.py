@@ -121,7 +121,7 @@ def test_lengths_agree_with_pints_own_conversion(value, unit):
         (units.Angle, 30, 'an angle within one turn, got 30; write "30 deg".'),
         (units.Angle, "361 deg", 'an angle within one turn, got "361 deg".'),
         (units.Cents, "0.01 Hz", 'expected an interval such as "0.01 cent", got "0.01 Hz".'),
-        (units.Length, {"formula": "r"}, "a formula is not available yet"),
+        (units.Length, {"formula": "r"}, "cannot vary over the head"),
     ],
 )
 def test_what_is_refused(kind, value, said):

@@ -7,16 +7,33 @@ from pathlib import Path
 from typing import Any
 
 from membrane.plugins.options import plain, unit_of
+from membrane.records.function import Amount, Function
+from membrane.records.plan import Plan
 from membrane.records.study import Edge, ModesWanted, Patch, Shape, Study, Support
 from membrane.study import read_study
+from membrane.varying import KINDS, is_varying
 
 
 def describe_study(file: Path) -> str:
-    """The lines that ``membrane check`` prints. Raises StudyError."""
+    """The lines that ``membrane check`` prints.
+
+    The outline is drawn and cut, but not meshed. Raises StudyError, or OutlineError for
+    shapes that do not fit together.
+    """
     study = read_study(file)
-    pairs = [pair for pairs in (_shapes(study), _physics(study), _wanted(study)) for pair in pairs]
+    from membrane.pipeline import plan
+
+    planned = plan(study)
+    parts = (_shapes(study), _physics(study), _wanted(study), _size(planned))
+    pairs = [pair for pairs in parts for pair in pairs]
     width = max(len(label) for label, _ in pairs)
     return "\n".join(f"{label:<{width}}  {text}" for label, text in pairs)
+
+
+def _size(planned: Plan) -> list[tuple[str, str]]:
+    work = f"about {planned.unknowns} unknowns of degree {planned.degree} at the first try"
+    notes = [("note", note) for note in planned.notes]
+    return [("area", f"{planned.area:.6g} m^2"), ("mesh", work), *notes]
 
 
 def _shapes(study: Study) -> list[tuple[str, str]]:
@@ -30,8 +47,9 @@ def _shapes(study: Study) -> list[tuple[str, str]]:
 
 def _physics(study: Study) -> list[tuple[str, str]]:
     head = study.head
-    bed = f", bedding {head.bedding:g} N/m^3" if head.bedding else ""
-    text = f"areal density {head.areal_density:g} kg/m^2, {_tension(study.source['head'])}{bed}"
+    bed = f", bedding {_amount(head.bedding, 'N/m^3')}" if head.bedding else ""
+    density = _amount(head.areal_density, "kg/m^2")
+    text = f"areal density {density}, {_tension(study.source['head'])}{bed}"
     terms = [(f"term {name}", _options(options)) for name, options in study.terms.items()]
     edges = [(f"edge {name}", _edge(edge)) for name, edge in study.edges.items()]
     return [("head", text), *terms, *edges]
@@ -63,26 +81,42 @@ def _value(value: object) -> str:
 
 def _patch(patch: Patch, source: Mapping[str, Any]) -> str:
     parts = [
-        patch.areal_density is not None and f"areal density {patch.areal_density:g} kg/m^2",
-        patch.added_density is not None and f"added density {patch.added_density:g} kg/m^2",
+        _named("areal density", patch.areal_density, "kg/m^2"),
+        _named("added density", patch.added_density, "kg/m^2"),
         patch.tension is not None and _tension(source),
-        patch.bedding is not None and f"bedding {patch.bedding:g} N/m^3",
+        _named("bedding", patch.bedding, "N/m^3"),
     ]
     return "; ".join([_shape(patch.shape), *(part for part in parts if part)])
 
 
 def _tension(source: Mapping[str, Any]) -> str:
     tension = source["tension"]
-    if not isinstance(tension, Mapping):
-        return f"tension {tension:g} N/m"
+    if not isinstance(tension, Mapping) or is_varying(tension):
+        return f"tension {_amount(tension, 'N/m')}"
     units = {"angle": "rad"}
-    parts = (f"{key} {number:g} {units.get(key, 'N/m')}" for key, number in tension.items())
+    parts = (f"{key} {_amount(n, units.get(key, 'N/m'))}" for key, n in tension.items())
     return f"tension {', '.join(parts)}"
 
 
+def _named(name: str, amount: Amount | None, unit: str) -> str:
+    return "" if amount is None else f"{name} {_amount(amount, unit)}"
+
+
+def _amount(amount: Amount | Mapping[str, Any], unit: str) -> str:
+    """A number with its unit, or how a coefficient that varies over the head is given."""
+    source = amount.source if isinstance(amount, Function) else amount
+    if not isinstance(source, Mapping):
+        return f"{source:g} {unit}"
+    kind = next(kind for kind in KINDS if kind in source)
+    of = f" of {source['script']}" if "script" in source else ""
+    return f"by the {kind} {source[kind]}{of} in {source.get('unit', unit)}"
+
+
 def _edge(edge: Edge) -> str:
-    stiffness = f", {edge.stiffness:g} N/m^2" if edge.support is Support.ELASTIC else ""
-    mass = f", with {edge.mass:g} kg/m" if edge.mass else ""
+    elastic = edge.support is Support.ELASTIC
+    stiffness = f", {_amount(edge.stiffness, 'N/m^2')}" if elastic else ""
+    a_mass = "a mass " if isinstance(edge.mass, Function) else ""
+    mass = f", with {a_mass}{_amount(edge.mass, 'kg/m')}" if edge.mass else ""
     return f"{edge.support}{stiffness}{mass}"
 
 

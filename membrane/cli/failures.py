@@ -23,6 +23,7 @@ def failures_told(ctx: typer.Context, study: Path | None = None) -> Iterator[Non
     try:
         yield
     except KeyboardInterrupt:
+        typer.echo("Stopped; nothing was written.", err=True)
         raise typer.Exit(INTERRUPTED) from None
     except (typer.Exit, BrokenPipeError):  # a reader such as head may close the pipe
         raise

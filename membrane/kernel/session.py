@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import threading
-from collections.abc import Iterable, Iterator, Mapping, Sequence
+from collections.abc import Collection, Iterable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from functools import cache
 from typing import Any
@@ -156,19 +156,23 @@ class Kernel:
         if at != (0.0, 0.0):
             self._gmsh.model.occ.translate(things, *at, 0)
 
-    def fragment(self, faces: Sequence[int]) -> list[set[int]]:
+    def fragment(
+        self, faces: Sequence[int], points: Sequence[tuple[float, float]] = ()
+    ) -> list[set[int]]:
         """Cut faces by each other: for each, the new faces that cover it.
 
+        points : places (x, y), metres, that become vertices of every mesh of the faces
         Raises OutlineError where the kernel cannot cut them.
         """
-        if len(faces) > 1:
+        if len(faces) + len(points) > 1:
             first, *others = ((2, face) for face in faces)
+            others += [(0, self._gmsh.model.occ.addPoint(*point, 0.0)) for point in points]
             with _gmsh_failures(OutlineError, "The shapes could not be cut by each other"):
                 _, covers = self._gmsh.model.occ.fragment([first], others)
         else:
             covers = [[(2, face)] for face in faces]
         self._gmsh.model.occ.synchronize()
-        return [{tag for dim, tag in cover if dim == 2} for cover in covers]
+        return [{tag for dim, tag in cover if dim == 2} for cover in covers[: len(faces)]]
 
     def neighbours(self, curve: int) -> list[int]:
         """Faces that a curve bounds."""
@@ -178,15 +182,16 @@ class Kernel:
         """Whether a point (2,), metres, lies in a face."""
         return bool(self._gmsh.model.isInside(2, face, [*point, 0.0]))
 
-    def keep_only(self, faces: Iterable[int]) -> None:
-        """Remove all faces but these, and every curve and point that bounds none."""
+    def keep_only(self, faces: Collection[int]) -> None:
+        """Remove all faces but these, and every curve and point that is not of them."""
         model = self._gmsh.model
         kept = {(2, face) for face in faces}
         model.occ.remove([face for face in model.getEntities(2) if face not in kept], True)
         for dim in (1, 0):
             model.occ.synchronize()
+            inner = {e for face in faces for e in model.mesh.getEmbedded(2, face)}
             loose = [e for e in model.getEntities(dim) if not len(model.getAdjacencies(*e)[0])]
-            model.occ.remove(loose, True)
+            model.occ.remove([e for e in loose if e not in inner], True)
         model.occ.synchronize()
 
     # Mesh

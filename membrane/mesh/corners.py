@@ -9,10 +9,14 @@ from math import inf, pi
 import numpy as np
 
 from membrane.kernel import Kernel
+from membrane.mesh.corner import Corner
+from membrane.mesh.kinks import kinks
 from membrane.records.arrays import Floats
 from membrane.records.membrane import Field, Membrane
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh
+
+__all__ = ["Corner", "corners"]
 
 WHOLE = 1e-7
 """Rounding allowed where an exponent or an angle is compared to a whole number."""
@@ -25,14 +29,6 @@ _AHEAD = 1e-3
 
 TENSION_JUMP = 0.5
 """Exponent assumed where tensions meet at a corner: the weakest that there can be."""
-
-
-@dataclass(frozen=True)
-class Corner:
-    """A vertex near which modes behave like r^exponent, with no whole exponent."""
-
-    vertex: int
-    exponent: float
 
 
 @dataclass(frozen=True)
@@ -66,7 +62,7 @@ class Wedge:
 def corners(
     kernel: Kernel, outline: Outline, membrane: Membrane, raw: RawMesh
 ) -> tuple[Corner, ...]:
-    """Every vertex of the mesh that spoils the convergence of smooth elements.
+    """Every vertex of the mesh that spoils the convergence of smooth elements, kinks included.
 
     The leading exponent at a corner of opening w is pi/w between like supports and pi/2w
     between a fixed and a moving one (P. Grisvard, Elliptic Problems in Nonsmooth Domains,
@@ -78,10 +74,19 @@ def corners(
         if _passes_smoothly(rays, membrane):
             continue
         wedges = _wedges(vertex, rays, outline, raw)
-        exponent = min(map(_Fan(membrane, outline).exponent, _fans(wedges)), default=inf)
+        fan = _Fan(membrane, outline, raw.vertices[:, [vertex]])
+        exponent = min(map(fan.exponent, _fans(wedges)), default=inf)
         if exponent < inf:
             found.append(Corner(vertex, exponent))
-    return tuple(found)
+    return _with_kinks(found, kinks(outline, membrane, raw))
+
+
+def _with_kinks(corners: list[Corner], kinks: tuple[Corner, ...]) -> tuple[Corner, ...]:
+    """Each vertex once, with the weaker of its exponents."""
+    weakest = {corner.vertex: corner.exponent for corner in corners}
+    for kink in kinks:
+        weakest[kink.vertex] = min(kink.exponent, weakest.get(kink.vertex, inf))
+    return tuple(Corner(vertex, exponent) for vertex, exponent in weakest.items())
 
 
 def _rays(kernel: Kernel, outline: Outline, raw: RawMesh) -> dict[int, list[Ray]]:
@@ -174,13 +179,14 @@ def _fans(wedges: list[Wedge]) -> list[list[Wedge]]:
 class _Fan:
     """The exponent of a run of wedges under one membrane."""
 
-    def __init__(self, membrane: Membrane, outline: Outline) -> None:
+    def __init__(self, membrane: Membrane, outline: Outline, place: Floats) -> None:
         self.membrane = membrane
+        self.place = place
         self.straight = {curve.tag for curve in outline.curves if curve.edge is not None}
 
     def exponent(self, fan: list[Wedge]) -> float:
         """Smallest exponent that spoils smoothness; infinite where none does."""
-        tensions = [self.membrane.total(Field.TENSION, str(w.region)) for w in fan]
+        tensions = [self._here(Field.TENSION, w.region) for w in fan]
         if any(not np.allclose(tensions[0], other, rtol=1e-12) for other in tensions):
             return TENSION_JUMP
         if _turn(fan[0].first.tangent, fan[-1].second.tangent) == 2 * pi and len(fan) > 1:
@@ -189,9 +195,8 @@ class _Fan:
 
     def _inside(self, fan: list[Wedge]) -> float:
         """Around an inner vertex only the density can jump: u has r^2 log r."""
-        names = {str(wedge.region) for wedge in fan}
-        densities = {float(self.membrane.total(Field.AREAL_DENSITY, n)) for n in names}
-        return 2.0 if len(densities) > 1 else inf
+        densities = [float(self._here(Field.AREAL_DENSITY, wedge.region)) for wedge in fan]
+        return 2.0 if not np.allclose(densities[0], densities, rtol=1e-12) else inf
 
     def _at_edge(self, fan: list[Wedge], tension: Floats) -> float:
         first, last = fan[0].first, fan[-1].second
@@ -203,12 +208,31 @@ class _Fan:
         bent = abs(first.bend) + abs(last.bend) > 0.0
         springs = any(self._is_elastic(ray) for ray in (first, last))
         several = len(fan) > 1
-        return leading + 1.0 if bent or springs or several else inf
+        if bent or springs or several:
+            return leading + 1.0
+        return leading + _weaker_by(self.membrane, str(fan[0].region))
+
+    def _here(self, field: Field, name: str | None) -> Floats:
+        """A field of a region at the vertex, or its mean where it has no sound value there."""
+        here = np.asarray(self.membrane.at(field, str(name), self.place)[0])
+        sound = np.isfinite(here).all() and np.trace(np.atleast_2d(here)) > 0.0
+        return here if sound else np.asarray(self.membrane.total(field, str(name)))
 
     def _is_elastic(self, ray: Ray) -> bool:
-        stiffness = self.membrane.total(Field.EDGE_STIFFNESS, str(ray.edge))
-        mass = self.membrane.total(Field.EDGE_MASS, str(ray.edge))
-        return bool(stiffness > 0.0 or mass > 0.0)
+        fields = (Field.EDGE_STIFFNESS, Field.EDGE_MASS)
+        return any(self.membrane.parts(field, str(ray.edge)) for field in fields)
+
+
+def _weaker_by(membrane: Membrane, region: str) -> float:
+    """How much a varying coefficient adds to a whole exponent before it spoils smoothness.
+
+    Where u goes like r^k, grad T . grad u has terms r^k and rho u terms r^(k+1); each makes
+    a term two orders higher, with a logarithm where that exponent is a corner's own.
+    """
+    if membrane.varies(Field.TENSION, region):
+        return 2.0
+    others = (Field.AREAL_DENSITY, Field.BEDDING)
+    return 3.0 if any(membrane.varies(field, region) for field in others) else inf
 
 
 def _opening(fan: list[Wedge], tension: Floats) -> float:

@@ -7,7 +7,13 @@ from math import sqrt
 import numpy as np
 
 from membrane.kernel import Kernel
-from membrane.mesh.resolution import LOWEST_DEGREE, Resolution, first_resolution, region_sizes
+from membrane.mesh.resolution import (
+    LOWEST_DEGREE,
+    Resolution,
+    check_affordable,
+    first_resolution,
+    region_sizes,
+)
 from membrane.records.arrays import Floats
 from membrane.records.membrane import Membrane
 from membrane.records.outline import Outline
@@ -28,11 +34,13 @@ def suited_resolution(
 
     Where bends and gaps force very many triangles far smaller than the waves, as dots do, a
     lower degree is accurate enough on about the same triangles.
+    Raises MeshError where the waves alone need too many.
     """
     first = first_resolution(wanted)
+    sizes = region_sizes(outline, membrane, wanted, first.phase)
+    check_affordable(outline, sizes, first.degree)
     if not first.degree_is_free or first.degree == LOWEST_DEGREE:
         return first
-    sizes = region_sizes(outline, membrane, wanted, first.phase)
     squares = sum(r.area * (first.phase / sizes[r.name]) ** 2 for r in outline.regions)
     segments, shares = kernel.segments(outline, sizes)
     phases = first.phase * shares

@@ -12,32 +12,82 @@ from membrane.mesh.corners import Corner
 from membrane.records.arrays import Floats
 from membrane.records.raw_mesh import RawMesh
 
-RATIO = 0.35
+RATIO = 0.3
 """Size of each layer to the one around it; 0.3 to 0.35 costs least in our trials."""
 
 DEEPEST = 24
 """Most layers at one corner: beyond that the corner is below rounding."""
 
+MEASURED = 8
+"""Degree of the elements on which the bounds below were measured."""
 
-def layers(exponent: float, tolerance: float, degree: int) -> int:
+STRAIGHT = 1e-7
+"""How near to a whole number an exponent is taken as whole."""
+
+FIRST = 0.1
+"""Bound on what a mode's first singular term leaves there, in the units of ``depth``."""
+
+NEXT = 1e-5
+"""What the next term of a mode, one order weaker, leaves in the triangles at a corner.
+
+In our trials r^2 log r left 1e-7 of the share, with triangles that follow the bend.
+"""
+
+
+def layers(exponent: float, tolerance: float) -> int:
     """How many layers leave a relative error below ``tolerance`` in the eigenvalues.
 
-    The energy within a radius r of the corner goes like r^(2 exponent), and of it triangles
-    of a degree p that reach the corner miss the share p^(-4 exponent): I. Babuska & M. Suri,
-    RAIRO M2AN 21 (1987) 199 (from memory).
+    The energy within a radius r of the corner, and so the error, goes like r^(2 exponent).
     """
-    needed = tolerance * degree ** (4 * exponent)
-    return int(np.clip(ceil(log(needed) / (2 * exponent * log(RATIO))), 0, DEEPEST))
+    return min(max(ceil(log(tolerance) / (2 * exponent * log(RATIO))), 0), DEEPEST)
+
+
+def depth(exponent: float, share: float, tolerance: float, degree: int = MEASURED) -> int:
+    """How many layers a corner needs whose triangles have not been cut yet.
+
+    share : square of their longest side, as a share of the head's area
+    degree : of the elements; of the energy at a corner they miss a share that goes like
+        degree^(-4 exponent): I. Babuska & M. Suri, RAIRO M2AN 21 (1987) 199 (from memory)
+
+    Where the exponent is near a whole number k, as at the many corners of a fine polygon,
+    r^exponent is r^k but for a part in proportion to the difference: the energy that smooth
+    elements miss goes like its square. Measured at degree 8 on polygons of up to 48 sides
+    and on the L shape, an uncut corner left at most 0.03 off^2 share^exponent.
+    """
+    tolerance *= (degree / MEASURED) ** (4 * exponent)
+    off = abs(exponent - round(exponent))
+    if off < STRAIGHT:
+        return layers(exponent, tolerance)
+    missed = FIRST * off**2 * min(share, 1.0) ** min(exponent, 1.0)
+    following = NEXT * min(share, 1.0)
+    return max(layers(exponent, tolerance / missed), layers(exponent + 1, tolerance / following))
 
 
 def graded(
-    kernel: Kernel, raw: RawMesh, corners: tuple[Corner, ...], tolerance: float, degree: int
+    kernel: Kernel,
+    raw: RawMesh,
+    corners: tuple[Corner, ...],
+    tolerance: float,
+    degree: int = MEASURED,
 ) -> RawMesh:
     """The mesh with every corner's triangles cut into layers that shrink towards it."""
     growing = _Growing(kernel, raw)
+    shares = _shares(raw)
     for corner in corners:
-        growing.grade(corner.vertex, layers(corner.exponent, tolerance, degree))
+        cuts = depth(corner.exponent, float(shares[corner.vertex]), tolerance, degree)
+        if cuts > 0:
+            growing.grade(corner.vertex, cuts)
     return growing.raw_mesh()
+
+
+def _shares(raw: RawMesh) -> Floats:
+    """For each vertex the squared longest side of its triangles over the mesh's area."""
+    corners = raw.vertices[:, raw.triangles]
+    squares = ((np.roll(corners, -1, axis=1) - corners) ** 2).sum(axis=0).max(axis=0)
+    longest = np.zeros(raw.vertices.shape[1])
+    for row in raw.triangles:
+        np.maximum.at(longest, row, squares)
+    return np.asarray(longest / raw.areas.sum())
 
 
 class _Growing:

@@ -10,7 +10,12 @@ from membrane.mesh.checks import check_mesh
 from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
 from membrane.mesh.grade import graded
-from membrane.mesh.resolution import LOWEST_DEGREE, Resolution, region_sizes
+from membrane.mesh.resolution import (
+    LOWEST_DEGREE,
+    Resolution,
+    check_affordable,
+    region_sizes,
+)
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
@@ -29,16 +34,20 @@ def make_mesh(
 ) -> Mesh:
     """A valid curved mesh of the outline in the open kernel session.
 
-    Raises MeshError where no valid mesh is found.
+    Raises MeshError where no valid mesh is found, or only one too large to solve on.
     """
     sizes = region_sizes(outline, membrane, wanted, resolution.phase)
+    check_affordable(outline, sizes, resolution.degree)
     for attempt in range(ATTEMPTS):
         finer = {name: size * 0.7**attempt for name, size in sizes.items()}
         try:
             return _attempt(kernel, outline, membrane, finer, resolution)
         except MeshError as failure:
             last = failure
-    raise MeshError(f"no valid mesh after {ATTEMPTS} attempts; the last one: {last}")
+    raise MeshError(
+        f"no valid mesh of the outline was found ({last}); "
+        "move apart or leave out shapes that all but touch."
+    )
 
 
 def _attempt(

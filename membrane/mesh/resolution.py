@@ -2,20 +2,23 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
-from math import factorial, pi, sqrt
+from math import ceil, factorial, pi, sqrt
 
 import numpy as np
 
+from membrane.errors import MeshError
+from membrane.pitch import CENTS_PER_EIGENVALUE
 from membrane.records.membrane import Field, Membrane
 from membrane.records.outline import Outline
 from membrane.records.study import ModesWanted
 
-CENTS_PER_UNIT = 600.0 / np.log(2.0)
-"""Cents per relative change of an eigenvalue: half of 1200 / ln 2."""
-
 LOWEST_DEGREE, HIGHEST_DEGREE = 4, 12
 """Degrees that are chosen where the user sets none."""
+
+MOST_UNKNOWNS = 1_000_000
+"""More than this takes hours and tens of gigabytes."""
 
 
 @dataclass(frozen=True)
@@ -53,7 +56,7 @@ def first_resolution(wanted: ModesWanted, degree: int | None = None) -> Resoluti
 
     degree : to use unless the user has set one; None lets the accuracy choose
     """
-    relative = wanted.accuracy / CENTS_PER_UNIT
+    relative = wanted.accuracy / CENTS_PER_EIGENVALUE
     degree = wanted.degree or degree or _degree_for(relative)
     phase = _phase_for(relative, _coarser(degree))
     return Resolution(degree, phase, 1e-4 * relative, wanted.degree is None)
@@ -90,16 +93,32 @@ def region_sizes(
     return {r.name: phase / (omega * _slowness(membrane, r.name)) for r in outline.regions}
 
 
+def unknowns(outline: Outline, sizes: Mapping[str, float], degree: int) -> int:
+    """About how many unknowns a mesh with these longest edges has.
+
+    A triangle of edge h covers sqrt(3)/4 h^2 and brings degree^2/2 unknowns.
+    """
+    triangles = sum(r.area / (sqrt(3) / 4 * sizes[r.name] ** 2) for r in outline.regions)
+    return ceil(triangles * degree**2 / 2)
+
+
+def check_affordable(outline: Outline, sizes: Mapping[str, float], degree: int) -> None:
+    """Raise MeshError where a mesh would have more unknowns than can be solved for."""
+    count = unknowns(outline, sizes, degree)
+    if count > MOST_UNKNOWNS:
+        raise MeshError(
+            f"the modes wanted need about {count:.1e} unknowns, more than {MOST_UNKNOWNS:.0e}; "
+            "ask for fewer modes, a lower up_to, less accuracy or a higher degree."
+        )
+
+
 def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
     """Angular frequency of the mode number ``count``, rad/s, by Weyl's two-term law.
 
     count = A w^2/(4 pi) - L w/(4 pi), with area and fixed perimeter measured in travel
-    time; H. Weyl 1911, second term after Ivrii 1980.
+    time; H. Weyl 1911, second term after V. Ivrii 1980 (from memory).
     """
-    area = sum(
-        r.area * membrane.total(Field.AREAL_DENSITY, r.name) / _root_det(membrane, r.name)
-        for r in outline.regions
-    )
+    area = sum(r.area * _travel_area(membrane, r.name) for r in outline.regions)
     slowest = max(_slowness(membrane, region.name) for region in outline.regions)
     length = slowest * sum(outline.edge_length(name) for name in membrane.fixed_edges)
     length = min(length, 2.0 * sqrt(pi * count * area))  # a comb's perimeter says nothing
@@ -108,10 +127,14 @@ def _weyl(outline: Outline, membrane: Membrane, count: int) -> float:
 
 def _slowness(membrane: Membrane, region: str) -> float:
     """Seconds per metre of the slowest wave in a region."""
-    tension = membrane.total(Field.TENSION, region)
-    density = membrane.total(Field.AREAL_DENSITY, region)
-    return float(np.sqrt(density / np.linalg.eigvalsh(tension)[0]))
+    tension = membrane.sampled(Field.TENSION, region)
+    density = membrane.sampled(Field.AREAL_DENSITY, region)
+    return float(np.sqrt((density / np.linalg.eigvalsh(tension)[:, 0]).max()))
 
 
-def _root_det(membrane: Membrane, region: str) -> float:
-    return float(np.sqrt(np.linalg.det(membrane.total(Field.TENSION, region))))
+def _travel_area(membrane: Membrane, region: str) -> float:
+    """Area in travel time squared, s^2, of a square metre of a region on the mean."""
+    tension = membrane.sampled(Field.TENSION, region)
+    density = membrane.sampled(Field.AREAL_DENSITY, region)
+    local = density / np.sqrt(np.linalg.det(tension))
+    return float(local @ membrane.samples[region].weights if local.size > 1 else local[0])

@@ -12,14 +12,12 @@ from membrane.errors import SolveError
 from membrane.modes.clusters import cluster_numbers, whole_clusters
 from membrane.modes.orient import oriented
 from membrane.modes.rigid import rigid_mode, rigid_shift
+from membrane.pitch import CENTS_PER_EIGENVALUE
 from membrane.records.arrays import Floats
 from membrane.records.modes import Modes
 from membrane.records.pencil import Pencil
 
 Eigensolver = Callable[[Any, Any, int, float], tuple[Floats, Floats]]
-
-CENTS_PER_UNIT = 600.0 / np.log(2.0)
-"""Cents per relative change of an eigenvalue: half of 1200 / ln 2."""
 
 LOOSEST = 1e-5
 """Relative distance from which two eigenvalues are never taken for one."""
@@ -37,10 +35,10 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
     accuracy : wanted, in cents; frequencies that it cannot tell apart are one cluster
     Raises SolveError where the count does not close.
     """
-    same = min(accuracy / CENTS_PER_UNIT, LOOSEST)
+    same = min(accuracy / CENTS_PER_EIGENVALUE, LOOSEST)
     size = pencil.M.shape[0]
     if size <= count:
-        raise SolveError(f"the mesh carries only {size} modes; ask for fewer than {size}")
+        raise SolveError(f"the mesh carries only {size} modes; ask for fewer than {size}.")
     ask = count + EXTRAS
     for _ in range(SOLVES):
         values, vectors = _lowest(pencil, min(ask, size), solver)
@@ -54,7 +52,7 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
         ask += max(missing, EXTRAS)
     raise SolveError(
         f"the count of modes did not close after {SOLVES} solves; "
-        "ask for another number of modes or another accuracy"
+        "ask for another number of modes or another accuracy."
     )
 
 

@@ -22,6 +22,12 @@ from membrane.triangle import EDGES, shapes
 SAME = 1e-9
 """Points of a line nearer than this share of their triangle's size are one point."""
 
+SPECK = 0.02
+"""Lines shorter than this share of the size of a domain, the root of the head's area over the
+mode's number, are dropped. Round a corner, where the mode is small and least well known, its
+error draws such specks; a mode hardly can, as each of its domains needs room for its
+frequency (G. Faber 1923, E. Krahn 1925, from memory)."""
+
 
 def trace(
     space: Space,
@@ -45,19 +51,25 @@ def trace(
     pieces = merged([wide, look_closer(space, vectors, divided, edges, signs, close)])
     points = _positions(space.mesh, pieces.triangle, pieces.reference)
     sizes = _sizes(space.mesh)[pieces.triangle]
+    specks = SPECK * np.sqrt(_area(space.mesh) / np.arange(1, vectors.shape[1] + 1))
     lines: list[list[Floats]] = [[] for _ in range(vectors.shape[1])]
     for chain in chains(pieces.segments, pieces.triangle.size):
         line = _cleaned(points[:, chain], sizes[chain])
-        # a fixed corner or a point where lines cross sheds specks smaller than the lattice
-        speck = sizes[chain].min() / divided.lattice.parts
-        if np.hypot(*np.diff(line)).sum() > speck:
-            lines[pieces.mode[chain[0]]].append(line)
+        mode = pieces.mode[chain[0]]
+        if np.hypot(*np.diff(line)).sum() > specks[mode]:
+            lines[mode].append(line)
     return [tuple(found) for found in lines]
 
 
 def _positions(mesh: Mesh, triangle: Ints, reference: Floats) -> Floats:
     phi, _ = shapes(reference, mesh.order)
     return np.asarray(np.einsum("din,in->dn", mesh.nodes[:, :, triangle], phi))
+
+
+def _area(mesh: Mesh) -> float:
+    """Of the straight triangles, square metres."""
+    (x0, x1, x2), (y0, y1, y2) = mesh.vertices[:, mesh.triangles]
+    return 0.5 * float(np.abs((x1 - x0) * (y2 - y0) - (x2 - x0) * (y1 - y0)).sum())
 
 
 def _sizes(mesh: Mesh) -> Floats:

@@ -29,12 +29,19 @@ class Cut:
     holes: Mapping[int, str]
 
 
-def cut(kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping[str, int]) -> Cut:
+def cut(
+    kernel: Kernel,
+    outline: int,
+    patches: Mapping[str, int],
+    holes: Mapping[str, int],
+    points: Sequence[tuple[float, float]] = (),
+) -> Cut:
     """Cut an outline's face by the faces of patches and holes.
 
+    points : places (x, y), metres, that become vertices of the mesh where they are on the head
     Raises OutlineError for shapes that do not fit together.
     """
-    head, *others = _fragments(kernel, [outline, *patches.values(), *holes.values()])
+    head, *others = _fragments(kernel, [outline, *patches.values(), *holes.values()], points)
     over = dict(zip(patches, others[: len(patches)], strict=True))
     away = dict(zip(holes, others[len(patches) :], strict=True))
     for name, cover in over.items():
@@ -48,7 +55,9 @@ def cut(kernel: Kernel, outline: int, patches: Mapping[str, int], holes: Mapping
     return Cut({face: tuple(n for n in over if face in over[n]) for face in left}, removed)
 
 
-def _fragments(kernel: Kernel, faces: Sequence[int]) -> list[set[int]]:
+def _fragments(
+    kernel: Kernel, faces: Sequence[int], points: Sequence[tuple[float, float]]
+) -> list[set[int]]:
     """For each face the faces that cover it after all are cut by each other."""
     areas = [kernel.area(face) for face in faces]
     if len(faces) > 1 and areas[0] < _SMALLEST:
@@ -56,7 +65,7 @@ def _fragments(kernel: Kernel, faces: Sequence[int]) -> list[set[int]]:
             f"The outline is too small to be cut by patches and holes: {1e6 * areas[0]:.3g} mm^2; "
             f"the geometry kernel needs {1e6 * _SMALLEST:.3g} mm^2."
         )
-    covers = kernel.fragment(faces)
+    covers = kernel.fragment(faces, points)
     _check_kept(kernel, areas, covers)
     return covers
 

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
+from dataclasses import replace
 
 from membrane.kernel import Kernel
 from membrane.outline.curves import curves
 from membrane.outline.cut import Cut, cut
-from membrane.outline.place import place
+from membrane.outline.place import Placed, place
+from membrane.outline.samples import samples
 from membrane.outline.soundness import check_slivers, check_whole
 from membrane.records.outline import HEAD, Outline, Region
 from membrane.records.study import Hole, Patch, Study
@@ -19,17 +21,34 @@ def draw(kernel: Kernel, study: Study) -> Outline:
     Raises OutlineError for shapes that do not fit together.
     """
     outline = place(kernel, study.outline)
-    patches, holes = _faces(kernel, study.patches), _faces(kernel, study.holes)
-    pieces = cut(kernel, outline.face, patches, holes)
+    patches, holes = _placed(kernel, study.patches), _placed(kernel, study.holes)
+    pieces = cut(kernel, outline.face, _faces(patches), _faces(holes), _kinks(study))
     named = curves(kernel, pieces, outline.edges)
     check_whole(kernel, named, pieces.patches)
     check_slivers(kernel, named, pieces.patches)
     kernel.keep_only(pieces.patches)
-    return Outline(_regions(kernel, pieces), named)
+    head = Outline(_regions(kernel, pieces), named, _notes(outline, patches, holes))
+    return replace(head, samples=samples(kernel, head)) if study.functions or study.terms else head
 
 
-def _faces(kernel: Kernel, shapes: Iterable[Patch | Hole]) -> dict[str, int]:
-    return {shape.name: place(kernel, shape.shape).face for shape in shapes}
+def _placed(kernel: Kernel, shapes: Iterable[Patch | Hole]) -> dict[str, Placed]:
+    return {shape.name: place(kernel, shape.shape) for shape in shapes}
+
+
+def _faces(shapes: Mapping[str, Placed]) -> dict[str, int]:
+    return {name: placed.face for name, placed in shapes.items()}
+
+
+def _notes(outline: Placed, *shapes: Mapping[str, Placed]) -> tuple[str, ...]:
+    """What the plugins said about the shapes they drew, each sentence once."""
+    every = [outline, *(placed for named in shapes for placed in named.values())]
+    return tuple(dict.fromkeys(note for placed in every for note in placed.notes))
+
+
+def _kinks(study: Study) -> tuple[tuple[float, float], ...]:
+    """Where a coefficient is not smooth, (x, y), metres, each place once."""
+    places = (place for f in study.functions for place in f.places_of_kinks.T)
+    return tuple(dict.fromkeys((float(x), float(y)) for x, y in places))
 
 
 def _regions(kernel: Kernel, pieces: Cut) -> tuple[Region, ...]:

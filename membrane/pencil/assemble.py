@@ -5,9 +5,11 @@ from __future__ import annotations
 from collections.abc import Iterator
 from functools import cache
 
+from membrane.pencil.coefficient import coefficient
 from membrane.pencil.forms import WEAK_FORMS
 from membrane.pencil.integrate import integrated
 from membrane.pencil.space import Discretisation, build_space
+from membrane.records.function import Function
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.pencil import Part, Pencil
@@ -35,7 +37,11 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
     free = discretisation.space.free
     for c in membrane.contributions:
         weak = WEAK_FORMS[c.field]
-        basis = on_regions(c.where) if weak.on == "regions" else on_edges(c.where)
-        yield weak.side, Part(c.key, c.scale, integrated(weak.integrand(c.value), basis, free))
+        on = on_regions if weak.on == "regions" else on_edges
+        basis = on(c.where, isinstance(c.value, Function))
+        yield (
+            weak.side,
+            Part(c.key, c.scale, integrated(weak.integrand(coefficient(c)), basis, free)),
+        )
     for own in membrane.own_forms:
         yield own.side, Part(own.key, own.scale, integrated(own.form, on_regions(own.where), free))

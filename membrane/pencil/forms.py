@@ -12,25 +12,26 @@ from typing import Any
 
 from skfem.helpers import dot, grad, mul
 
+from membrane.pencil.coefficient import Coefficient
 from membrane.records.membrane import Field
 
 Integrand = Callable[[Any, Any, Any], Any]
 
 
-def tension(T: Any) -> Integrand:
-    """T grad u . grad v, with a constant (2, 2) tensor T."""
+def tension(T: Coefficient) -> Integrand:
+    """T grad u . grad v, with a (2, 2) tensor T(x)."""
 
     def form(u: Any, v: Any, w: Any) -> Any:
-        return dot(mul(T, grad(u)), grad(v))
+        return dot(mul(T(w.x), grad(u)), grad(v))
 
     return form
 
 
-def product(c: Any) -> Integrand:
-    """c u v, with a constant number c."""
+def product(c: Coefficient) -> Integrand:
+    """c u v, with a number c(x)."""
 
     def form(u: Any, v: Any, w: Any) -> Any:
-        return c * u * v
+        return c(w.x) * u * v
 
     return form
 
@@ -41,12 +42,12 @@ class WeakForm:
 
     side : "stiffness" or "mass"
     on : "regions" or "edges"
-    integrand : makes the bilinear form from the field's value
+    integrand : makes the bilinear form from the coefficient
     """
 
     side: str
     on: str
-    integrand: Callable[[Any], Integrand]
+    integrand: Callable[[Coefficient], Integrand]
 
 
 WEAK_FORMS = {

@@ -28,25 +28,25 @@ class Discretisation:
     mapping: CurvedMapping
     dofs: Dofs
 
-    def on_regions(self, names: tuple[str, ...]) -> CellBasis:
-        """Basis on the triangles of some regions."""
+    def on_regions(self, names: tuple[str, ...], varying: bool = False) -> CellBasis:
+        """Basis on the triangles of some regions, for a constant or a varying coefficient."""
         return CellBasis(
             self.topology,
             reference_element(self.space.degree),
             self.mapping,
-            quadrature=triangle_rule(self._order),
+            quadrature=triangle_rule(self._order + self._more(varying)),
             elements=triangles_in(self.space.mesh, names),
             dofs=self.dofs,
             disable_doflocs=True,
         )
 
-    def on_edges(self, names: tuple[str, ...]) -> FacetBasis:
-        """Basis on the facets of some edges."""
+    def on_edges(self, names: tuple[str, ...], varying: bool = False) -> FacetBasis:
+        """Basis on the facets of some edges, for a constant or a varying coefficient."""
         return FacetBasis(
             self.topology,
             element(self.space.degree),
             self.mapping,
-            quadrature=line_rule(self._order),
+            quadrature=line_rule(self._order + self._more(varying)),
             facets=facets_on(self.topology, self.space.mesh, names),
             dofs=self.dofs,
             disable_doflocs=True,
@@ -56,6 +56,10 @@ class Discretisation:
     def _order(self) -> int:
         # exact for the mass on curved triangles; the stiffness there is rational
         return 2 * self.space.degree + 2 * (self.space.mesh.order - 1)
+
+    def _more(self, varying: bool) -> int:
+        # a varying coefficient counts as a polynomial of the elements' own degree
+        return self.space.degree if varying else 0
 
 
 def build_space(mesh: Mesh, degree: int, fixed_edges: tuple[str, ...]) -> Discretisation:

@@ -14,6 +14,7 @@ import numpy as np
 
 from membrane.errors import PluginError
 from membrane.plugins.options import plain, read_options
+from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Field, OwnForm
 from membrane.records.outline import Drawing, Outline
 from membrane.records.spectrum import Spectrum
@@ -130,6 +131,11 @@ def _check_part(part: Contribution | OwnForm, outline: Outline) -> None:
 
 
 def _check_value(part: Contribution) -> None:
+    if isinstance(part.value, Function):
+        has, wanted = part.value.tensor is not None, part.field is Field.TENSION
+        worded = "with" if has else "without"
+        _must(has == wanted, f"the value of {part.key} is a function {worded} a tensor")
+        return
     value = np.asarray(part.value, dtype=float)
     shapes = ((), (2, 2)) if part.field is Field.TENSION else ((),)
     _must(value.shape in shapes, f"the value of {part.key} has shape {value.shape}")

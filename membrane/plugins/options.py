@@ -6,7 +6,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import MISSING, Field, fields, is_dataclass
 from enum import Enum
 from functools import lru_cache
-from pathlib import PurePath
+from pathlib import Path, PurePath
 from types import UnionType
 from typing import Annotated, Any, TypeVar, Union, get_args, get_origin, get_type_hints
 
@@ -14,16 +14,20 @@ import numpy as np
 
 from membrane.errors import PluginError, Problem, StudyError
 from membrane.plugins.sentences import sentence
+from membrane.records.function import Function
 from membrane.units import Quantity
 from membrane.wording import nearest, shown
 
 T = TypeVar("T")
 
 
-def read_options(kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] = ()) -> T:
+def read_options(
+    kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] = (), base: Path | None = None
+) -> T:
     """An instance of the dataclass ``kind`` from a table of a study.
 
     beside : other keys of the table, which an unknown key may have been meant for
+    base : the folder that relative paths of files start from
 
     Unknown keys, missing keys and bad values are all reported in one StudyError, with
     paths relative to the table; so is a ValueError of the dataclass's own
@@ -38,7 +42,7 @@ def read_options(kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] =
     ]
     values: dict[str, Any] = {}
     for key in known.keys() & keys.keys():
-        problems += _read_into(values, key, known[key], keys[key])
+        problems += _read_into(values, key, known[key], keys[key], base or Path())
     if not problems:
         try:
             return kind(**values)
@@ -49,6 +53,8 @@ def read_options(kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] =
 
 def plain(options: Any) -> Any:
     """Options as plain data in the study file's own keys; what is None is left out."""
+    if isinstance(options, Function):
+        return plain(options.source)
     if is_dataclass(options):
         pairs = ((f.name, getattr(options, f.name)) for f in fields(options))
         return {name: plain(value) for name, value in pairs if value is not None}
@@ -74,11 +80,13 @@ def _unit(hint: Any) -> str:
     return quantity.unit if quantity else next(filter(None, inner), "")
 
 
-def _read_into(values: dict[str, Any], key: str, hint: Any, value: Any) -> list[Problem]:
+def _read_into(
+    values: dict[str, Any], key: str, hint: Any, value: Any, base: Path
+) -> list[Problem]:
     from pydantic import ValidationError
 
     try:
-        values[key] = _adapter(hint).validate_python(_own(value))
+        values[key] = _adapter(hint).validate_python(_own(value), context={"base": base})
     except ValidationError as failure:
         return [Problem(*sentence(key, error)) for error in failure.errors()]
     return []

@@ -30,7 +30,7 @@ _OWN = {
     "outline": (
         "membrane.geometries",
         "disc ellipse rectangle polygon regular_polygon sector stadium rounded_rectangle spline"
-        " fourier",
+        " fourier file",
     ),
     "term": ("membrane.terms", "tension areal_density bedding edge_stiffness edge_mass"),
     "eigensolver": ("membrane.eigensolvers", "shift_invert arpack_superlu dense"),

@@ -22,7 +22,8 @@ _EXPECTED = {
 
 def sentence(key: str, error: Mapping[str, Any]) -> tuple[str, str]:
     """Full path below ``key`` and one sentence, from an item of ``ValidationError.errors()``."""
-    return path(key, error["loc"]), _sentence(error)
+    inner = getattr(error.get("ctx", {}).get("error"), "key", "")
+    return path(key, (*error["loc"], inner) if inner else error["loc"]), _sentence(error)
 
 
 def path(key: str, inner: tuple[int | str, ...]) -> str:

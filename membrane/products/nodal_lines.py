@@ -1,4 +1,4 @@
-"""nodal_lines.vtu and nodal_lines.csv: where to strike, hold, mute or glue, point by point."""
+"""nodal_lines.vtu and nodal_lines.csv: where to hold, mute or glue, point by point."""
 
 from __future__ import annotations
 

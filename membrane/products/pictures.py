@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Any, Literal
 
 import numpy as np
 
+from membrane.products.caution import CAUTION
 from membrane.products.sheet import Sheet, lay_out
 from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
@@ -30,7 +31,10 @@ MOST_PARTS = 32
 LETTER = 0.6
 """Width of a letter of average text, as a share of its size; on the safe side."""
 
-LEGEND = "Black lines stay at rest; red and blue move against each other."
+LEGEND = (
+    "Black lines stay at rest; red and blue move against each other, each mode to its own scale. "
+    "Grey: borders of patches, free edges."
+)
 
 
 @dataclass(frozen=True)
@@ -152,15 +156,17 @@ def _write_titles(axes: Axes, spectrum: Spectrum, sheet: Sheet) -> None:
     room = 72.0 * sheet.inches[0] * (1.0 - 2.0 * sheet.margin / sheet.width)
     font = min(12.0, room / (LETTER * len(title)))
     axes.text(sheet.margin, sheet.head_line, title, fontsize=font, va="center", color=INK)
-    axes.text(sheet.margin, sheet.foot_line, LEGEND, fontsize=8, va="center", color=PENCIL)
+    foot = f"{LEGEND}\n{CAUTION}"
+    axes.text(sheet.margin, sheet.foot_line, foot, fontsize=6, va="center", color=PENCIL)
 
 
 def _title(partial: Partial) -> tuple[str, str]:
-    """The (m,n) or the number with the frequency; below, the ratio and the note."""
+    """The number, the (m,n) of a round head and the frequency; below, ratio and note."""
     nodal = partial.nodal
     named = nodal.diameters is not None
-    name = f"({nodal.diameters},{nodal.circles})" if named else f"{partial.number}"
-    return f"{name}  {partial.frequency:.1f} Hz", "    ".join(_pitch(partial))
+    name = f"  ({nodal.diameters},{nodal.circles})" if named else ""
+    first = f"{partial.number}:{name}  {partial.frequency:.1f} Hz"
+    return first, "    ".join(_pitch(partial))
 
 
 def _pitch(partial: Partial) -> Iterator[str]:

@@ -11,6 +11,7 @@ from platform import python_version
 from typing import Any
 
 from membrane.errors import OutputError
+from membrane.products.caution import CAUTION
 from membrane.products.rows import row
 from membrane.records.spectrum import Spectrum
 from membrane.schema import SUMMARY
@@ -26,12 +27,14 @@ class Options:
 
 def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
     """Write summary.json as the schema shipped with this version says."""
-    text = json.dumps(contents(spectrum), indent=2, allow_nan=False, ensure_ascii=False)
+    files = sorted({FILE, *(path.name for path in folder.iterdir())})
+    found = {**contents(spectrum), "files": files}
+    text = json.dumps(found, indent=2, allow_nan=False, ensure_ascii=False)
     (folder / FILE).write_text(text + "\n", encoding="utf-8")
 
 
 def contents(spectrum: Spectrum) -> dict[str, Any]:
-    """What summary.json holds, as plain data."""
+    """What summary.json holds, as plain data, but for the names of the files."""
     study = spectrum.study
     return {
         "schema": SUMMARY,
@@ -40,6 +43,8 @@ def contents(spectrum: Spectrum) -> dict[str, Any]:
         "mesh": {**_facts(spectrum.mesh_facts), "regions": list(_regions(spectrum))},
         "timings": dict(spectrum.timings),
         "complete": bool(spectrum.complete),
+        "notes": list(spectrum.notes),
+        "caution": CAUTION,
         "modes": [row(partial) for partial in spectrum.partials],
     }
 

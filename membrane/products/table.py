@@ -8,6 +8,7 @@ from math import ceil
 from pathlib import Path
 from typing import TYPE_CHECKING
 
+from membrane.products.caution import CAUTION
 from membrane.records.spectrum import Partial, Spectrum
 
 if TYPE_CHECKING:
@@ -17,11 +18,9 @@ FILE = "table.txt"
 WIDTH = 80
 LEAST_SHOWN = 0.001
 """Cents; a thousandth of what an ear can tell."""
+LOWEST_HEARD, HIGHEST_HEARD = 16.0, 20_000.0
+"""Hz, common practice, no source."""
 SAME_PITCH = {"first": "┐", "inner": "│", "last": "┘", "alone": ""}
-CAUTION = (
-    "Heads under tension burst and rims fail: these are estimates that do not replace the "
-    "maker's ratings, local codes or licensed practice."
-)
 NOT_COVERED = (
     "Not in these numbers: the air, unevenness of the head beyond what the study says, and "
     "a rim that gives more than the study says."
@@ -127,18 +126,29 @@ def _footer(spectrum: Spectrum) -> list[str]:
     reading = [pitch] if unison is None else [f"Ratios are to mode {unison}; {pitch}"]
     if any(_marks(partials)):
         reading.append("Modes joined by ┐ and ┘ share one frequency.")
+    wanted = spectrum.study.modes
+    if wanted.up_to is None and len(partials) > wanted.count:
+        reading.append(f"More than {wanted.count}, since equal frequencies are never cut apart.")
     return [
         " ".join(reading),
+        *_out_of_hearing(partials),
         " ".join([_completeness(spectrum), BRACKETS[partials[-1].bracket], *_shortfall(spectrum)]),
+        *spectrum.notes,
         NOT_COVERED,
         CAUTION,
     ]
 
 
+def _out_of_hearing(partials: tuple[Partial, ...]) -> list[str]:
+    """A word where a forgotten "mm" or "k" may have moved everything out of hearing."""
+    heard = any(LOWEST_HEARD <= partial.frequency <= HIGHEST_HEARD for partial in partials)
+    return [] if heard else ["No partial lies within hearing: are the study's units as meant?"]
+
+
 def _completeness(spectrum: Spectrum) -> str:
     if spectrum.complete:
-        return "Complete: a count proves that no mode below the last is missing."
-    return "Not proven complete: the count did not close, so a mode may be missing."
+        return "Complete: a count shows that the solver missed no mode below the last."
+    return "Not shown to be complete: the count did not close, so a mode may be missing."
 
 
 def _shortfall(spectrum: Spectrum) -> list[str]:

@@ -2,14 +2,17 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from dataclasses import field as dataclass_field
 from enum import StrEnum
 from typing import Any
 
 import numpy as np
 
 from membrane.records.arrays import Floats
+from membrane.records.function import Function
+from membrane.records.outline import Samples
 
 
 class Field(StrEnum):
@@ -29,15 +32,22 @@ class Contribution:
     key : the study key that scales it, such as "patches.paste.added_density"
     field : the field that it adds to
     where : names of the regions, or of the edges, that it lives on
-    scale : the key's number, SI
-    value : what the number multiplies: 1, or a dimensionless (2, 2) tensor
+    scale : the key's number, SI; 1 where the key gives a function of place
+    value : what the number multiplies: 1, a dimensionless (2, 2) tensor, or the function
     """
 
     key: str
     field: Field
     where: tuple[str, ...]
     scale: float
-    value: float | Floats = 1.0
+    value: float | Floats | Function = 1.0
+
+    def at(self, points: Floats) -> Floats:
+        """Its share of the field, SI, at ``points`` (2, n): (n,), or (n, 2, 2) of a tensor."""
+        if isinstance(self.value, Function):
+            return self.scale * np.moveaxis(self.value(*points), -1, 0)
+        value = np.asarray(self.value, dtype=float)
+        return np.broadcast_to(self.scale * value, (points.shape[1], *value.shape))
 
 
 @dataclass(frozen=True)
@@ -59,16 +69,49 @@ class OwnForm:
 
 @dataclass(frozen=True)
 class Membrane:
-    """All contributions, and the names of the edges that are held at zero."""
+    """All contributions, and the names of the edges that are held at zero.
+
+    samples : name of a region or an edge -> where its varying fields are looked at
+    """
 
     contributions: tuple[Contribution, ...]
     fixed_edges: tuple[str, ...]
     own_forms: tuple[OwnForm, ...] = ()
+    samples: Mapping[str, Samples] = dataclass_field(default_factory=dict)
+
+    def parts(self, field: Field, where: str) -> tuple[Contribution, ...]:
+        """The contributions to a field on one region or edge."""
+        return tuple(c for c in self.contributions if c.field is field and where in c.where)
+
+    def varies(self, field: Field, where: str) -> bool:
+        """Whether a field is a function of place on one region or edge."""
+        return any(isinstance(c.value, Function) for c in self.parts(field, where))
+
+    def at(self, field: Field, where: str, points: Floats) -> Floats:
+        """A field on one region or edge, SI, at ``points`` (2, n): (n,), or (n, 2, 2)."""
+        parts = [c.at(points) for c in self.parts(field, where)]
+        return sum(parts[1:], parts[0]) if parts else np.zeros(points.shape[1])
+
+    def sampled(self, field: Field, where: str) -> Floats:
+        """A field on one region or edge, SI, at its samples: (n,), or (n, 2, 2).
+
+        n is 1 where the field is constant.
+        """
+        varies = self.varies(field, where)
+        return self.at(field, where, self.samples[where].points if varies else np.zeros((2, 1)))
 
     def total(self, field: Field, where: str) -> Any:
-        """The constant value of a field on one region or edge, SI."""
-        parts = (c for c in self.contributions if c.field is field and where in c.where)
-        return sum((c.scale * np.asarray(c.value, dtype=float) for c in parts), np.zeros(()))
+        """The value of a field on one region or edge, SI; its mean where it varies."""
+        values = self.sampled(field, where)
+        weights = self.samples[where].weights if self.varies(field, where) else np.ones(1)
+        return np.tensordot(weights, values, 1)
+
+    @property
+    def kinks(self) -> Floats:
+        """(2, n), metres: where a field is not smooth."""
+        values = (c.value for c in self.contributions)
+        places = [v.places_of_kinks for v in values if isinstance(v, Function)]
+        return np.unique(np.hstack([np.empty((2, 0)), *places]), axis=1)
 
     @property
     def moves_rigidly(self) -> bool:

@@ -6,6 +6,8 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
+from membrane.records.arrays import Floats
+
 HEAD = "head"
 
 
@@ -16,10 +18,12 @@ class Drawing:
     surface : the pygmsh surface that the shape covers
     edges : edge name -> the pygmsh curves that make it; a name with no curves
         (an empty sequence) takes the whole boundary
+    notes : sentences for the user on how the shape was come by
     """
 
     surface: Any
     edges: Mapping[str, Sequence[Any]] = field(default_factory=dict)
+    notes: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -53,11 +57,29 @@ class Curve:
 
 
 @dataclass(frozen=True)
+class Samples:
+    """Points spread over a region or along an edge.
+
+    points : (2, n), metres
+    weights : (n,), their shares of the area or the length, 1 together
+    """
+
+    points: Floats
+    weights: Floats
+
+
+@dataclass(frozen=True)
 class Outline:
-    """The cut outline as it stands in the open kernel session."""
+    """The cut outline as it stands in the open kernel session.
+
+    notes : sentences for the user on how its shapes were come by
+    samples : name of a region or an edge -> its samples; empty where no coefficient can vary
+    """
 
     regions: tuple[Region, ...]
     curves: tuple[Curve, ...]
+    notes: tuple[str, ...] = ()
+    samples: Mapping[str, Samples] = field(default_factory=dict)
 
     @property
     def area(self) -> float:

@@ -52,13 +52,14 @@ class Partial:
     nodal: NodalPattern
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, repr=False)
 class Spectrum:
     """The answer to a study.
 
     complete : True only if it is proven that no mode below the last is missing
     timings : seconds by stage
-    mesh_facts : triangles, unknowns, degree, area and the like, by name
+    mesh_facts : triangles, unknowns, degree and the like, by name
+    notes : sentences for the user on how the outline was come by
     """
 
     study: Study
@@ -67,8 +68,14 @@ class Spectrum:
     complete: bool
     mesh_facts: Mapping[str, float]
     timings: Mapping[str, float]
+    notes: tuple[str, ...] = ()
 
     @property
     def frequencies(self) -> Floats:
         """(n,), Hz."""
         return self.modes.frequencies
+
+    def __repr__(self) -> str:
+        first, last = self.frequencies[[0, -1]]
+        name = self.study.title or "a study"
+        return f"<Spectrum of {name}: {len(self.partials)} modes, {first:.6g} to {last:.6g} Hz>"

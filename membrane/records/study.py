@@ -10,6 +10,7 @@ from typing import Any
 import numpy as np
 
 from membrane.records.arrays import Floats
+from membrane.records.function import Amount, Function
 
 
 class Support(StrEnum):
@@ -41,28 +42,28 @@ class TensionPart:
     """One number of a tension and the unit tensor that it scales.
 
     key : the number's own key under ``tension`` ("" for a plain number)
-    magnitude : N/m
+    magnitude : N/m, over the head or the patch
     direction : (2, 2) symmetric, dimensionless
     """
 
     key: str
-    magnitude: float
+    magnitude: Amount
     direction: Floats
 
 
 @dataclass(frozen=True)
 class Tension:
-    """A constant tension tensor, T = sum of magnitude x direction, N/m."""
+    """A tension tensor, T = sum of magnitude x direction, N/m."""
 
     parts: tuple[TensionPart, ...]
 
     @classmethod
-    def uniform(cls, tension: float) -> Tension:
+    def uniform(cls, tension: Amount) -> Tension:
         """The same tension in all directions, N/m."""
         return cls((TensionPart("", tension, np.eye(2)),))
 
     @classmethod
-    def woven(cls, along: float, across: float, angle: float) -> Tension:
+    def woven(cls, along: Amount, across: Amount, angle: float) -> Tension:
         """A woven head: ``along`` at ``angle`` (rad) from +x, ``across`` square to it."""
         warp = np.array([np.cos(angle), np.sin(angle)])
         weft = np.array([-np.sin(angle), np.cos(angle)])
@@ -74,7 +75,7 @@ class Tension:
         )
 
     @classmethod
-    def full(cls, xx: float, xy: float, yy: float) -> Tension:
+    def full(cls, xx: Amount, xy: Amount, yy: Amount) -> Tension:
         """The tensor's own components, N/m."""
         return cls(
             (
@@ -85,8 +86,10 @@ class Tension:
         )
 
     def tensor(self) -> Floats:
-        """The (2, 2) tension tensor, N/m."""
-        return np.asarray(sum(p.magnitude * p.direction for p in self.parts), dtype=float)
+        """The (2, 2) tension tensor, N/m, without the parts that vary over the head."""
+        pairs = ((part.magnitude, part.direction) for part in self.parts)
+        constant = (n * direction for n, direction in pairs if not isinstance(n, Function))
+        return np.asarray(sum(constant, np.zeros((2, 2))), dtype=float)
 
 
 @dataclass(frozen=True)
@@ -99,10 +102,10 @@ class Patch:
 
     name: str
     shape: Shape
-    areal_density: float | None = None
-    added_density: float | None = None
+    areal_density: Amount | None = None
+    added_density: Amount | None = None
     tension: Tension | None = None
-    bedding: float | None = None
+    bedding: Amount | None = None
 
 
 @dataclass(frozen=True)
@@ -110,8 +113,8 @@ class Edge:
     """A named edge: its support, stiffness (N/m^2) and mass (kg/m)."""
 
     support: Support = Support.FIXED
-    stiffness: float = 0.0
-    mass: float = 0.0
+    stiffness: Amount = 0.0
+    mass: Amount = 0.0
 
 
 @dataclass(frozen=True)
@@ -126,9 +129,9 @@ class Hole:
 class Head:
     """The head itself: areal density (kg/m^2), tension (N/m), bedding (N/m^3)."""
 
-    areal_density: float
+    areal_density: Amount
     tension: Tension
-    bedding: float = 0.0
+    bedding: Amount = 0.0
 
 
 @dataclass(frozen=True)
@@ -179,6 +182,22 @@ class Study:
     products: ProductsWanted = ProductsWanted()
     terms: Mapping[str, Any] = field(default_factory=dict)
     source: Mapping[str, Any] = field(default_factory=dict)
+
+    @property
+    def functions(self) -> tuple[Function, ...]:
+        """Every coefficient that varies over the head, about the outline's own origin."""
+        layers: tuple[Head | Patch, ...] = (self.head, *self.patches)
+        tensions = (layer.tension.parts for layer in layers if layer.tension is not None)
+        amounts = (
+            *(part.magnitude for parts in tensions for part in parts),
+            *(layer.areal_density for layer in layers),
+            *(layer.bedding for layer in layers),
+            *(patch.added_density for patch in self.patches),
+            *(edge.stiffness for edge in self.edges.values()),
+            *(edge.mass for edge in self.edges.values()),
+        )
+        found = (amount for amount in amounts if isinstance(amount, Function))
+        return tuple(function.moved(self.outline.at) for function in found)
 
     def edge(self, name: str) -> Edge:
         """The edge of that name; an edge not mentioned is fixed."""

@@ -8,7 +8,7 @@ from typing import Any
 
 from membrane.records.study import Edge, Support
 from membrane.study.table import Table
-from membrane.units import LineDensity, PositiveLineStiffness
+from membrane.units import PositiveVaryingLineStiffness, VaryingLineDensity
 from membrane.wording import nearest, shown
 
 EDGE_KEYS = ("support", "stiffness", "mass")
@@ -17,8 +17,8 @@ EDGE_KEYS = ("support", "stiffness", "mass")
 @dataclass(frozen=True)
 class _EdgeKeys:
     support: Support = Support.FIXED
-    stiffness: PositiveLineStiffness | None = None
-    mass: LineDensity | None = None
+    stiffness: PositiveVaryingLineStiffness | None = None
+    mass: VaryingLineDensity | None = None
 
 
 def read_edge(table: Table, given: Mapping[str, Any]) -> Edge | None:

@@ -12,7 +12,7 @@ from membrane.study.edges import EDGE_KEYS, read_edge
 from membrane.study.shapes import read_shape
 from membrane.study.table import Table
 from membrane.study.tension import KEY, read_tension
-from membrane.units import ArealDensity, Bedding, PositiveArealDensity
+from membrane.units import PositiveVaryingArealDensity, VaryingArealDensity, VaryingBedding
 from membrane.wording import shown
 
 _NAME = re.compile(r"\w[\w-]*")
@@ -22,8 +22,8 @@ _PATCH_KEYS = ("name", KEY, *_DENSITIES)
 
 @dataclass(frozen=True)
 class _HeadKeys:
-    areal_density: PositiveArealDensity
-    bedding: Bedding = 0.0
+    areal_density: PositiveVaryingArealDensity
+    bedding: VaryingBedding = 0.0
 
 
 @dataclass(frozen=True)
@@ -33,9 +33,9 @@ class _Name:
 
 @dataclass(frozen=True)
 class _PatchKeys:
-    areal_density: PositiveArealDensity | None = None
-    added_density: ArealDensity | None = None
-    bedding: Bedding | None = None
+    areal_density: PositiveVaryingArealDensity | None = None
+    added_density: VaryingArealDensity | None = None
+    bedding: VaryingBedding | None = None
 
     def __post_init__(self) -> None:
         if self.areal_density is not None and self.added_density is not None:

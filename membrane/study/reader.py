@@ -9,6 +9,7 @@ from typing import Any
 
 from membrane.errors import StudyError
 from membrane.records.study import Study
+from membrane.study.paths import located
 from membrane.study.problems import Problems
 from membrane.study.sections import read_sections
 from membrane.study.table import Table
@@ -26,10 +27,10 @@ def read_study(path: Path | str) -> Study:
 def study_from(keys: Mapping[str, Any], base: Path | str = ".") -> Study:
     """The study in plain data with the study file's keys.
 
-    base : the folder that the paths of outline scripts start from
+    base : the folder that the paths of scripts and CSV files start from
     Raises StudyError with all problems.
     """
-    root = Table(keys, "", Problems())
+    root = Table(located(keys, Path(base)), "", Problems())
     study = read_sections(root, Path(base))
     root.problems.raise_any()
     assert study is not None, "a study without a problem is read whole"

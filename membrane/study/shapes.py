@@ -9,13 +9,11 @@ from typing import Any
 from membrane import plugins
 from membrane.errors import PluginError
 from membrane.records.study import Shape
-from membrane.study.problems import NOT_YET
 from membrane.study.table import Table
 from membrane.units import Angle, Point
 from membrane.wording import shown
 
 _OWN_KEYS = ("shape", "script", "at", "rotate")
-_LATER = ("file",)
 
 
 @dataclass(frozen=True)
@@ -39,7 +37,7 @@ class _Where:
 def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | None:
     """The shape of a table whose keys ``besides`` belong to something else.
 
-    base : the folder that a script's path starts from
+    base : the folder that the paths of scripts and files start from
     """
     which = table.read(_Which, table.only(("shape", "script")))
     where = table.read(_Where, table.only(("at", "rotate")))
@@ -49,7 +47,7 @@ def read_shape(table: Table, besides: tuple[str, ...], base: Path) -> Shape | No
     others = (*_OWN_KEYS, *besides)
     try:
         module = plugins.load("outline", name)
-        options = table.read(module.Options, table.without(*others), others)
+        options = table.read(module.Options, table.without(*others), others, base)
     except PluginError as error:
         table.refuse(_key(which), str(error))
         return None
@@ -72,11 +70,7 @@ def _plugin(table: Table, which: _Which, base: Path) -> str | None:
     """Registered name, or whole path of the script."""
     if which.script is not None:
         return _script(table, which.script, base)
-    name = which.shape or ""
-    if name in _LATER and name not in plugins.names("outline"):
-        table.refuse("shape", f"the shape {shown(name)} is {NOT_YET}.")
-        return None
-    return name
+    return which.shape or ""
 
 
 def _script(table: Table, script: str, base: Path) -> str | None:

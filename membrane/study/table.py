@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
+from pathlib import Path
 from typing import Any, TypeVar
 
 from membrane.errors import StudyError
@@ -30,13 +31,20 @@ class Table:
         """Note that something is wrong with a key of this table."""
         self.problems.add(joined(self.path, key), sentence)
 
-    def read(self, kind: type[T], keys: Mapping[str, Any], beside: Sequence[str] = ()) -> T | None:
+    def read(
+        self,
+        kind: type[T],
+        keys: Mapping[str, Any],
+        beside: Sequence[str] = (),
+        base: Path | None = None,
+    ) -> T | None:
         """A dataclass from some of the keys; None where one of them is wrong.
 
         beside : the other keys that the table may have
+        base : the folder that relative paths of files start from
         """
         try:
-            found = read_options(kind, keys, beside)
+            found = read_options(kind, keys, beside, base)
         except StudyError as error:
             self.problems.add_all(self.path, error.problems)
             return None

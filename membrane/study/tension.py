@@ -5,16 +5,18 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
+from membrane.records.function import Function
 from membrane.records.study import Tension
 from membrane.study.table import Table
-from membrane.units import Angle, LineTension, PositiveLineTension
+from membrane.units import Angle, PositiveVaryingLineTension, VaryingLineTension
+from membrane.varying import is_varying
 
 KEY = "tension"
 
 
 @dataclass(frozen=True)
 class _Uniform:
-    tension: PositiveLineTension
+    tension: PositiveVaryingLineTension
 
     def record(self) -> Tension:
         return Tension.uniform(self.tension)
@@ -22,8 +24,8 @@ class _Uniform:
 
 @dataclass(frozen=True)
 class _Woven:
-    along: PositiveLineTension
-    across: PositiveLineTension
+    along: PositiveVaryingLineTension
+    across: PositiveVaryingLineTension
     angle: Angle = 0.0
 
     def record(self) -> Tension:
@@ -32,12 +34,14 @@ class _Woven:
 
 @dataclass(frozen=True)
 class _Full:
-    xx: PositiveLineTension
-    xy: LineTension
-    yy: PositiveLineTension
+    xx: PositiveVaryingLineTension
+    xy: VaryingLineTension
+    yy: PositiveVaryingLineTension
 
     def __post_init__(self) -> None:
-        if not self.xx * self.yy > self.xy**2:
+        numbers = [n for n in (self.xx, self.xy, self.yy) if not isinstance(n, Function)]
+        # what varies is looked at all over the head, once there is one
+        if len(numbers) == 3 and not numbers[0] * numbers[2] > numbers[1] ** 2:
             raise ValueError(
                 "a membrane must be under tension in every direction: "
                 "xx times yy must be greater than xy squared."
@@ -50,7 +54,7 @@ class _Full:
 def read_tension(table: Table) -> Tension | None:
     """The tension at the key ``tension`` of the head or of a patch."""
     value = table.keys[KEY]
-    if not isinstance(value, Mapping) or "formula" in value:
+    if not isinstance(value, Mapping) or is_varying(value):
         uniform = table.read(_Uniform, {KEY: value})
         return None if uniform is None else uniform.record()
     inner = table.table(KEY)

@@ -17,7 +17,7 @@ from membrane.wording import shown
 SMALLEST_ACCURACY = 1e-7
 """Cents; what rounding leaves uncertain in an eigenvalue is about this."""
 
-DEGREES = (3, 12)
+DEGREES = (4, 12)
 """Lowest degree whose error a solve two degrees lower can tell, and the highest there is."""
 
 _DEFAULT = ModesWanted()

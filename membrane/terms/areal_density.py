@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from membrane.records.membrane import Contribution, Field
 from membrane.records.outline import Outline, Region
 from membrane.records.study import Patch, Study
+from membrane.terms.amounts import contribution
 from membrane.terms.layers import layer, ruled_regions
 
 
@@ -21,12 +22,13 @@ def contribute(study: Study, options: Options, outline: Outline) -> Iterator[Con
     ruled = ruled_regions(study, outline, _replaces)
     for key, regions in ruled.items():
         density = layer(study, key).areal_density
-        yield Contribution(f"{key}.areal_density", Field.AREAL_DENSITY, regions, density)
+        name = f"{key}.areal_density"
+        yield contribution(study, name, Field.AREAL_DENSITY, regions, density)
     for patch in study.patches:
         if patch.added_density is not None:
             key = f"patches.{patch.name}.added_density"
             regions = tuple(r.name for r in outline.regions if _adds(study, patch, r))
-            yield Contribution(key, Field.AREAL_DENSITY, regions, patch.added_density)
+            yield contribution(study, key, Field.AREAL_DENSITY, regions, patch.added_density)
 
 
 def _replaces(patch: Patch) -> bool:

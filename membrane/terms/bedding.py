@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from membrane.records.membrane import Contribution, Field
 from membrane.records.outline import Outline
 from membrane.records.study import Study
+from membrane.terms.amounts import contribution, is_there
 from membrane.terms.layers import layer, ruled_regions
 
 
@@ -21,5 +22,5 @@ def contribute(study: Study, options: Options, outline: Outline) -> Iterator[Con
     ruled = ruled_regions(study, outline, lambda patch: patch.bedding is not None)
     for key, regions in ruled.items():
         bedding = layer(study, key).bedding
-        if bedding > 0.0:
-            yield Contribution(f"{key}.bedding", Field.BEDDING, regions, bedding)
+        if is_there(bedding):
+            yield contribution(study, f"{key}.bedding", Field.BEDDING, regions, bedding)

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from membrane.records.membrane import Contribution, Field
 from membrane.records.outline import Outline
 from membrane.records.study import Study
+from membrane.terms.amounts import contribution, is_there
 
 
 @dataclass(frozen=True)
@@ -19,5 +20,5 @@ def contribute(study: Study, options: Options, outline: Outline) -> Iterator[Con
     """One contribution for each edge that carries mass."""
     for name in outline.edges:
         mass = study.edge(name).mass
-        if mass > 0.0:
-            yield Contribution(f"edges.{name}.mass", Field.EDGE_MASS, (name,), mass)
+        if is_there(mass):
+            yield contribution(study, f"edges.{name}.mass", Field.EDGE_MASS, (name,), mass)

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from membrane.records.membrane import Contribution, Field
 from membrane.records.outline import Outline
 from membrane.records.study import Study, Support
+from membrane.terms.amounts import contribution
 
 
 @dataclass(frozen=True)
@@ -21,4 +22,4 @@ def contribute(study: Study, options: Options, outline: Outline) -> Iterator[Con
         edge = study.edge(name)
         if edge.support is Support.ELASTIC:
             key = f"edges.{name}.stiffness"
-            yield Contribution(key, Field.EDGE_STIFFNESS, (name,), edge.stiffness)
+            yield contribution(study, key, Field.EDGE_STIFFNESS, (name,), edge.stiffness)

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from membrane.records.membrane import Contribution, Field
 from membrane.records.outline import Outline
 from membrane.records.study import Study
+from membrane.terms.amounts import contribution
 from membrane.terms.layers import layer, ruled_regions
 
 
@@ -22,4 +23,5 @@ def contribute(study: Study, options: Options, outline: Outline) -> Iterator[Con
     for key, regions in ruled.items():
         for part in layer(study, key).tension.parts:
             name = f"{key}.tension.{part.key}".removesuffix(".")
-            yield Contribution(name, Field.TENSION, regions, part.magnitude, part.direction)
+            amount, tensor = part.magnitude, part.direction
+            yield contribution(study, name, Field.TENSION, regions, amount, tensor)

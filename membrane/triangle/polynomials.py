@@ -11,7 +11,7 @@ from membrane.records.arrays import Floats
 def orthonormal(points: Floats, degree: int) -> tuple[Floats, Floats]:
     """All orthonormal polynomials up to a degree.
 
-    M. Dubiner, J. Sci. Comput. 6 (1991) 345: products of a Legendre polynomial,
+    M. Dubiner, J. Sci. Comput. 6 (1991) 345 (from memory): products of a Legendre polynomial,
     homogenised so that nothing divides by zero at the top vertex, and a Jacobi polynomial.
 
     points : (2, n) on the reference triangle

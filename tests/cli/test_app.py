@@ -162,7 +162,7 @@ def test_traceback_when_asked(study, tmp_path, monkeypatch, first):
 def test_ctrl_c_ends_quietly(study, tmp_path, monkeypatch):
     failing(monkeypatch, KeyboardInterrupt())
     done = invoke("run", study, "--out", tmp_path / "out")
-    assert (done.exit_code, done.output) == (130, "")
+    assert (done.exit_code, done.output) == (130, "Stopped; nothing was written.\n")
 
 
 def test_check_says_what_would_be_solved(study):
@@ -180,7 +180,44 @@ def test_check_says_what_would_be_solved(study):
         "edge port    elastic, 20000 N/m^2, with 0.1 kg/m",
         "modes        all up to 800 Hz, to 0.01 cent, by shift_invert",
         "products     the summary only",
+        "area         0.0995257 m^2",
+        "mesh         about 2166 unknowns of degree 8 at the first try",
     ]
+
+
+def test_check_says_how_a_coefficient_varies(tmp_path):
+    (tmp_path / "points.csv").write_text("-1,-1,1\n1,-1,2\n0,1,3\n")
+    file = tmp_path / "study.toml"
+    file.write_text(
+        '[outline]\nshape = "disc"\ndiameter = 1\n'
+        '[[patches]]\nname = "pad"\nshape = "disc"\ndiameter = 0.1\n'
+        'bedding = {csv = "points.csv", outside = "nearest"}\n'
+        '[head]\nareal_density = {formula = "1 + r", unit = "g/m^2"}\n'
+        'tension = {along = {formula = "2 + x"}, across = 1}\n'
+        '[edges.rim]\nsupport = "free"\nmass = {formula = "1 + x"}\n'
+    )
+    done = invoke("check", file)
+    assert done.exit_code == 0
+    assert done.stdout.splitlines()[1:4] == [
+        f"patch pad  disc: diameter 0.1 m; bedding by the csv {tmp_path}/points.csv in N/m^3",
+        "head       areal density by the formula 1 + r in g/m^2, "
+        "tension along by the formula 2 + x in N/m, across 1 N/m, angle 0 rad",
+        "edge rim   free, with a mass by the formula 1 + x in kg/m",
+    ]
+
+
+def test_check_says_how_a_drawing_was_taken(tmp_path):
+    path = '<polyline points="0 0 9 0 9 9 0 9 0 .0005"/>'
+    page = 'xmlns="http://www.w3.org/2000/svg" width="10mm" viewBox="0 0 10 10"'
+    (tmp_path / "head.svg").write_text(f"<svg {page}>{path}</svg>")
+    file = tmp_path / "study.toml"
+    file.write_text(
+        '[outline]\nshape = "file"\npath = "head.svg"\n'
+        "[head]\nareal_density = 0.26\ntension = 3000\n"
+    )
+    done = CliRunner().invoke(app, ["check", str(file)])
+    assert done.exit_code == 0
+    assert "note      head.svg: closed 1 gap in the contour, the widest 0.0005 mm" in done.stdout
 
 
 def test_plugins_are_listed(monkeypatch):

@@ -18,6 +18,7 @@ from membrane.errors import MeshError
 from membrane.kernel import Kernel
 from membrane.kernel.sizes import Bend
 from membrane.outline import draw
+from membrane.records.outline import Curve, Outline, Region
 from tests.outline.studies import box, disc, shape, study
 
 LOADED = study(
@@ -264,3 +265,21 @@ def test_an_interrupt_while_sizes_are_asked_for_is_not_lost(monkeypatch):
         monkeypatch.setattr("membrane.kernel.sizes.SizeMap.thinned", lambda sizes: sizes)
         with pytest.raises(KeyboardInterrupt):
             kernel.triangulate(outline, {"head": 0.5})
+
+
+def test_points_become_vertices_of_the_mesh_wherever_they_lie_on_a_face():
+    """Inside, on the border between two faces, and on the rim; another lies off them."""
+    places = [(0.25, 0.125), (0.5, 0.0), (0.0, 1.0)]
+    with Kernel.session() as kernel:
+        head, inner = (kernel.geometry.add_disk([0.0, 0.0], r)._id for r in (1.0, 0.5))
+        covers = kernel.fragment([head, inner], [*places, (3.0, 0.0)])
+        assert [len(cover) for cover in covers] == [2, 1]
+        kernel.keep_only(covers[0])
+        tags = sorted({tag for face in covers[0] for tag in kernel.border(face)})
+        curves = tuple(Curve(tag, None, kernel.length(tag)) for tag in tags)
+        outline = Outline((Region("head", (), tuple(covers[0]), np.pi),), curves)
+        raw = kernel.triangulate(outline, {"head": 0.3})
+    for place in places:
+        assert np.hypot(*(raw.vertices.T - place).T).min() < 1e-12
+    assert np.hypot(*raw.vertices).max() < 1.0 + 1e-12
+    assert abs(raw.areas.sum() / np.pi - 1.0) < 0.05

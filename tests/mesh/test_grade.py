@@ -5,8 +5,10 @@ from collections import Counter
 import numpy as np
 import pytest
 
+from membrane import run, study_from
+from membrane.mesh import grade
 from membrane.mesh.corners import Corner, corners
-from membrane.mesh.grade import RATIO, graded, layers
+from membrane.mesh.grade import RATIO, depth, graded, layers
 from membrane.mesh.resolution import region_sizes
 from tests import zoo
 
@@ -15,19 +17,38 @@ def meshes(keys, tolerance=1e-6):
     with zoo.drawn(keys) as (kernel, study, outline, membrane):
         raw = kernel.triangulate(outline, region_sizes(outline, membrane, study.modes, 3.0))
         singular = corners(kernel, outline, membrane, raw)
-        return raw, singular, graded(kernel, raw, singular, tolerance, 1)
+        return raw, singular, graded(kernel, raw, singular, tolerance)
 
 
 def test_layers_meet_the_tolerance():
     for exponent in (0.5, 2 / 3, 2.0):
-        depth = layers(exponent, 1e-7, 1)
+        depth = layers(exponent, 1e-7)
         assert RATIO ** (2 * exponent * depth) <= 1e-7 < RATIO ** (2 * exponent * (depth - 1))
 
 
-def test_higher_degrees_need_fewer_layers():
-    """64 times less energy is missed at exponent 1/2 by degree 8: worth two layers of 1/8."""
-    assert [layers(0.5, 1e-7, p) for p in (1, 8)] == [16, 12]
-    assert layers(3.0, 1e-7, 8) == 0
+def test_a_whole_exponent_gets_the_layers_of_its_logarithm():
+    assert depth(2.0, 0.01, 1e-9) == layers(2.0, 1e-9)
+
+
+@pytest.mark.parametrize("share", [1e-4, 0.05])
+def test_the_straighter_and_smaller_a_corner_the_fewer_its_layers(share):
+    cuts = [depth(1.0 + off, share, 1e-9) for off in (0.4, 0.1, 1e-2, 1e-3, 1e-5)]
+    assert cuts == sorted(cuts, reverse=True)
+    assert cuts[0] > cuts[-1] + 1
+    assert depth(2 / 3, share, 1e-9) <= depth(2 / 3, 2 * share, 1e-9) <= layers(2 / 3, 1e-9)
+
+
+@pytest.mark.slow
+def test_a_fine_polygon_costs_little_and_keeps_its_accuracy(monkeypatch):
+    """Against as many layers as rounding allows, on the same mesh."""
+    wanted = {"outline": {"shape": "regular_polygon", "sides": 20, "radius": 1.0}}
+    study = study_from({**wanted, "head": zoo.HEAD, "modes": {"count": 6}})
+    ours = run(study)
+    monkeypatch.setattr(grade, "depth", lambda exponent, share, tolerance, degree: 10)
+    exact = run(study)
+    error = np.abs(ours.modes.eigenvalues / exact.modes.eigenvalues - 1)
+    assert error.max() < 1e-9
+    assert ours.mesh_facts["triangles"] < 0.6 * exact.mesh_facts["triangles"]
 
 
 @pytest.mark.parametrize("keys", [zoo.L_SHAPE, zoo.SQUARE])
@@ -39,8 +60,11 @@ def test_area_is_kept(keys):
 
 def test_nearest_vertices_are_as_close_as_asked():
     before, (corner,), after = meshes(zoo.L_SHAPE)
-    depth = layers(corner.exponent, 1e-6, 1)
-    for raw, factor in ((before, 1.0), (after, RATIO**depth)):
+    touching = before.vertices[:, before.triangles[:, (before.triangles == corner.vertex).any(0)]]
+    longest = max(np.hypot(*(touching - np.roll(touching, 1, axis=1))).ravel())
+    cuts = depth(corner.exponent, longest**2 / 3.0, 1e-6)
+    assert 2 <= cuts <= layers(corner.exponent, 1e-6)
+    for raw, factor in ((before, 1.0), (after, RATIO**cuts)):
         touching = raw.triangles[:, (raw.triangles == corner.vertex).any(axis=0)]
         ends = np.setdiff1d(touching, [corner.vertex])
         nearest = np.linalg.norm(raw.vertices[:, ends], axis=0).min()
@@ -67,7 +91,7 @@ def test_two_corners_of_one_triangle():
     with zoo.drawn(zoo.SQUARE) as (kernel, _study, outline, _membrane):
         raw = kernel.triangulate(outline, {"head": 2.0})
         every = tuple(Corner(v, 0.5) for v in range(raw.vertices.shape[1]))
-        after = graded(kernel, raw, every, 1e-4, 1)
+        after = graded(kernel, raw, every, 1e-4)
     assert after.areas.min() > 0
     assert abs(after.areas.sum() - 1.0) < 1e-12
 

@@ -50,8 +50,8 @@ def test_a_cut_that_loses_area_is_an_error(monkeypatch):
         faces = [kernel.geometry.add_disk([0.0, 0.0], r)._id for r in (1.0, 0.5)]
         whole = kernel.fragment
 
-        def losing(given):
-            head, patch = whole(given)
+        def losing(given, points):
+            head, patch = whole(given, points)
             return [head, head - patch]
 
         monkeypatch.setattr(kernel, "fragment", losing)

@@ -31,13 +31,20 @@ def test_loose_copies_move_with_the_face():
         (lambda disk, point: Drawing(point, {"rim": ()}), "not a surface"),
         (lambda disk, point: Drawing([disk], {"rim": ()}), "not a surface"),
         (lambda disk, point: Drawing(disk, {"rim": [disk]}), "not a curve"),
+        (lambda disk, point: disk, "must return a Drawing"),
+        (lambda disk, point: disk.no_such_thing, r"cannot be drawn \(AttributeError"),
+        (lambda disk, point: Drawing(disk, {"rmi": ()}), "edges rmi but its function edges names"),
     ],
 )
 def test_a_script_that_hands_back_the_wrong_thing(monkeypatch, handed_back, sentence):
     def build(geometry, options):
         return handed_back(geometry.add_disk([0.0, 0.0], 1.0), geometry.add_point([0.0, 0.0]))
 
-    monkeypatch.setattr(place_module, "load", lambda kind, name: SimpleNamespace(build=build))
+    monkeypatch.setattr(
+        place_module,
+        "load",
+        lambda kind, name: SimpleNamespace(build=build, edges=lambda options: ("rim",)),
+    )
     with Kernel.session() as kernel, pytest.raises(OutlineError, match=sentence):
         place(kernel, shape("disc", diameter=1.0))
 
@@ -62,7 +69,11 @@ KEYHOLE = 5 * np.pi / 6 + np.sqrt(3) / 4 + 2.0 - np.sqrt(3) / 2
 
 @pytest.mark.parametrize(("build", "area"), [(keyhole, KEYHOLE), (ring, 0.75 * np.pi)])
 def test_a_script_may_use_booleans(monkeypatch, build, area):
-    monkeypatch.setattr(place_module, "load", lambda kind, name: SimpleNamespace(build=build))
+    monkeypatch.setattr(
+        place_module,
+        "load",
+        lambda kind, name: SimpleNamespace(build=build, edges=lambda options: ("rim",)),
+    )
     with Kernel.session() as kernel:
         outline = draw(kernel, study(Shape("own", None)))
         raw = kernel.triangulate(outline, {"head": 0.1})

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from pathlib import Path
 from types import SimpleNamespace
 from typing import Any
 
@@ -14,6 +15,7 @@ from membrane.coefficients import STANDARD_TERMS
 from membrane.errors import PluginError
 from membrane.kernel import Kernel
 from membrane.plugins.contracts import check_eigensolver, check_outline, check_product, check_term
+from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Field, OwnForm
 from membrane.records.outline import Drawing
 from membrane.units import Length
@@ -27,6 +29,7 @@ OUTLINES = {
     "regular_polygon": {"sides": 7, "radius": 0.2},
     "sector": {"radius": 0.2, "angle": 4.0},
     "stadium": {"straight": 0.2, "width": 0.1},
+    "file": {"path": Path(__file__).parents[1] / "drawings" / "files" / "frame_drum.dxf"},
     "rounded_rectangle": {"width": 0.2, "height": 0.3, "radius": 0.05},
     "spline": {"points": ((0.0, 0.0), (1.0, 0.0), (0.0, 1.0))},
     "fourier": {"mean_radius": 0.2, "harmonics": ((3, 0.01, -0.02),)},
@@ -170,6 +173,11 @@ def part(**changed: Any) -> Contribution:
         ([part(value=np.ones(2))], "has shape (2,)"),
         ([part(field=Field.BEDDING, value=np.eye(2))], "has shape (2, 2)"),
         ([part(value=np.inf)], "value of terms.x is not finite"),
+        ([part(value=Function({}, max))], "is a function without a tensor"),
+        (
+            [part(field=Field.BEDDING, value=Function({}, max).times(np.eye(2)))],
+            "is a function with a tensor",
+        ),
         ([OwnForm("terms.x", "damping", ("head",), 1.0, max)], "has side 'damping'"),
     ],
 )

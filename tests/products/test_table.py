@@ -56,8 +56,8 @@ def test_a_rigid_mode_has_no_pitch(free: Spectrum) -> None:
 @pytest.mark.parametrize(
     ("change", "words"),
     [
-        ({}, "no mode below the last is missing"),
-        ({"complete": False}, "Not proven complete"),
+        ({}, "solver missed no mode below"),
+        ({"complete": False}, "Not shown to be complete"),
         ({"mesh_facts": {"accuracy_met": False}}, "accuracy asked for was not reached"),
     ],
 )
@@ -72,6 +72,12 @@ def test_it_says_what_is_left_out_and_warns(patched: Spectrum) -> None:
     assert "the air" in text
     assert "Heads under tension burst and rims fail" in text
     assert "licensed practice" in text
+
+
+def test_it_says_how_the_outline_was_come_by(patched: Spectrum) -> None:
+    note = "head.dxf: closed 1 gap in the contour."
+    assert note in table_text(replace(patched, notes=(note,)))
+    assert "head.dxf" not in table_text(patched)
 
 
 def test_a_bracket_is_never_understated(patched: Spectrum) -> None:

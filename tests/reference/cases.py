@@ -97,5 +97,9 @@ CASES: dict[str, dict[str, Any]] = {
     "regular_8gon_fixed": regular(8),
     "square_hole_fixed_c_r0p2": square_hole("fixed"),
     "square_hole_free_c_r0p2": square_hole("free"),
+    "disc_rho_r2": case(DISC, {"areal_density": {"formula": "r**2"}, "tension": 1.0}),
+    "rect_linear_density_a1": case(
+        RECTANGLE, {"areal_density": {"formula": "1 + x"}, "tension": 1.0}
+    ),
     "stadium_a1_r1_fixed": case({"shape": "stadium", "straight": 2.0, "width": 2.0}),
 }

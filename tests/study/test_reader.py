@@ -261,3 +261,50 @@ def test_an_outline_script_beside_the_study(tmp_path):
     assert study.edges["east"].support is Support.FREE
     assert study.edges["north"].support is Support.FIXED
     assert_same(study_from(study.source, base="/nowhere"), study)
+
+
+FIELDS = """
+def density(x, y):
+    return 1 + x
+"""
+
+
+@pytest.fixture
+def varying(tmp_path: Path) -> Study:
+    """A study with a formula, a CSV and functions of the outline's script and another."""
+    (tmp_path / "square.py").write_text(SCRIPT + FIELDS)
+    (tmp_path / "more.py").write_text(FIELDS)
+    (tmp_path / "points.csv").write_text("0,0,1\n1,0,2\n0,1,3\n")
+    file = tmp_path / "study.toml"
+    file.write_text(
+        '[outline]\nscript = "square.py"\na = "1 cm"\n'
+        '[head]\nareal_density = {function = "density", unit = "g/m^2"}\n'
+        'tension = {along = {formula = "2 + r", unit = "kN/m"}, across = 1}\n'
+        'bedding = {csv = "points.csv", outside = "nearest", kinks = [["1 cm", 0]]}\n'
+        '[edges.east]\nsupport = "elastic"\n'
+        'stiffness = {function = "density", script = "more.py"}\n'
+    )
+    return read_study(file)
+
+
+def test_coefficients_that_vary(varying):
+    x, y = np.array([0.0, 0.25]), np.array([0.0, 0.25])
+    along, across = varying.head.tension.parts
+    assert varying.head.areal_density(x, y).tolist() == [1e-3, 1.25e-3]
+    assert np.allclose(along.magnitude(x, y), [2000.0, 1000.0 * (2 + 0.125**0.5)])
+    assert across.magnitude == 1.0
+    assert np.allclose(varying.head.bedding(x, y), [1.0, 1.75])
+    assert varying.edges["east"].stiffness(x, y).tolist() == [1.0, 1.25]
+    assert along.magnitude.kinks == ((0.0, 0.0),)
+    assert varying.head.bedding.kinks == ((0.01, 0.0),)
+    assert len(varying.functions) == 4
+
+
+def test_their_source_reads_as_the_same_study(varying):
+    source = json.loads(json.dumps(varying.source))
+    assert source["head"]["areal_density"]["unit"] == "g/m^2"
+    assert Path(source["head"]["bedding"]["csv"]).is_absolute()
+    assert source["edges"]["east"]["stiffness"]["script"].endswith("more.py")
+    again = study_from(source, base="/nowhere")
+    assert_same(again, varying)
+    assert again.source == varying.source

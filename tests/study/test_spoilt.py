@@ -29,8 +29,16 @@ scalars = (
 words = st.text(max_size=6) | st.sampled_from(
     ["name", "shape", "script", "at", "rim", "write", "formula", "support", "mass", "angle", "xx"]
 )
+varying = st.fixed_dictionaries(
+    {"formula": st.text("xyr019.+*/^(), ", max_size=9) | st.sampled_from(["r", "1+x", "theta**2"])},
+    optional={
+        "unit": st.sampled_from(["kg/m^2", "N/m", "", "m"]),
+        "kinks": st.lists(st.lists(st.floats(), max_size=2), max_size=2),
+        "csv": st.text(max_size=3),
+    },
+)
 values = st.recursive(
-    scalars,
+    scalars | varying,
     lambda inner: st.lists(inner, max_size=3) | st.dictionaries(words, inner, max_size=3),
     max_leaves=4,
 )

@@ -1,0 +1,58 @@
+"""Vertices at which a varying coefficient has a kink or a cusp, and how strong it is."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from membrane.mesh.corner import Corner
+from membrane.records.arrays import Floats
+from membrane.records.function import Function
+from membrane.records.membrane import Contribution, Field, Membrane
+from membrane.records.outline import Outline
+from membrane.records.raw_mesh import RawMesh
+
+OF_DENSITY = 2.0
+"""Exponent at a kink of the density, the bedding or an edge: u has r^2 where they only jump."""
+
+OF_TENSION = 1.0
+"""Exponent at a kink of the tension that does not jump, such as a root of r."""
+
+OF_JUMPING_TENSION = 0.5
+"""Exponent where the tension depends on the direction: the weakest that there can be."""
+
+NEAR = 1e-6
+"""How far from its vertex a kink may be, as a share of the outline's size."""
+
+DIRECTIONS = np.linspace(-np.pi, np.pi, 24, endpoint=False) + 0.1
+
+
+def kinks(outline: Outline, membrane: Membrane, raw: RawMesh) -> tuple[Corner, ...]:
+    """The vertices at kinks; a kink that is off the head has none."""
+    size = np.sqrt(outline.area)
+    found = []
+    for place in membrane.kinks.T:
+        distance = np.hypot(*(raw.vertices - place[:, None]))
+        vertex = int(np.argmin(distance))
+        if distance[vertex] < NEAR * size:
+            found.append(Corner(vertex, _exponent(membrane, place, size)))
+    return tuple(found)
+
+
+def _exponent(membrane: Membrane, place: Floats, size: float) -> float:
+    of_tension = [c for c in membrane.contributions if _has_kink(c, place)]
+    if not of_tension:
+        return OF_DENSITY
+    around = place[:, None] + NEAR * size * np.array([np.cos(DIRECTIONS), np.sin(DIRECTIONS)])
+    jumps = any(np.ptp(_numbers(c, around)) > 0.01 * _numbers(c, around).max() for c in of_tension)
+    return OF_JUMPING_TENSION if jumps else OF_TENSION
+
+
+def _has_kink(c: Contribution, place: Floats) -> bool:
+    if c.field is not Field.TENSION or not isinstance(c.value, Function):
+        return False
+    return bool((c.value.places_of_kinks == place[:, None]).all(axis=0).any())
+
+
+def _numbers(c: Contribution, places: Floats) -> Floats:
+    assert isinstance(c.value, Function)
+    return c.value.numbers(*places)
