@@ -1,4 +1,4 @@
-"""The error of a solve, estimated from a second one two degrees lower on the same mesh."""
+"""The error of a solve, estimated from a second one of a lower degree on the same mesh."""
 
 from __future__ import annotations
 

@@ -58,3 +58,11 @@ def test_the_lower_degree_is_as_exact_as_was_asked():
     assert np.abs(apart).max() < 0.001
     for partial, frequency in zip(coarse.partials, fine.frequencies, strict=True):
         assert partial.low <= frequency <= partial.high
+
+
+@pytest.mark.slow
+def test_two_hundred_dots_are_solved_as_exactly_as_asked():
+    spectrum = run(study_from(dots(14)))
+    assert spectrum.complete
+    assert spectrum.mesh_facts["accuracy_met"]
+    assert spectrum.mesh_facts["unknowns"] < 120_000
