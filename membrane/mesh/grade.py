@@ -46,7 +46,7 @@ MEASURED = 8
 STRAIGHT = 1e-7
 """How near to a whole number an exponent is taken as whole."""
 
-FIRST = 0.1
+FIRST = 0.2
 """Bound on what a mode's first singular term leaves there, in the units of ``depth``."""
 
 NEXT = 1e-5
@@ -74,10 +74,11 @@ def depth(exponent: float, share: float, tolerance: float, degree: int = MEASURE
     Where the exponent is near a whole number k, as at the many corners of a fine polygon,
     r^exponent is r^k but for a part in proportion to the difference: the energy that smooth
     elements miss goes like its square. Measured at degree 8 on polygons of up to 48 sides
-    and on the L shape, an uncut corner left at most 0.03 off^2 share^exponent.
+    and on the L shape, an uncut corner left at most 0.03 off^2 share^exponent; at slits with
+    the exponents 1/2 and 1/4 the layers that follow from it left less than 1e-9 and 1e-8.
     """
     tolerance *= (degree / MEASURED) ** (4 * exponent)
-    off = abs(exponent - round(exponent))
+    off = abs(exponent - max(round(exponent), 1))
     if off < STRAIGHT:
         return layers(exponent, tolerance)
     missed = FIRST * off**2 * min(share, 1.0) ** min(exponent, 1.0)

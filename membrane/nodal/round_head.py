@@ -74,7 +74,8 @@ def _ring(mesh: Mesh, edges: Mapping[str, Edge]) -> _Ring | None:
         return None
     rim = {name for name, r in radii.items() if r.max() > (1.0 - ROUND) * outer}
     inner = max((float(r.mean()) for name, r in radii.items() if name not in rim), default=0.0)
-    if len({edges[name] for name in rim}) > 1 or _goes_on_within(mesh, centre, inner):
+    first, *others = (edges[name] for name in rim)
+    if any(edge != first for edge in others) or _goes_on_within(mesh, centre, inner):
         return None
     held = all(edges[name].support is not Support.FREE for name in rim)
     return _Ring(centre, inner, outer, held)
