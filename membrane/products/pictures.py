@@ -48,7 +48,7 @@ class Options:
 
     format: Literal["png", "svg", "pdf"] = "png"
     colour_map: str = "RdBu_r"
-    dpi: int = 120
+    dpi: int = 100
 
 
 def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
