@@ -9,6 +9,7 @@ from membrane.bounds.gap import proven_limit, widest_gap
 from membrane.bounds.geometry import stretches
 from membrane.bounds.goerisch import flux_form, lower_bounds
 from membrane.bounds.head import Head, head_of
+from membrane.bounds.local_fluxes import Sources
 from membrane.bounds.pieces import pieces
 from membrane.bounds.provable import unproven
 from membrane.bounds.rims import rims
@@ -85,6 +86,7 @@ class _Bounds:
 
     def _low(self, degree: int) -> Floats:
         gamma = SHIFT * self.limit
-        fluxes = best_fluxes(self.head, self.space, self.vectors, degree, gamma)
+        sources = Sources(self.space, self.vectors, self.high, gamma)
+        fluxes = best_fluxes(self.head, sources, degree)
         c = flux_form(self.head, self.space, self.vectors, fluxes, gamma, self.pieces, self.rims)
         return lower_bounds(self.forms, c, self.limit, gamma)

@@ -55,7 +55,9 @@ def _products(degree: int, points: bytes, weights: bytes) -> Floats:
     (first, second), _ = flux_shapes(x, degree)
     i, j = np.triu_indices(first.shape[0])
     mixed = first[i] * second[j] + second[i] * first[j]
-    return np.stack([(w * product).T for product in (first[i] * first[j], mixed, second[i] * second[j])])
+    return np.stack(
+        [(w * product).T for product in (first[i] * first[j], mixed, second[i] * second[j])]
+    )
 
 
 def spreads(piece: Piece, degree: int) -> Floats:
@@ -82,6 +84,15 @@ def load_products(degree: int, of_functions: int) -> Floats:
     points, weights = collapsed_rule(degree - 1 + of_functions)
     q, _ = orthonormal(points, degree - 1)
     return np.asarray((q * weights) @ shapes(points, of_functions)[0].T)
+
+
+@cache
+def driving_products(degree: int, of_functions: int) -> Floats:
+    """(i, j): integrals of the fluxes times the slopes of the functions' shapes, likewise."""
+    points, weights = collapsed_rule(degree + of_functions - 1)
+    values, _ = flux_shapes(points, degree)
+    _, slopes = shapes(points, of_functions)
+    return np.asarray(sum((values[k] * weights) @ slopes[k].T for k in range(2)))
 
 
 def spring_matrices(rim: Rim, degree: int) -> Floats:
