@@ -57,13 +57,16 @@ def local_fluxes(head: Head, sources: Sources, degree: int) -> Iterator[LocalFlu
     for whole in pieces(head, 2 * degree, extra=0):
         for piece in whole.parts(10 * degree**2):
             some = piece.triangles
-            system = _system(head, piece, sources.gamma, springs[some], degree)
-            right = _right(head, piece, sources, sprung[some], degree)
-            found = np.linalg.solve(system, right)[:, : degree * (degree + 2)]
+            spread = spreads(piece, degree)
+            system = _system(head, piece, sources.gamma, spread, springs[some], degree)
+            right = _right(head, piece, sources, spread, sprung[some], degree)
+            found = np.asarray(np.linalg.solve(system, right)[:, : degree * (degree + 2)])
             yield LocalFluxes(some, found[:, :, 3 * degree :], found[:, :, : 3 * degree])
 
 
-def _system(head: Head, piece: Piece, gamma: float, springs: Floats, degree: int) -> Floats:
+def _system(
+    head: Head, piece: Piece, gamma: float, spread: Floats, springs: Floats, degree: int
+) -> Floats:
     """(m, i + j, i + j): fluxes first, of which 3k across the sides, then p."""
     divergence = divergence_matrix(degree)
     inner, fluxes = divergence.shape
@@ -73,11 +76,13 @@ def _system(head: Head, piece: Piece, gamma: float, springs: Floats, degree: int
     system[:, : 3 * degree, : 3 * degree] += springs
     system[:, fluxes:, :fluxes] = divergence
     system[:, :fluxes, fluxes:] = divergence.T
-    system[:, fluxes:, fluxes:] = -k * spreads(piece, degree)
+    system[:, fluxes:, fluxes:] = -k * spread
     return system
 
 
-def _right(head: Head, piece: Piece, sources: Sources, sprung: Bools, degree: int) -> Floats:
+def _right(
+    head: Head, piece: Piece, sources: Sources, spread: Floats, sprung: Bools, degree: int
+) -> Floats:
     """(m, i + j, 3k + n): a unit of each multiplier, then what each function drives."""
     some, sides, fluxes = piece.triangles, 3 * degree, degree * (degree + 2)
     functions = sources.vectors[sources.space.element_dofs[:, some]]
@@ -92,7 +97,7 @@ def _right(head: Head, piece: Piece, sources: Sources, sprung: Bools, degree: in
     right = np.zeros((some.size, fluxes + loads.shape[1], sides + c.size))
     right[:, :sides, :sides] = np.eye(sides)
     right[:, :fluxes, sides:] = c * slopes
-    right[:, fluxes:, sides:] = -missing * (spreads(piece, degree) @ loads)
+    right[:, fluxes:, sides:] = -missing * (spread @ loads)
     right[:, :, sides:] *= head.turning[some, None, None]
     return right
 
