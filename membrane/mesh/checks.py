@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 import numpy as np
 
 from membrane.errors import MeshError
+from membrane.mesh.corner import Fan
 from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
@@ -13,15 +16,19 @@ from membrane.triangle import lattice, shapes
 FLATTEST = 0.02
 """Least jacobian allowed, relative to the triangle's own mean."""
 
+ROUNDING = 1e-12
+"""Rounding of a jacobian at the corner of a fan, where there is nothing left of it."""
+
 AREA = 1e-5
 """Largest relative error allowed in the area of a region."""
 
 
-def check_mesh(mesh: Mesh, outline: Outline) -> None:
+def check_mesh(mesh: Mesh, outline: Outline, fans: Sequence[Fan] = ()) -> None:
     """Raise MeshError where a triangle folds, an area is wrong or a tag is missing."""
     jacobian = jacobians(mesh)
-    mean = jacobian.mean(axis=0)
-    if np.any(jacobian.min(axis=0) < FLATTEST * np.abs(mean)):
+    pinch = _pinch(mesh, fans)
+    mean = jacobian.mean(axis=0) / pinch.mean(axis=0)
+    if np.any((jacobian - FLATTEST * np.abs(mean) * pinch).min(axis=0) < -ROUNDING * mean):
         raise MeshError("a curved triangle folds over")
     if np.any(mesh.region < 0):
         raise MeshError("a triangle belongs to no region")
@@ -47,6 +54,18 @@ def jacobians(mesh: Mesh) -> Floats:
     """
     _, slopes = shapes(lattice(2 * mesh.order).points, mesh.order)
     return _oriented(mesh, slopes)
+
+
+def _pinch(mesh: Mesh, fans: Sequence[Fan]) -> Floats:
+    """How the jacobian of a fan falls to nothing at its corner, at the points of ``jacobians``."""
+    x, y = lattice(2 * mesh.order).points
+    away = 1 - np.array([1 - x - y, x, y])
+    pinch = np.ones((x.size, mesh.size))
+    for fan in fans:
+        at = (mesh.vertices == fan.place[:, None]).all(axis=0)[mesh.triangles]
+        corner, triangle = np.nonzero(at)
+        pinch[:, triangle] = away[corner].T ** (2 * fan.power - 2)
+    return pinch
 
 
 def _oriented(mesh: Mesh, slopes: Floats) -> Floats:

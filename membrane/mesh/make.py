@@ -65,8 +65,8 @@ def _attempt(
     bend = COARSE if resolution.degree == LOWEST_DEGREE else USUAL
     raw = kernel.triangulate(outline, sizes, bend, along)
     found = corners(kernel, outline, membrane, raw)
-    raw = graded(kernel, raw, found, resolution.tolerance, resolution.degree)
+    raw, fans = graded(kernel, raw, found, resolution.tolerance, resolution.degree)
     raw = opened(raw, [curve.tag for curve in outline.curves if curve.lips])
-    mesh = curved(kernel, outline, raw, resolution.degree)
-    check_mesh(mesh, outline)
+    mesh = curved(kernel, outline, raw, resolution.degree, fans)
+    check_mesh(mesh, outline, fans)
     return mesh

@@ -7,7 +7,8 @@ import pytest
 
 from membrane import run, study_from
 from membrane.mesh import grade
-from membrane.mesh.corners import Corner, corners
+from membrane.mesh.corner import Corner
+from membrane.mesh.corners import corners
 from membrane.mesh.grade import SMALLEST, WIDEST, depth, graded, layers, ratio
 from membrane.mesh.resolution import region_sizes
 from tests import zoo
