@@ -6,7 +6,7 @@ import argparse
 import subprocess
 import sys
 
-SECTIONS = ("eigen",)
+SECTIONS = ("accuracy", "eigen")
 
 
 def main() -> None:

@@ -20,10 +20,11 @@ QUICK = 3
 """How many of the sizes a quick run measures."""
 
 
-def measure(quick: bool) -> list[Row]:
+def measure(quick: bool) -> dict[str, list[Row]]:
     """One row for each number of modes and size."""
     chosen = slice(QUICK if quick else None)
-    return [_row(count, phase) for count in COUNTS for phase in PHASES[count][chosen]]
+    rows = [_row(count, phase) for count in COUNTS for phase in PHASES[count][chosen]]
+    return {"eigen stage": rows}
 
 
 def _row(count: int, phase: float) -> Row:

@@ -11,6 +11,8 @@ from membrane.mesh import Resolution, make_mesh
 from membrane.modes import extract
 from membrane.outline import draw
 from membrane.pencil import assemble
+from membrane.pipeline import run as run_study
+from membrane.records.arrays import Floats
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
@@ -48,3 +50,18 @@ def modes(pencil: Pencil, count: int) -> Modes:
     found = extract(pencil, count, shift_invert.solve, FINE)
     assert found.complete
     return found
+
+
+def solve(keys: dict[str, Any], count: int, resolution: Resolution) -> Floats:
+    """The lowest eigenvalues of a study, from its outline to the closed count."""
+    pencil = assembled(keys, count, resolution)
+    return modes(pencil, count).eigenvalues[:count]
+
+
+def run(keys: dict[str, Any], count: int, cents: float) -> Floats:
+    """The lowest eigenvalues by the command's own choices for a wanted accuracy.
+
+    With its check by a second solve and its nodal lines, which nobody else computes here.
+    """
+    wanted = {"count": count, "accuracy": cents}
+    return run_study(study_from({**keys, "modes": wanted})).modes.eigenvalues[:count]

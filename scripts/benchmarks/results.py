@@ -5,7 +5,7 @@ from __future__ import annotations
 import json
 import os
 import platform
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from datetime import date
 from importlib.metadata import version
 from pathlib import Path
@@ -22,10 +22,10 @@ def kept() -> dict[str, Any]:
     return json.loads(FILE.read_text()) if FILE.exists() else {}
 
 
-def keep(section: str, rows: Sequence[Row]) -> None:
+def keep(section: str, tables: Mapping[str, Sequence[Row]]) -> None:
     """Replace a section's results."""
     entry = {"date": str(date.today()), "machine": _machine(), "versions": _versions()}
-    every = {**kept(), section: {**entry, "rows": list(rows)}}
+    every = {**kept(), section: {**entry, "tables": dict(tables)}}
     FILE.write_text(json.dumps(every, indent=1) + "\n")
 
 

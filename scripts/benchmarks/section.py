@@ -1,4 +1,4 @@
-"""Runs one section in a process of its own, prints its table and keeps it."""
+"""Runs one section in a process of its own, prints its tables and keeps them."""
 
 from __future__ import annotations
 
@@ -15,10 +15,11 @@ def main() -> None:
     name, quick = sys.argv[1], "--quick" in sys.argv[2:]
     measure = import_module(f"scripts.benchmarks.{name}").measure
     with threadpool_limits(limits=1):
-        rows = measure(quick)
-    print(f"\n{name}\n\n{table_text(rows)}", flush=True)
+        tables = measure(quick)
+    for title, rows in tables.items():
+        print(f"\n{title}\n\n{table_text(rows)}", flush=True)
     if not quick:
-        results.keep(name, rows)
+        results.keep(name, tables)
 
 
 if __name__ == "__main__":
