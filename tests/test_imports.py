@@ -30,7 +30,7 @@ OWNERS = {
 
 STAGES = (
     *("study", "outline", "coefficients", "mesh", "pencil", "modes", "accuracy", "nodal"),
-    *("partials", "products", "terms"),
+    *("partials", "products", "terms", "reduced"),
 )
 """Rooms that know nothing of each other; only the pipeline knows their order."""
 
