@@ -156,13 +156,14 @@ def _solve_on(
         fine = assemble(membrane, mesh, resolution.degree)
         coarse = assemble(membrane, mesh, resolution.coarser_degree)
     with clock.stage("modes"):
-        count = _count(fine, wanted)
+        count = wanted_count(fine, wanted)
         modes = extract(fine, count, solver, wanted.accuracy)
         check = coarser_modes(coarse, modes)
     return _Solution(membrane, mesh, fine, modes, estimate(modes, check, wanted.accuracy))
 
 
-def _count(pencil: Pencil, wanted: ModesWanted) -> int:
+def wanted_count(pencil: Pencil, wanted: ModesWanted) -> int:
+    """How many modes are wanted. Raises SolveError where none lies below ``up_to``."""
     if wanted.up_to is None:
         return wanted.count
     count = count_up_to(pencil, wanted.up_to)
