@@ -50,8 +50,9 @@ last: it lists the files."""
 
 @dataclass(frozen=True)
 class _Solution:
-    """One mesh with its modes and their estimated error; notes on the outline."""
+    """A membrane on one mesh with its modes and their estimated error; notes on the outline."""
 
+    membrane: Membrane
     mesh: Mesh
     pencil: Pencil
     modes: Modes
@@ -91,6 +92,7 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
     rows = partials(solution.modes, solution.error.cents, patterns, study.modes)
     return Spectrum(
         study=study,
+        membrane=solution.membrane,
         modes=solution.modes,
         partials=rows,
         complete=solution.modes.complete,
@@ -154,13 +156,14 @@ def _solve_on(
         fine = assemble(membrane, mesh, resolution.degree)
         coarse = assemble(membrane, mesh, resolution.coarser_degree)
     with clock.stage("modes"):
-        count = _count(fine, wanted)
+        count = wanted_count(fine, wanted)
         modes = extract(fine, count, solver, wanted.accuracy)
         check = coarser_modes(coarse, modes)
-    return _Solution(mesh, fine, modes, estimate(modes, check, wanted.accuracy))
+    return _Solution(membrane, mesh, fine, modes, estimate(modes, check, wanted.accuracy))
 
 
-def _count(pencil: Pencil, wanted: ModesWanted) -> int:
+def wanted_count(pencil: Pencil, wanted: ModesWanted) -> int:
+    """How many modes are wanted. Raises SolveError where none lies below ``up_to``."""
     if wanted.up_to is None:
         return wanted.count
     count = count_up_to(pencil, wanted.up_to)

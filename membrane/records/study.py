@@ -11,6 +11,7 @@ import numpy as np
 
 from membrane.records.arrays import Floats
 from membrane.records.function import Amount, Function
+from membrane.records.sweep import Sweep
 
 
 class Support(StrEnum):
@@ -223,6 +224,7 @@ class Study:
 
     terms : frozen options of each further physical term, by plugin name
     source : the same study as plain data in the study file's own keys, SI numbers
+    sweep : which of its numbers take further values
     """
 
     title: str
@@ -238,6 +240,7 @@ class Study:
     products: ProductsWanted = ProductsWanted()
     terms: Mapping[str, Any] = field(default_factory=dict)
     source: Mapping[str, Any] = field(default_factory=dict)
+    sweep: Sweep | None = None
 
     @property
     def functions(self) -> tuple[Function, ...]:
