@@ -9,7 +9,7 @@ from membrane.mesh.corner import Term
 RATIO = 0.4
 """Size of each layer to the one around it."""
 
-POWERS = range(1, 6)
+POWERS = range(1, 5)
 """Powers by which the triangles at a corner may be drawn in."""
 
 DEEPEST = 40
