@@ -68,7 +68,7 @@ class _Basis:
     @property
     def full(self) -> bool:
         """Whether no further block fits: the space is then all there is, or nearly."""
-        return self.size + self.block > self.n
+        return bool(self.size + self.block > self.n)
 
     def extend(self) -> None:
         """Add the next block and apply the operator to it."""

@@ -7,7 +7,7 @@ from dataclasses import replace
 import numpy as np
 
 from membrane.kernel import Kernel
-from membrane.mesh.corner import Corner, Term
+from membrane.mesh.corner import Corner
 from membrane.mesh.exponents import Exponents, alike
 from membrane.mesh.holds import Holds, passes_smoothly
 from membrane.mesh.kinks import kinks

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from math import ceil, log
 
 from membrane.mesh.corner import Term
@@ -9,7 +10,7 @@ from membrane.mesh.corner import Term
 RATIO = 0.4
 """Size of each layer to the one around it."""
 
-POWERS = range(1, 5)
+FAN_POWERS, NO_FANS = range(1, 5), range(1, 2)
 """Powers by which the triangles at a corner may be drawn in."""
 
 DEEPEST = 40
@@ -23,7 +24,11 @@ MISSED = 20.0
 
 
 def treatment(
-    terms: tuple[Term, ...], share: float, tolerance: float, degree: int
+    terms: tuple[Term, ...],
+    share: float,
+    tolerance: float,
+    degree: int,
+    powers: Sequence[int] = FAN_POWERS,
 ) -> tuple[int, int]:
     """Power of the fan, 1 for none, and layers, for a relative error of the eigenvalues.
 
@@ -37,7 +42,7 @@ def treatment(
         needed = max(_layers(term, power, share, tolerance, degree) for term in terms)
         return max(needed, _fewest(power))
 
-    power = min((m for m in POWERS if m <= degree), key=layers)
+    power = min((m for m in powers if m <= degree), key=layers)
     return power, layers(power)
 
 

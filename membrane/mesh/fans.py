@@ -7,7 +7,7 @@ the auxiliary mapping of I. Babuska & H.-S. Oh, Numer. Meth. PDE 6 (1990) 371 (a
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 import numpy as np
 
@@ -59,7 +59,9 @@ class FanNodes:
 
         self._bend_neighbour(placed, triangle, EDGES.index((left, right)), opposite)
 
-    def _bend_neighbour(self, placed: Floats, triangle: int, side: int, curve) -> None:
+    def _bend_neighbour(
+        self, placed: Floats, triangle: int, side: int, curve: Callable[[Floats], Floats]
+    ) -> None:
         """Let the triangle across a side follow the side's new ``curve``."""
         low, high = self.triangles[list(EDGES[side]), triangle]
         chord = self.raw.vertices[:, [low, high]]

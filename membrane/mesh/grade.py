@@ -3,16 +3,16 @@
 from __future__ import annotations
 
 from collections import defaultdict
+from collections.abc import Sequence
 from math import atan2
 
 import numpy as np
 
 from membrane.kernel import Kernel
 from membrane.mesh.corner import Corner, Fan
-from membrane.mesh.depth import RATIO, treatment
+from membrane.mesh.depth import FAN_POWERS, RATIO, treatment
 from membrane.records.arrays import Floats
 from membrane.records.raw_mesh import RawMesh
-
 
 STRONG = 0.6
 """Exponent up to which wide triangles at a corner are halved."""
@@ -22,18 +22,24 @@ WIDEST = 1.1
 
 
 def graded(
-    kernel: Kernel, raw: RawMesh, corners: tuple[Corner, ...], tolerance: float, degree: int
+    kernel: Kernel,
+    raw: RawMesh,
+    corners: tuple[Corner, ...],
+    tolerance: float,
+    degree: int,
+    powers: Sequence[int] = FAN_POWERS,
 ) -> tuple[RawMesh, tuple[Fan, ...]]:
     """The mesh with layers around every corner, and the innermost triangles to draw in.
 
-    degree : of the elements, at least the powers of the fans
+    degree : of the elements
+    powers : that may be taken for the fans
     """
     growing = _Growing(kernel, raw)
     shares = _shares(raw)
     fans = []
     for corner in corners:
         share = float(shares[corner.vertex])
-        power, layers = treatment(corner.terms, share, tolerance, degree)
+        power, layers = treatment(corner.terms, share, tolerance, degree, powers)
         if corner.exponent < STRONG:
             growing.narrow(corner.vertex)
         if power > 1:

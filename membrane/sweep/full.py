@@ -14,7 +14,7 @@ from typing import Any
 from threadpoolctl import threadpool_limits
 
 from membrane import plugins
-from membrane.accuracy import Estimate, estimate
+from membrane.accuracy import estimate
 from membrane.coefficients import coefficients
 from membrane.errors import StudyError
 from membrane.kernel import Kernel
@@ -23,6 +23,7 @@ from membrane.modes import coarser_modes, extract
 from membrane.outline import draw
 from membrane.pencil import assemble, rescaled
 from membrane.pipeline import MESHES, wanted_count
+from membrane.records.bracket import Bracket
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
@@ -78,11 +79,11 @@ class FullSolves:
         own = self._own_head(point)
         with threadpool_limits(limits=1, user_api="blas"):
             for rung in range(MESHES):
-                modes, error = _solved(study, self._rung(own, rung))
-                if error.excess <= 1.0:
+                modes, bracket = _solved(study, self._rung(own, rung))
+                if bracket.widest <= study.modes.accuracy:
                     break
         count = None if study.modes.up_to else study.modes.count
-        return Answer(modes.frequencies[:count], error.cents[:count], "estimated", rung + 1)
+        return Answer(modes.frequencies[:count], bracket.cents[:count] / 2, bracket.label, rung + 1)
 
     def _own_head(self, point: Point) -> Study:
         """The study with the shapes of the point, but its own coefficients."""
@@ -146,7 +147,7 @@ def _made(own: Study, resolution: Resolution | None) -> _Rung:
     return _Rung(wanted, outline, membrane, mesh, fine, coarse)
 
 
-def _solved(study: Study, rung: _Rung) -> tuple[Modes, Estimate]:
+def _solved(study: Study, rung: _Rung) -> tuple[Modes, Bracket]:
     membrane = coefficients(study, rung.outline)
     fine, coarse = (
         rescaled(pencil, rung.membrane, membrane) or assemble(membrane, rung.mesh, degree)
@@ -157,4 +158,4 @@ def _solved(study: Study, rung: _Rung) -> tuple[Modes, Estimate]:
     )
     solver = plugins.load("eigensolver", study.modes.eigensolver).solve
     modes = extract(fine, wanted_count(fine, study.modes), solver, study.modes.accuracy)
-    return modes, estimate(modes, coarser_modes(coarse, modes), study.modes.accuracy)
+    return modes, estimate(modes, coarser_modes(coarse, modes), "")
