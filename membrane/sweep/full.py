@@ -9,6 +9,7 @@ import json
 from collections import OrderedDict
 from collections.abc import Mapping
 from dataclasses import dataclass
+from time import perf_counter
 from typing import Any
 
 from threadpoolctl import threadpool_limits
@@ -100,6 +101,27 @@ class FullSolves:
         while len(ladder) <= place:
             ladder.append(_made(own, ladder[-1].resolution.finer(FINER) if ladder else None))
         return ladder[place]
+
+
+@dataclass(frozen=True)
+class Sample:
+    """Seconds that a mesh with its matrices takes, and a solve on it."""
+
+    mesh: float
+    solve: float
+
+
+def timed_sample(study: Study) -> Sample:
+    """What one full solve of the study's own values takes here.
+
+    Raises MembraneError where it cannot be solved.
+    """
+    with threadpool_limits(limits=1, user_api="blas"):
+        start = perf_counter()
+        rung = _made(study, None)
+        middle = perf_counter()
+        _solved(study, rung)
+    return Sample(middle - start, perf_counter() - middle)
 
 
 def shaping_axes(study: Study) -> tuple[bool, ...]:
