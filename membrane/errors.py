@@ -83,5 +83,9 @@ class EngineError(MembraneError):
     """Processes of a sweep that could not be had, or were lost."""
 
 
+class BracketError(MembraneError):
+    """Why no bracket is guaranteed, as the end of a sentence; the run goes on with estimates."""
+
+
 class OutputError(MembraneError):
     """A result that could not be written or read back."""

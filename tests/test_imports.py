@@ -32,8 +32,8 @@ OWNERS = {
 """Heavy package -> the modules or folders of modules, below membrane, that own it."""
 
 STAGES = (
-    *("study", "outline", "coefficients", "mesh", "pencil", "modes", "accuracy", "nodal"),
-    *("partials", "products", "terms"),
+    *("study", "outline", "coefficients", "mesh", "pencil", "modes", "bounds", "accuracy"),
+    *("nodal", "partials", "products", "terms", "reduced"),
 )
 """Rooms that know nothing of each other; only the pipeline knows their order."""
 
