@@ -90,7 +90,7 @@ def _begun(whole: Affine, points: Floats, count: int, accuracy: float, solve: So
         stiffness_weights=whole.stiffness_weights,
         mass_weights=whole.mass_weights,
         residual=np.empty((0, 0, 0)),
-        held_by=_held_by(whole) if low.moves_rigidly else (),
+        held_by=_held_by(whole) if low.moves_rigidly else None,
         shift=float(first.eigenvalues[1]) if low.moves_rigidly else 0.0,
         reach=REACH,
         lowest=lowest,
