@@ -22,8 +22,12 @@ Eigensolver = Callable[[Any, Any, int, float], tuple[Floats, Floats]]
 LOOSEST = 1e-5
 """Relative distance from which two eigenvalues are never taken for one."""
 
-EXTRAS = 6
+EXTRAS = 3
 """Modes asked for beyond the wanted ones, to see the end of the last cluster."""
+
+REPAIR = 30
+"""Modes asked for beyond the last ones where the count finds that one was missed: for so many
+more, the solver looks deeper and for one copy more of each."""
 
 SOLVES = 4
 """How often a count that does not close is solved again, each time for more modes."""
@@ -49,7 +53,7 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
         missing = _count_below(pencil, values, kept) - kept
         if missing == 0:
             return _modes(pencil, values[:kept], vectors[:, :kept], same)
-        ask += max(missing, EXTRAS)
+        ask += max(missing, REPAIR)
     raise SolveError(
         f"the count of modes did not close after {SOLVES} solves; "
         "ask for another number of modes or another accuracy."
