@@ -19,6 +19,9 @@ CONVERGED = 1e-7
 VANISHED = 1e-12
 """Length of a new direction, over the largest eigenvalue, from which it is only rounding."""
 
+CLEAN, QUIET = 2, 4
+"""Rounds that are made orthogonal to the whole basis, and rounds between that are not."""
+
 START_SEED = 20240229
 
 
@@ -40,7 +43,7 @@ def largest(inverse: Solve, M: Any, count: int, seed: int = START_SEED) -> tuple
     some three times ``count`` vectors.
     """
     basis = _Basis(inverse, M, count, seed)
-    patience = 2 * count + 4 * basis.starts
+    patience = 3 * count
     while True:
         patience = min(patience, basis.n)
         while basis.applied < patience:
@@ -48,7 +51,7 @@ def largest(inverse: Solve, M: Any, count: int, seed: int = START_SEED) -> tuple
         values, mix, residuals = basis.ritz(count)
         if basis.applied == basis.n or np.all(residuals <= CONVERGED * values):
             return values, basis.V[:, : basis.applied] @ mix
-        patience += max(8, count // 6)
+        patience += max(4, count // 12)
 
 
 class _Basis:
@@ -104,10 +107,10 @@ class _Basis:
         """w without its shares along the basis, and they.
 
         Nearly all of w lies along the vectors from ``first`` on. The others' share is rounding,
-        which grows a hundredfold with each round of the starts: it may stay for two rounds.
+        which grows up to a hundredfold with each round of the starts and may stay for a few.
         """
         shares = np.zeros(self.size)
-        quiet = first > 0 and (first // (2 * self.starts)) % 2
+        quiet = first // self.starts % (CLEAN + QUIET) >= CLEAN
         for start in (first, first if quiet else 0):
             part = slice(start, self.size)
             share = self.MV[:, part].T @ w

@@ -62,7 +62,7 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
 
 def count_up_to(pencil: Pencil, frequency: float) -> int:
     """How many modes lie below a frequency, Hz, by the inertia of K - s M."""
-    return negative_count(pencil.K - (2 * np.pi * frequency) ** 2 * pencil.M)
+    return negative_count(pencil.shifted((2 * np.pi * frequency) ** 2))
 
 
 def _lowest(pencil: Pencil, count: int, solver: Eigensolver) -> tuple[Floats, Floats]:
@@ -94,7 +94,7 @@ def _count_below(pencil: Pencil, values: Floats, kept: int) -> int:
     if kept == len(values):
         return kept  # every mode that the mesh carries was asked for
     limit = (values[kept - 1] + values[kept]) / 2
-    return negative_count(pencil.K - limit * pencil.M)
+    return negative_count(pencil.shifted(limit))
 
 
 def _modes(pencil: Pencil, values: Floats, vectors: Floats, same: float) -> Modes:

@@ -65,6 +65,16 @@ class Pencil:
         """(n_free, n_free) CSC, kg: symmetric, positive definite."""
         return _combine(self.mass)
 
+    def shifted(self, shift: float) -> Any:
+        """K - shift M, CSC; with the entries of K where M has the same ones."""
+        from scipy.sparse import csc_array
+
+        K, M = self.K, self.M
+        same = np.array_equal(K.indptr, M.indptr) and np.array_equal(K.indices, M.indices)
+        if not same:
+            return K - shift * M
+        return csc_array((K.data - shift * M.data, K.indices, K.indptr), shape=K.shape)
+
 
 def _combine(parts: tuple[Part, ...]) -> Any:
     """The sum of all parts at once: one by one, many small ones would take long."""
