@@ -65,8 +65,9 @@ class _Basis:
         self.inverse, self.M, self.random = inverse, M, np.random.default_rng(seed)
         self.n, self.size, self.applied = M.shape[0], 0, 0
         self.starts = min(starts(count), self.n)
-        self._give_room(min(self.n, 4 * count + 20))
         self.largest = 0.0
+        room = min(self.n, 4 * count + 20)
+        self.V, self.MV, self.T = _empty(self.n, room), _empty(self.n, room), _empty(room, room)
         for _ in range(self.starts):
             # once through the operator: a raw random vector is rough, and wastes a step
             self._append(self._split(inverse(M @ self.random.standard_normal(self.n)), 0)[0])
@@ -74,7 +75,7 @@ class _Basis:
     def extend(self) -> None:
         """Apply the operator to the next vector, and add what is new in the result."""
         if self.size == len(self.T) < self.n:
-            self._give_room(min(self.n, 2 * self.size))
+            self._more_room()
         j = self.applied
         new, shares = self._split(self.inverse(self.MV[:, j]), max(0, j - self.starts))
         self.largest = max(self.largest, float(shares[j]))
@@ -118,9 +119,13 @@ class _Basis:
             shares[part] += share
         return w, shares
 
-    def _give_room(self, room: int) -> None:
-        V, MV, T = (np.zeros((n, room), order="F") for n in (self.n, self.n, room))
-        if self.size:
-            V[:, : self.size], MV[:, : self.size] = self.V, self.MV
-            T[: self.size, : self.size] = self.T
-        self.V, self.MV, self.T = V, MV, T
+    def _more_room(self) -> None:
+        room = min(self.n, 2 * self.size)
+        old = self.V, self.MV, self.T
+        self.V, self.MV, self.T = _empty(self.n, room), _empty(self.n, room), _empty(room, room)
+        for before, now in zip(old, (self.V, self.MV, self.T), strict=True):
+            now[: before.shape[0], : before.shape[1]] = before
+
+
+def _empty(rows: int, columns: int) -> Floats:
+    return np.zeros((rows, columns), order="F")
