@@ -249,6 +249,7 @@ VaryingLineTension: TypeAlias = Annotated[Amount, _varying(_LINE_TENSION)]
 PositiveVaryingLineTension: TypeAlias = Annotated[Amount, _varying(_positive(_LINE_TENSION))]
 VaryingBedding: TypeAlias = Annotated[Amount, _varying(_BEDDING)]
 VaryingLineDensity: TypeAlias = Annotated[Amount, _varying(_LINE_DENSITY)]
+VaryingLineStiffness: TypeAlias = Annotated[Amount, _varying(_LINE_STIFFNESS)]
 # an edge may be elastic along a part of it alone
 PositiveVaryingLineStiffness: TypeAlias = Annotated[
     Amount, replace(_positive(_LINE_STIFFNESS), varying=Sign.NOT_NEGATIVE)
