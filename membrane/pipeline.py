@@ -12,7 +12,7 @@ from threadpoolctl import threadpool_limits
 
 from membrane import plugins
 from membrane.accuracy import estimate
-from membrane.bounds import SPARE, bracketed
+from membrane.bounds import SPARE, bracketed, check_provable
 from membrane.coefficients import coefficients
 from membrane.errors import BracketError, SolveError
 from membrane.kernel import Kernel
@@ -139,11 +139,14 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             outline = draw(kernel, study)
             membrane = coefficients(study, outline)
             resolution = suited_resolution(kernel, outline, membrane, study.modes)
+
+        def meshed(resolution: Resolution, fans: bool) -> Mesh:
+            with clock.stage("mesh"):
+                return make_mesh(kernel, outline, membrane, study.modes, resolution, fans=fans)
+
         tried: list[_Solution] = []
         for _ in range(MESHES):
-            with clock.stage("mesh"):
-                mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
-            found = _solve_on(mesh, membrane, resolution, study.modes, solver, clock)
+            found = _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
             tried.append(found)
             if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
                 break
@@ -153,21 +156,30 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
 
 
 def _solve_on(
-    mesh: Mesh,
+    meshed: Callable[[Resolution, bool], Mesh],
     membrane: Membrane,
     resolution: Resolution,
     wanted: ModesWanted,
     solver: Eigensolver,
     clock: _Clock,
 ) -> _Solution:
+    mesh = meshed(resolution, True)
     with clock.stage("assembly"):
         pencil = assemble(membrane, mesh, resolution.degree)
     with clock.stage("modes"):
-        count = _count(pencil, wanted)
+        count = wanted_count(pencil, wanted)
         spare = min(SPARE, pencil.M.shape[0] - 1 - count) if wanted.bracket else 0
         more = extract(pencil, count + max(spare, 0), solver, wanted.accuracy)
         modes = lowest(more, count)
-    bracket = _bracket(membrane, mesh, resolution, more, modes, wanted, clock)
+
+    def provable() -> Modes:
+        """The same modes on a mesh that the proofs cover."""
+        if not mesh.has_fans:
+            return more
+        again = assemble(membrane, meshed(resolution.of_proofs, False), resolution.degree)
+        return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
+
+    bracket = _bracket(membrane, mesh, resolution, provable, modes, wanted, clock)
     excess = bracket.widest / wanted.accuracy
     return _Solution(membrane, mesh, pencil, modes, bracket, excess, _why(bracket))
 
@@ -176,7 +188,7 @@ def _bracket(
     membrane: Membrane,
     mesh: Mesh,
     resolution: Resolution,
-    more: Modes,
+    provable: Callable[[], Modes],
     modes: Modes,
     wanted: ModesWanted,
     clock: _Clock,
@@ -185,8 +197,11 @@ def _bracket(
     reason = ""
     if wanted.bracket:
         try:
+            check_provable(membrane)
+            proof = provable()
             with clock.stage("bounds"):
-                return bracketed(membrane, more, len(modes.eigenvalues), wanted.accuracy)
+                found = bracketed(membrane, proof, len(modes.eigenvalues), wanted.accuracy)
+            return found.holding(modes.eigenvalues)
         except BracketError as why:
             reason = str(why)
     with clock.stage("estimate"):
@@ -199,7 +214,8 @@ def _why(bracket: Bracket) -> tuple[str, ...]:
     return (f"Brackets are estimates, since {bracket.reason}.",) if bracket.reason else ()
 
 
-def _count(pencil: Pencil, wanted: ModesWanted) -> int:
+def wanted_count(pencil: Pencil, wanted: ModesWanted) -> int:
+    """How many modes are wanted. Raises SolveError where none lies below ``up_to``."""
     if wanted.up_to is None:
         return wanted.count
     count = count_up_to(pencil, wanted.up_to)

@@ -14,13 +14,12 @@ from functools import cache
 
 import numpy as np
 from numpy.polynomial.legendre import legval
-from scipy.special import roots_legendre
 
 from membrane.bounds.head import Head
 from membrane.bounds.pieces import Piece
 from membrane.bounds.rims import Rim
 from membrane.records.arrays import Floats
-from membrane.triangle import collapsed_rule, flux_shapes, shapes
+from membrane.triangle import collapsed_rule, flux_shapes, gauss, shapes
 from membrane.triangle.polynomials import orthonormal
 
 
@@ -97,7 +96,7 @@ def driving_products(degree: int, of_functions: int) -> Floats:
 
 def spring_matrices(rim: Rim, degree: int) -> Floats:
     """(n, k, k) matrices of (s . n)(t . n) / beta along the sides of a rim."""
-    x, weights = roots_legendre(rim.weights.size)
+    x, weights = gauss(rim.weights.size, 0, 0)
     crossing = np.stack([(2 * j + 1) * legval(x, np.eye(degree)[j]) for j in range(degree)])
     each = weights / 2 / (rim.spring[:, None] * rim.speed)
     return np.asarray(np.einsum("im,tm,jm->tij", crossing, each, crossing, optimize=True))
