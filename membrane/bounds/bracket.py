@@ -11,7 +11,7 @@ from membrane.bounds.goerisch import flux_form, lower_bounds
 from membrane.bounds.head import Head, head_of
 from membrane.bounds.local_fluxes import Sources
 from membrane.bounds.pieces import pieces
-from membrane.bounds.provable import unproven
+from membrane.bounds.provable import check_provable
 from membrane.bounds.rims import rims
 from membrane.bounds.ritz import forms
 from membrane.errors import BracketError, SolveError
@@ -41,9 +41,7 @@ def bracketed(membrane: Membrane, modes: Modes, count: int, accuracy: float) -> 
     accuracy : cents, from low to high; the work stops where it is reached
     Raises BracketError, whose sentence says why none is guaranteed.
     """
-    reason = unproven(membrane)
-    if reason:
-        raise BracketError(reason)
+    check_provable(membrane)
     head = head_of(membrane, modes.space.mesh)
     kept = widest_gap(modes.eigenvalues, count)
     try:

@@ -97,7 +97,7 @@ def solved(
     keys: dict[str, Any], count: int = 12, degree: int = 6, **resolution: float
 ) -> tuple[Membrane, Modes]:
     """A study's lowest modes on one mesh."""
-    here = zoo.prepared(keys, degree, **resolution)
+    here = zoo.prepared(keys, degree, **resolution, fans=False)
     pencil = assemble(here.membrane, here.mesh, degree)
     solver = load("eigensolver", "shift_invert").solve
     return here.membrane, extract(pencil, count, solver, 0.01)

@@ -17,7 +17,7 @@ from tests.bounds.heads import numbers, rectangles
 
 
 def counted(keys, limit, step, **resolution):
-    here = zoo.prepared(keys, **resolution)
+    here = zoo.prepared(keys, fans=False, **resolution)
     head = head_of(here.membrane, here.mesh)
     time = np.linalg.inv(head.tension) * head.density[:, None, None]
     leaf = leaves(here.mesh, time, step / np.sqrt(limit), 100_000)
