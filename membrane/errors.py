@@ -78,5 +78,9 @@ class SolveError(MembraneError):
     """Modes that could not be found, or a count that did not close."""
 
 
+class BracketError(MembraneError):
+    """Why no bracket is guaranteed, as the end of a sentence; the run goes on with estimates."""
+
+
 class OutputError(MembraneError):
     """A result that could not be written or read back."""

@@ -120,7 +120,7 @@ def test_a_spectrum_is_shown_in_one_line():
 def test_stages_are_told_in_order():
     told = []
     run(study_from({**zoo.SQUARE, "modes": {"count": 2}}), told.append)
-    assert told == ["outline", "mesh", "assembly", "modes", "nodal lines"]
+    assert told == ["outline", "mesh", "assembly", "modes", "bounds", "nodal lines"]
 
 
 def test_write_writes_what_is_wanted(tmp_path):

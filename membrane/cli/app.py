@@ -74,6 +74,24 @@ def check(ctx: typer.Context, study: StudyFile) -> None:
 
 
 @app.command()
+def sweep(
+    ctx: typer.Context,
+    study: StudyFile,
+    out: Annotated[Path, typer.Option(metavar="DIR", help="Folder for the store and tables.")],
+    part: Annotated[
+        str | None, typer.Option(metavar="N/M", help="Work on one of M parts of the points.")
+    ] = None,
+    retry: Annotated[bool, typer.Option("--retry", help="Try failed points again.")] = False,
+    quiet: Annotated[bool, typer.Option("--quiet", help="Print nothing but errors.")] = False,
+) -> None:
+    """Solve every point of a study's sweep; go on where it was stopped."""
+    from membrane.cli.sweep import run_sweep
+
+    with failures_told(ctx, study):
+        run_sweep(study, out, part, retry, quiet)
+
+
+@app.command()
 def plugins(ctx: typer.Context) -> None:
     """List the outlines, terms, eigensolvers and products there are."""
     from membrane.cli.plugins import print_plugins

@@ -18,7 +18,7 @@ STRAIGHT = 1e-13
 def curved(kernel: Kernel, outline: Outline, raw: RawMesh, order: int) -> Mesh:
     """The mesh of geometry order ``order``, or of order 1 where every side is straight."""
     triangles = np.sort(raw.triangles, axis=0)
-    sides = _sides(raw, triangles)
+    sides = segment_sides(raw, triangles)
     order = order if _any_bent(kernel, raw) else 1
     return Mesh(
         vertices=raw.vertices,
@@ -37,7 +37,7 @@ def _any_bent(kernel: Kernel, raw: RawMesh) -> bool:
     ends = raw.vertices[:, raw.segments]
     for curve in np.unique(raw.segment_curve):
         on = raw.segment_curve == curve
-        bend = _departure(kernel, int(curve), raw.segment_parameters[:, on], ends[:, :, on], middle)
+        bend = from_chord(kernel, int(curve), raw.segment_parameters[:, on], ends[:, :, on], middle)
         if np.abs(bend).max() > STRAIGHT * np.ptp(ends[:, :, on], axis=1).max():
             return True
     return False
@@ -76,10 +76,10 @@ def _blend(
     weight = np.zeros_like(s)
     weight[inner] = (low * high)[inner] / (s * (1 - s))[inner]
     parameters, ends = raw.segment_parameters[:, segment], raw.vertices[:, raw.segments[:, segment]]
-    return _departure(kernel, curve, parameters, ends, s[None]) * weight[:, None]
+    return from_chord(kernel, curve, parameters, ends, s[None]) * weight[:, None]
 
 
-def _departure(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: Floats) -> Floats:
+def from_chord(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: Floats) -> Floats:
     """Curve minus chord, (2, n_s, n_segments), at fractions ``s`` (1, n_s) of segments.
 
     parameters : (2, n_segments) and ends (2, 2, n_segments), from lower to higher vertex
@@ -90,7 +90,7 @@ def _departure(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: 
     return np.asarray(exact - ((1 - fraction) * ends[:, [0]] + fraction * ends[:, [1]]))
 
 
-def _sides(raw: RawMesh, triangles: Ints) -> tuple[Ints, Ints, Ints]:
+def segment_sides(raw: RawMesh, triangles: Ints) -> tuple[Ints, Ints, Ints]:
     """For every pair of a triangle and a segment on its side: segment, triangle, side."""
     count = raw.vertices.shape[1]
     keys = raw.segments[0] * count + raw.segments[1]

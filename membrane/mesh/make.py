@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
 
 from membrane.errors import MeshError
 from membrane.kernel import COARSE, USUAL, Kernel
 from membrane.mesh.checks import check_mesh
 from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
+from membrane.mesh.departure import departure
 from membrane.mesh.grade import graded
 from membrane.mesh.resolution import (
     LOWEST_DEGREE,
@@ -69,4 +71,4 @@ def _attempt(
     raw = opened(raw, [curve.tag for curve in outline.curves if curve.lips])
     mesh = curved(kernel, outline, raw, resolution.degree)
     check_mesh(mesh, outline)
-    return mesh
+    return replace(mesh, departure=departure(kernel, raw, mesh))

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
@@ -57,6 +58,17 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
     raise SolveError(
         f"the count of modes did not close after {SOLVES} solves; "
         "ask for another number of modes or another accuracy."
+    )
+
+
+def lowest(modes: Modes, count: int) -> Modes:
+    """The ``count`` lowest of some modes, or a few more where they would cut a cluster."""
+    kept = int(np.searchsorted(modes.clusters, modes.clusters[count - 1], side="right"))
+    return replace(
+        modes,
+        eigenvalues=modes.eigenvalues[:kept],
+        vectors=modes.vectors[:, :kept],
+        clusters=modes.clusters[:kept],
     )
 
 

@@ -21,6 +21,8 @@ class Mesh:
     region : (n_triangles,), index into ``region_names``
     edges : edge name -> (2, n), the vertex pairs of its facets, lower number first
     lines : the same for the line loads, whose facets lie within the head or on edges
+    departure : a map of the mesh onto the true outline stretches by no less than 1 - departure
+        and no more than 1 + departure
     """
 
     vertices: Floats
@@ -31,6 +33,7 @@ class Mesh:
     region: Ints
     edges: Mapping[str, Ints]
     lines: Mapping[str, Ints] = field(default_factory=dict)
+    departure: float = 0.0
 
     @property
     def size(self) -> int:
