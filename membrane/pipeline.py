@@ -44,6 +44,9 @@ Progress = Callable[[str], None]
 MESHES = 6
 """How many meshes are tried, each finer, before the accuracy reached is reported as it is."""
 
+WORTH = 0.7
+"""Share of a bracket's width that a finer mesh may leave: above it, rounding is what is left."""
+
 ALWAYS_WRITTEN = ("table", "modes_csv", "summary")
 """Products of every run; the study's ``products.write`` names the others. The summary comes
 last: it lists the files."""
@@ -141,12 +144,15 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             with clock.stage("mesh"):
                 return make_mesh(kernel, outline, membrane, study.modes, resolution, fans=fans)
 
-        for attempt in range(MESHES):
-            solution = _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
-            if solution.excess <= 1.0 or attempt == MESHES - 1:
+        tried: list[_Solution] = []
+        for _ in range(MESHES):
+            found = _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
+            tried.append(found)
+            if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
                 break
-            resolution = resolution.finer(solution.excess)
-    return replace(solution, notes=(*outline.notes, *solution.notes))
+            resolution = resolution.finer(found.excess)
+    best = min(tried, key=lambda solution: solution.excess)
+    return replace(best, notes=(*outline.notes, *best.notes))
 
 
 def _solve_on(

@@ -25,8 +25,7 @@ OWNERS = {
     "matplotlib": ("products.pictures",),
     "distributed": ("sweep.cluster",),
     "dask": ("sweep.cluster",),
-    "pandas": ("sweep.results",),
-    "pyarrow": ("sweep.results",),
+    "pandas": ("sweep.frame",),
     "ezdxf": ("drawings.dxf",),
     "svgelements": ("drawings.svg",),
 }
