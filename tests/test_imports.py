@@ -22,7 +22,7 @@ OWNERS = {
     "skfem": ("pencil",),
     "cvxopt": ("cholesky",),
     "meshio": ("products.vtu", "drawings.mesh_file"),
-    "matplotlib": ("products.pictures",),
+    "matplotlib": ("products.pictures", "products.branch_picture"),
     "ezdxf": ("drawings.dxf",),
     "svgelements": ("drawings.svg",),
 }
@@ -30,7 +30,7 @@ OWNERS = {
 
 STAGES = (
     *("study", "outline", "coefficients", "mesh", "pencil", "modes", "accuracy", "nodal"),
-    *("partials", "products", "terms", "reduced"),
+    *("partials", "products", "terms", "reduced", "branches"),
 )
 """Rooms that know nothing of each other; only the pipeline knows their order."""
 
