@@ -2,42 +2,29 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
 
-from membrane.pitch import CENTS_PER_OCTAVE
-from membrane.records.arrays import Floats
+from membrane.pitch import CENTS_PER_EIGENVALUE, CENTS_PER_OCTAVE
+from membrane.records.bracket import ESTIMATED, Bracket
 from membrane.records.modes import Modes
 
 ROUNDING = 1e-8
 """Cents below which an estimate says nothing: the rounding of graded meshes."""
 
 
-@dataclass(frozen=True)
-class Estimate:
-    """What is known of the error.
-
-    cents : (n,), how far off each frequency may be, up or down
-    excess : the widest interval over the wanted one
-    """
-
-    cents: Floats
-    excess: float
-
-
-def estimate(fine: Modes, coarse: Modes, wanted: float) -> Estimate:
-    """The two solves' distance, which is nearly all the coarser one's error.
+def estimate(fine: Modes, coarse: Modes, reason: str) -> Bracket:
+    """The two solves' distance, up and down, which is nearly all the coarser one's error.
 
     The finer solve is closer to the truth wherever the elements converge, so the estimate
     is pessimistic: by orders of magnitude for smooth modes, by a factor of one to three at
     corners, where only the mesh and not the degree helps.
 
-    wanted : cents from the low to the high end
+    reason : why nothing better is known
     """
     known = coarse.frequencies[: len(fine.eigenvalues)]
     moving = fine.frequencies > 0.0
     cents = np.zeros(len(moving))
     apart = CENTS_PER_OCTAVE * np.log2(fine.frequencies[moving] / known[moving])
     cents[moving] = np.maximum(np.abs(apart), ROUNDING)
-    return Estimate(cents, float(2 * cents.max() / wanted))
+    spread = np.exp(cents / CENTS_PER_EIGENVALUE)
+    return Bracket(fine.eigenvalues / spread, fine.eigenvalues * spread, ESTIMATED, reason)

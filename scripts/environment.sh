@@ -2,6 +2,7 @@
 #
 #   prepare run     what a run of membrane needs
 #   prepare test    that, and what the tests need
+#   prepare bench   what a run needs, and what scripts/bench compares it with
 #
 # Nothing is installed while the fingerprint of the last installation is current.
 
@@ -30,7 +31,7 @@ install_packages() {
     pip_install setuptools
     case $1 in
         run) (cd "$root" && pip_install --no-build-isolation --editable .) ;;
-        test) (cd "$root" && pip_install --no-build-isolation --editable '.[test]') ;;
+        *) (cd "$root" && pip_install --no-build-isolation --editable ".[$1]") ;;
     esac
     fingerprint >"$venv/ready-run"
     fingerprint >"$venv/ready-$1"

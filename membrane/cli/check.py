@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from pathlib import Path
 from typing import Any
 
+from membrane.cli.check_sweep import sweep_lines
 from membrane.plugins.options import plain, unit_of
 from membrane.records.function import Amount, Function
 from membrane.records.plan import Plan
@@ -27,14 +28,17 @@ from membrane.varying import KINDS, is_varying
 def describe_study(file: Path) -> str:
     """The lines that ``membrane check`` prints.
 
-    The outline is drawn and cut, but not meshed. Raises StudyError, or OutlineError for
-    shapes that do not fit together.
+    The outline is drawn and cut, but not meshed, unless there is a sweep, of which one point
+    is timed. Raises StudyError, or OutlineError for shapes that do not fit together.
     """
     study = read_study(file)
     from membrane.pipeline import plan
 
     planned = plan(study)
-    parts = (_shapes(study), _physics(study), _wanted(study), _size(planned))
+    parts = (
+        *(_shapes(study), _physics(study), _wanted(study), _size(planned)),
+        sweep_lines(study),
+    )
     pairs = [pair for pairs in parts for pair in pairs]
     width = max(len(label) for label, _ in pairs)
     return "\n".join(f"{label:<{width}}  {text}" for label, text in pairs)
@@ -105,8 +109,8 @@ def _patch(patch: Patch, source: Mapping[str, Any]) -> str:
 
 def _load(load: LineLoad) -> str:
     parts = [
-        load.density > 0.0 and f"line density {load.density:g} kg/m",
-        load.stiffness > 0.0 and f"line stiffness {load.stiffness:g} N/m^2",
+        _named("line density", load.density or None, "kg/m"),
+        _named("line stiffness", load.stiffness or None, "N/m^2"),
     ]
     return "; ".join([_shape(load.line), *(part for part in parts if part)])
 

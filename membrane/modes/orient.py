@@ -16,13 +16,14 @@ def oriented(pencil: Pencil, vectors: Floats, clusters: Ints) -> Floats:
     symmetric and antisymmetric. The sign makes the mean weighted by exp(x + y/3) positive.
     """
     x, y = _unit_coordinates(pencil)
-    chosen = np.empty_like(vectors)
-    for cluster in np.unique(clusters):
-        members = vectors[:, clusters == cluster]
+    chosen = vectors.copy()
+    numbers, sizes = np.unique(clusters, return_counts=True)
+    for number in numbers[sizes > 1]:
+        members = vectors[:, clusters == number]
         weighted = members.T @ (pencil.M @ (np.exp(x)[:, None] * members))
         _, turn = np.linalg.eigh(weighted + weighted.T)
-        chosen[:, clusters == cluster] = members @ turn[:, ::-1]
-    means = np.exp(x + y / 3) @ (pencil.M @ chosen)
+        chosen[:, clusters == number] = members @ turn[:, ::-1]
+    means = (pencil.M @ np.exp(x + y / 3)) @ chosen
     return np.asarray(chosen * np.where(means < 0.0, -1.0, 1.0))
 
 

@@ -11,6 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from membrane.records.arrays import Floats, Ints
+from membrane.records.membrane import Field
 from membrane.records.spectrum import Spectrum
 from membrane.subdivision import Subdivision, subdivide
 from membrane.triangle import lattice
@@ -32,23 +33,26 @@ class Options:
 
 
 def write(spectrum: Spectrum, folder: Path, options: Options) -> None:
-    """Write modes.vtu with point arrays mode_01, mode_02, ... and the region of each cell.
+    """Write modes.vtu with point arrays mode_01, mode_02, ... and what each cell is made of.
 
-    Amplitudes are those of the mass-normalised modes, kg^(-1/2). The names of the
-    regions stand in summary.json under mesh.regions, in the order of their numbers.
+    Amplitudes are those of the mass-normalised modes, kg^(-1/2). Cells carry their region,
+    and in their middle the areal density, kg/m^2, and the tension xx, yy and xy, N/m. The
+    names of the regions stand in summary.json under mesh.regions, in the order of their
+    numbers.
     """
     space = spectrum.modes.space
     # at this many parts the equispaced points hold both the modes and the geometry exactly
     divided = subdivide(space.mesh, max(space.degree, space.mesh.order))
     values = divided.values(space, spectrum.modes.vectors)
     cells, owner = _lagrange(divided) if options.lagrange else _flat(divided)
+    points, region = divided.positions(space.mesh), space.mesh.region[owner]
     write_vtu(
         folder / FILE,
-        divided.positions(space.mesh),
+        points,
         "VTK_LAGRANGE_TRIANGLE" if options.lagrange else "triangle",
         cells,
         {mode_name(number, values.shape[1]): values[:, number] for number in _range(values)},
-        {"region": space.mesh.region[owner]},
+        {"region": region, **_material(spectrum, region, points[:, cells].mean(axis=1))},
     )
 
 
@@ -75,6 +79,18 @@ def write_vtu(
         cell_data={name: [np.ascontiguousarray(data)] for name, data in cell_data.items()},
     )
     meshio.write(path, mesh, file_format="vtu", binary=True, compression="zlib")
+
+
+def _material(spectrum: Spectrum, region: Ints, middles: Floats) -> Arrays:
+    """Areal density (n,) and tension (n, 3) in the middles (2, n) of cells."""
+    density, tension = np.empty(region.size), np.empty((region.size, 3))
+    for number, name in enumerate(spectrum.modes.space.mesh.region_names):
+        here = region == number
+        places = middles[:, here]
+        density[here] = spectrum.membrane.at(Field.AREAL_DENSITY, name, places)
+        tensors = spectrum.membrane.at(Field.TENSION, name, places)
+        tension[here] = tensors[:, [0, 1, 0], [0, 1, 1]]
+    return {"areal_density": density, "tension_xx_yy_xy": tension}
 
 
 def _range(values: Floats) -> range:

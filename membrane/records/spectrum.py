@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 
 from membrane.records.arrays import Floats
+from membrane.records.membrane import Membrane
 from membrane.records.modes import Modes
 from membrane.records.study import Study
 
@@ -63,6 +64,7 @@ class Spectrum:
     """
 
     study: Study
+    membrane: Membrane
     modes: Modes
     partials: tuple[Partial, ...]
     complete: bool

@@ -11,6 +11,7 @@ import numpy as np
 
 from membrane.records.arrays import Floats
 from membrane.records.function import Amount, Function
+from membrane.records.sweep import Sweep
 
 
 class Support(StrEnum):
@@ -134,8 +135,8 @@ class LineLoad:
 
     name: str
     line: Shape
-    density: float = 0.0
-    stiffness: float = 0.0
+    density: Amount = 0.0
+    stiffness: Amount = 0.0
 
 
 @dataclass(frozen=True)
@@ -193,7 +194,8 @@ class ModesWanted:
 
     count : how many modes; ignored where ``up_to`` is given
     up_to : Hz; every mode up to this frequency
-    accuracy : cents
+    accuracy : cents, from the low to the high end of a bracket
+    bracket : whether guaranteed brackets are wanted; else they are estimates
     degree : of the finite elements; None lets the accuracy choose
     eigensolver : registered plugin name
     ratio_to : number of the mode that has ratio 1; None takes the first above 0 Hz
@@ -203,6 +205,7 @@ class ModesWanted:
     count: int = 20
     up_to: float | None = None
     accuracy: float = 0.01
+    bracket: bool = True
     degree: int | None = None
     eigensolver: str = "shift_invert"
     ratio_to: int | None = None
@@ -223,6 +226,7 @@ class Study:
 
     terms : frozen options of each further physical term, by plugin name
     source : the same study as plain data in the study file's own keys, SI numbers
+    sweep : which of its numbers take further values
     """
 
     title: str
@@ -238,6 +242,7 @@ class Study:
     products: ProductsWanted = ProductsWanted()
     terms: Mapping[str, Any] = field(default_factory=dict)
     source: Mapping[str, Any] = field(default_factory=dict)
+    sweep: Sweep | None = None
 
     @property
     def functions(self) -> tuple[Function, ...]:
@@ -251,6 +256,8 @@ class Study:
             *(patch.added_density for patch in self.patches),
             *(edge.stiffness for edge in self.edges.values()),
             *(edge.mass for edge in self.edges.values()),
+            *(load.density for load in self.line_loads),
+            *(load.stiffness for load in self.line_loads),
         )
         found = (amount for amount in amounts if isinstance(amount, Function))
         return tuple(function.moved(self.outline.at) for function in found)

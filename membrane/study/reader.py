@@ -4,14 +4,17 @@ from __future__ import annotations
 
 import tomllib
 from collections.abc import Mapping
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
-from membrane.errors import StudyError
+from membrane.errors import Problem, StudyError
 from membrane.records.study import Study
 from membrane.study.paths import located
+from membrane.study.probe import Probe
 from membrane.study.problems import Problems
-from membrane.study.sections import read_sections
+from membrane.study.sections import SWEEP, read_sections
+from membrane.study.sweep import read_sweep
 from membrane.study.table import Table
 
 
@@ -34,7 +37,23 @@ def study_from(keys: Mapping[str, Any], base: Path | str = ".") -> Study:
     study = read_sections(root, Path(base))
     root.problems.raise_any()
     assert study is not None, "a study without a problem is read whole"
-    return study
+    return _with_sweep(study, root, Path(base)) if SWEEP in root.keys else study
+
+
+def _with_sweep(study: Study, root: Table, base: Path) -> Study:
+    """The same study with its sweep. Raises StudyError with the sweep's problems."""
+    probe = Probe(dict(study.source), lambda keys: _resolved(keys, base))
+    table = root.table(SWEEP)
+    sweep = None if table is None else read_sweep(table, probe, base)
+    root.problems.raise_any()
+    return replace(study, sweep=sweep)
+
+
+def _resolved(keys: Mapping[str, Any], base: Path) -> tuple[dict[str, Any], tuple[Problem, ...]]:
+    """The study's plain data in SI numbers, as far as it is sound, and what is wrong."""
+    root = Table(keys, "", Problems())
+    read_sections(root, base)
+    return root.resolved, tuple(root.problems.found)
 
 
 def _toml(file: Path) -> dict[str, Any]:

@@ -21,7 +21,6 @@ from membrane.study.edges import read_edges
 from membrane.study.layers import read_head, read_hole, read_patch, refuse_name
 from membrane.study.lines import read_line_load, read_slit
 from membrane.study.parts import read_edge_part
-from membrane.study.problems import NOT_YET
 from membrane.study.shapes import edge_names, read_shape
 from membrane.study.table import Table
 from membrane.study.wanted import read_modes, read_products, read_terms
@@ -29,11 +28,13 @@ from membrane.wording import nearest
 
 T = TypeVar("T")
 
+SWEEP = "sweep"
+"""The section that is read last: it names numbers of the others."""
+
 _KNOWN = (
     *("title", "outline", "patches", "holes", "line_loads", "slits", "head", "edge_parts"),
-    *("edges", "modes", "products", "terms"),
+    *("edges", "modes", "products", "terms", SWEEP),
 )
-_LATER = {"sweep": "sweeps are"}
 _MISSING = {
     "outline": 'is missing; give the table [outline] with a shape, such as shape = "disc".',
     "head": "is missing; give the table [head] with areal_density and tension.",
@@ -99,12 +100,9 @@ def read_sections(root: Table, base: Path) -> Study | None:
 
 def _refuse_unknown(root: Table) -> None:
     for key in root.without(*_KNOWN):
-        if key in _LATER:
-            root.refuse(key, f"{_LATER[key]} {NOT_YET}; leave the table out.")
-        else:
-            hint = nearest(key, _KNOWN)
-            known = f"; known here are {', '.join(_KNOWN)}."
-            root.refuse(key, f"unknown section{hint if hint != '.' else known}")
+        hint = nearest(key, _KNOWN)
+        known = f"; known here are {', '.join(_KNOWN)}."
+        root.refuse(key, f"unknown section{hint if hint != '.' else known}")
 
 
 def _section(root: Table, key: str, read: Callable[[Table], T]) -> T | None:

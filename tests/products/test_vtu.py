@@ -9,10 +9,13 @@ import pytest
 from vtkmodules.vtkCommonCore import mutable
 from vtkmodules.vtkCommonDataModel import VTK_LAGRANGE_TRIANGLE, VTK_TRIANGLE
 
+from membrane.pipeline import run
 from membrane.products import vtu
 from membrane.records.spectrum import Spectrum
+from membrane.study import study_from
 from membrane.triangle import lattice
 from tests.products.vtk_reader import arrays_of, points_of, read_grid
+from tests.zoo import SQUARE
 
 
 def inside(count: int) -> np.ndarray:
@@ -109,6 +112,21 @@ def test_regions_are_numbered_as_in_the_mesh(patched: Spectrum, tmp_path: Path) 
         ids = [grid.GetCell(number).GetPointId(k) for k in range(3)]
         centre = np.hypot(x[ids].mean(), y[ids].mean())
         assert (names[number] != "head") == (centre < 0.4)
+
+
+@pytest.mark.parametrize("lagrange", [False, True])
+def test_cells_carry_what_they_are_made_of(tmp_path: Path, lagrange: bool) -> None:
+    woven = {"along": "2 kN/m", "across": "1 kN/m", "angle": "90 deg"}
+    varying = {"formula": "0.2 + x", "unit": "kg/m^2"}
+    spectrum = run(study_from({**SQUARE, "head": {"areal_density": varying, "tension": woven}}))
+    vtu.write(spectrum, tmp_path, vtu.Options(lagrange=lagrange))
+    grid = read_grid(tmp_path / vtu.FILE)
+    cells, (x, _, _) = arrays_of(grid.GetCellData()), points_of(grid)
+    expected = np.broadcast_to([1e3, 2e3, 0.0], (grid.GetNumberOfCells(), 3))
+    np.testing.assert_allclose(cells["tension_xx_yy_xy"], expected, atol=1e-9)
+    for number in range(0, grid.GetNumberOfCells(), 20):
+        ids = [grid.GetCell(number).GetPointId(k) for k in range(3)]
+        assert cells["areal_density"][number] == pytest.approx(0.2 + x[ids].mean(), rel=1e-9)
 
 
 @pytest.mark.parametrize("degree", range(1, 13))
