@@ -12,7 +12,7 @@ from threadpoolctl import threadpool_limits
 
 from membrane import plugins
 from membrane.accuracy import estimate
-from membrane.bounds import SPARE, bracketed
+from membrane.bounds import SPARE, bracketed, check_provable
 from membrane.coefficients import coefficients
 from membrane.errors import BracketError, SolveError
 from membrane.kernel import Kernel
@@ -43,6 +43,9 @@ Progress = Callable[[str], None]
 
 MESHES = 6
 """How many meshes are tried, each finer, before the accuracy reached is reported as it is."""
+
+WORTH = 0.7
+"""Share of a bracket's width that a finer mesh may leave: above it, rounding is what is left."""
 
 ALWAYS_WRITTEN = ("table", "modes_csv", "summary")
 """Products of every run; the study's ``products.write`` names the others. The summary comes
@@ -136,24 +139,31 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             outline = draw(kernel, study)
             membrane = coefficients(study, outline)
             resolution = suited_resolution(kernel, outline, membrane, study.modes)
-        for attempt in range(MESHES):
+
+        def meshed(resolution: Resolution, fans: bool) -> Mesh:
             with clock.stage("mesh"):
-                mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
-            solution = _solve_on(mesh, membrane, resolution, study.modes, solver, clock)
-            if solution.excess <= 1.0 or attempt == MESHES - 1:
+                return make_mesh(kernel, outline, membrane, study.modes, resolution, fans=fans)
+
+        tried: list[_Solution] = []
+        for _ in range(MESHES):
+            found = _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
+            tried.append(found)
+            if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
                 break
-            resolution = resolution.finer(solution.excess)
-    return replace(solution, notes=(*outline.notes, *solution.notes))
+            resolution = resolution.finer(found.excess)
+    best = min(tried, key=lambda solution: solution.excess)
+    return replace(best, notes=(*outline.notes, *best.notes))
 
 
 def _solve_on(
-    mesh: Mesh,
+    meshed: Callable[[Resolution, bool], Mesh],
     membrane: Membrane,
     resolution: Resolution,
     wanted: ModesWanted,
     solver: Eigensolver,
     clock: _Clock,
 ) -> _Solution:
+    mesh = meshed(resolution, True)
     with clock.stage("assembly"):
         pencil = assemble(membrane, mesh, resolution.degree)
     with clock.stage("modes"):
@@ -161,7 +171,15 @@ def _solve_on(
         spare = min(SPARE, pencil.M.shape[0] - 1 - count) if wanted.bracket else 0
         more = extract(pencil, count + max(spare, 0), solver, wanted.accuracy)
         modes = lowest(more, count)
-    bracket = _bracket(membrane, mesh, resolution, more, modes, wanted, clock)
+
+    def provable() -> Modes:
+        """The same modes on a mesh that the proofs cover."""
+        if not mesh.has_fans:
+            return more
+        again = assemble(membrane, meshed(resolution.of_proofs, False), resolution.degree)
+        return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
+
+    bracket = _bracket(membrane, mesh, resolution, provable, modes, wanted, clock)
     excess = bracket.widest / wanted.accuracy
     return _Solution(membrane, mesh, pencil, modes, bracket, excess, _why(bracket))
 
@@ -170,7 +188,7 @@ def _bracket(
     membrane: Membrane,
     mesh: Mesh,
     resolution: Resolution,
-    more: Modes,
+    provable: Callable[[], Modes],
     modes: Modes,
     wanted: ModesWanted,
     clock: _Clock,
@@ -179,8 +197,11 @@ def _bracket(
     reason = ""
     if wanted.bracket:
         try:
+            check_provable(membrane)
+            proof = provable()
             with clock.stage("bounds"):
-                return bracketed(membrane, more, len(modes.eigenvalues), wanted.accuracy)
+                found = bracketed(membrane, proof, len(modes.eigenvalues), wanted.accuracy)
+            return found.holding(modes.eigenvalues)
         except BracketError as why:
             reason = str(why)
     with clock.stage("estimate"):

@@ -16,6 +16,7 @@ from numbers import Real
 from pathlib import Path
 from typing import Annotated, Any, TypeAlias
 
+from membrane.common_units import COMMON_UNITS
 from membrane.records.function import Amount, Function
 from membrane.records.sign import Sign
 from membrane.wording import nearest, shown
@@ -25,14 +26,6 @@ _NAME_AND_POWER = r"(?:[^\W\d_]\w*|°)(?:(?:\^|\*\*)-?\d)?"
 _UNIT = re.compile(rf"{_NAME_AND_POWER}(?:(?:\s*[*·/]\s*|\s+){_NAME_AND_POWER}){{0,9}}")
 _LONGEST_UNIT = 60
 _TURN = 2.0 * pi * (1.0 + 1e-9)
-
-_COMMON_UNITS = (
-    *("m", "mm", "cm", "um", "in", "inch", "ft", "meter", "metre", "millimeter", "millimetre"),
-    *("centimeter", "centimetre", "rad", "deg", "degree", "radian", "kg", "g", "kilogram", "gram"),
-    *("N", "kN", "mN", "lbf", "newton", "Hz", "kHz", "hertz", "kilohertz", "cent", "Pa", "kPa"),
-    *("kg/m^2", "g/m^2", "kg/m", "g/m", "N/m", "kN/m", "N/mm", "N/m^2", "N/m^3", "kg/m^3"),
-)
-"""Spellings offered where a unit is unknown."""
 
 
 @dataclass(frozen=True)
@@ -108,7 +101,7 @@ class Quantity:
         try:
             factor, root = _root(unit)
         except ValueError:
-            hint = nearest(unit, _COMMON_UNITS)
+            hint = nearest(unit, COMMON_UNITS)
             reason = f"got {shown(text)}, whose unit is unknown{hint}"
             raise ValueError(self._expected(reason)) from None
         own_factor, own_root = _root(self.unit)
@@ -172,9 +165,13 @@ class _File:
         return core_schema.with_info_plain_validator_function(self.read)
 
 
-@lru_cache(maxsize=256)
 def _root(unit: str) -> tuple[float, str]:
     """Factor and name of pint's root unit. Raises ValueError for an unknown unit."""
+    return COMMON_UNITS.get(unit) or _root_by_pint(unit)
+
+
+@lru_cache(maxsize=256)
+def _root_by_pint(unit: str) -> tuple[float, str]:
     import pint
 
     if len(unit) > _LONGEST_UNIT or not _UNIT.fullmatch(unit):
@@ -252,6 +249,7 @@ VaryingLineTension: TypeAlias = Annotated[Amount, _varying(_LINE_TENSION)]
 PositiveVaryingLineTension: TypeAlias = Annotated[Amount, _varying(_positive(_LINE_TENSION))]
 VaryingBedding: TypeAlias = Annotated[Amount, _varying(_BEDDING)]
 VaryingLineDensity: TypeAlias = Annotated[Amount, _varying(_LINE_DENSITY)]
+VaryingLineStiffness: TypeAlias = Annotated[Amount, _varying(_LINE_STIFFNESS)]
 # an edge may be elastic along a part of it alone
 PositiveVaryingLineStiffness: TypeAlias = Annotated[
     Amount, replace(_positive(_LINE_STIFFNESS), varying=Sign.NOT_NEGATIVE)

@@ -2,5 +2,6 @@
 
 from membrane.bounds.bracket import bracketed
 from membrane.bounds.gap import SPARE
+from membrane.bounds.provable import check_provable
 
-__all__ = ["SPARE", "bracketed"]
+__all__ = ["SPARE", "bracketed", "check_provable"]

@@ -13,7 +13,7 @@ from membrane.bounds.pieces import pieces
 from membrane.bounds.provable import unproven
 from membrane.bounds.rims import rims
 from membrane.bounds.ritz import forms
-from membrane.errors import BracketError
+from membrane.errors import BracketError, SolveError
 from membrane.pitch import CENTS_PER_EIGENVALUE
 from membrane.records.arrays import Floats
 from membrane.records.bracket import GUARANTEED, Bracket
@@ -45,7 +45,10 @@ def bracketed(membrane: Membrane, modes: Modes, count: int, accuracy: float) -> 
         raise BracketError(reason)
     head = head_of(membrane, modes.space.mesh)
     kept = widest_gap(modes.eigenvalues, count)
-    return _Bounds(head, modes, kept).bracket(count, accuracy, membrane.moves_rigidly)
+    try:
+        return _Bounds(head, modes, kept).bracket(count, accuracy, membrane.moves_rigidly)
+    except (SolveError, np.linalg.LinAlgError) as failure:
+        raise BracketError("rounding spoils the lower bounds on this mesh") from failure
 
 
 class _Bounds:

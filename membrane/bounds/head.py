@@ -44,6 +44,11 @@ class Head:
         return np.asarray(count == 1)
 
     @cached_property
+    def free(self) -> Bools:
+        """(n_facets,): which sides of the border nothing holds."""
+        return np.asarray(self.border & ~self.fixed & (self.spring == 0.0))
+
+    @cached_property
     def bent(self) -> Bools:
         """(n_facets,): which sides are not straight."""
         bent = np.zeros(self.facets.size, dtype=bool)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from membrane.errors import BracketError
 from membrane.records.function import Function
 from membrane.records.membrane import Field, Membrane
 
@@ -10,6 +11,13 @@ UNPROVEN = {
     Field.LINE_MASS: "a line bears mass",
     Field.LINE_STIFFNESS: "a line bears springs",
 }
+
+
+def check_provable(membrane: Membrane) -> None:
+    """Raise BracketError where no bracket of a membrane can be guaranteed."""
+    reason = unproven(membrane)
+    if reason:
+        raise BracketError(reason)
 
 
 def unproven(membrane: Membrane) -> str:

@@ -6,11 +6,10 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
-from scipy.special import roots_legendre
 
 from membrane.bounds.head import Head
 from membrane.records.arrays import Floats, Ints
-from membrane.triangle import EDGES, nodes, shapes
+from membrane.triangle import EDGES, gauss, nodes, shapes
 
 EXTRA = 24
 """Degree that bent sides are given beyond that of the integrand."""
@@ -41,7 +40,7 @@ class Rim:
 def rims(head: Head, degree: int) -> Iterator[Rim]:
     """The sprung sides. ``degree`` : of the integrands along them."""
     bend = EXTRA if head.bent.any() else 0
-    x, weights = roots_legendre((degree + bend) // 2 + 1)
+    x, weights = gauss((degree + bend) // 2 + 1, 0, 0)
     for edge in range(3):
         facet = head.facets.of_triangle[edge]
         triangles = np.nonzero(head.spring[facet] > 0.0)[0]

@@ -109,8 +109,8 @@ def _patch(patch: Patch, source: Mapping[str, Any]) -> str:
 
 def _load(load: LineLoad) -> str:
     parts = [
-        load.density > 0.0 and f"line density {load.density:g} kg/m",
-        load.stiffness > 0.0 and f"line stiffness {load.stiffness:g} N/m^2",
+        _named("line density", load.density or None, "kg/m"),
+        _named("line stiffness", load.stiffness or None, "N/m^2"),
     ]
     return "; ".join([_shape(load.line), *(part for part in parts if part)])
 

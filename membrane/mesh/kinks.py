@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from membrane.mesh.corner import Corner
+from membrane.mesh.corner import Corner, Term
 from membrane.records.arrays import Floats
 from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Field, Membrane
@@ -34,7 +34,7 @@ def kinks(outline: Outline, membrane: Membrane, raw: RawMesh) -> tuple[Corner, .
         distance = np.hypot(*(raw.vertices - place[:, None]))
         vertex = int(np.argmin(distance))
         if distance[vertex] < NEAR * size:
-            found.append(Corner(vertex, _exponent(membrane, place, size)))
+            found.append(Corner(vertex, (Term(_exponent(membrane, place, size)),)))
     return tuple(found)
 
 

@@ -1,7 +1,8 @@
-"""Points spread over regions and along edges, where varying coefficients are looked at."""
+"""Points on regions, edges and line loads where varying coefficients are looked at."""
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from math import sqrt
 
 import numpy as np
@@ -16,16 +17,18 @@ ACROSS = 8.0
 """About how many triangles there are across a region."""
 
 PARTS = 5
-"""Into how many parts the sides of a triangle, and the segments of an edge, are divided."""
+"""Into how many parts the sides of a triangle, and the segments of a line, are divided."""
 
 
 def samples(kernel: Kernel, outline: Outline) -> dict[str, Samples]:
-    """Samples of every region and every edge, by name."""
+    """Samples of every region, edge and line load, by name."""
     sizes = {region.name: sqrt(region.area) / ACROSS for region in outline.regions}
     raw = kernel.triangulate(outline, sizes)
     regions = {r.name: _within(raw, np.isin(raw.face, r.faces)) for r in outline.regions}
-    edges = {name: _along(kernel, outline, raw, name) for name in outline.edges}
-    return {**regions, **edges}
+    curves = outline.curves
+    edges = {n: _along(kernel, raw, [c.tag for c in curves if n in c.edges]) for n in outline.edges}
+    lines = {n: _along(kernel, raw, [c.tag for c in curves if n in c.lines]) for n in outline.lines}
+    return {**regions, **edges, **lines}
 
 
 def _within(raw: RawMesh, chosen: Bools) -> Samples:
@@ -39,10 +42,10 @@ def _within(raw: RawMesh, chosen: Bools) -> Samples:
     return Samples(points, areas / areas.sum())
 
 
-def _along(kernel: Kernel, outline: Outline, raw: RawMesh, edge: str) -> Samples:
+def _along(kernel: Kernel, raw: RawMesh, curves: Iterable[int]) -> Samples:
     shares = (np.arange(PARTS) + 0.5) / PARTS
     points, lengths = [], []
-    for curve in (curve.tag for curve in outline.curves if edge in curve.edges):
+    for curve in curves:
         mine = raw.segment_curve == curve
         start, stop = raw.segment_parameters[:, mine]
         parameters = (start[:, None] + shares * (stop - start)[:, None]).ravel()

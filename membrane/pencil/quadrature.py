@@ -5,12 +5,11 @@ from __future__ import annotations
 from functools import cache
 
 import numpy as np
-from scipy.special import roots_legendre
 from skfem.quadrature import get_quadrature
 from skfem.refdom import RefTri
 
 from membrane.records.arrays import Floats
-from membrane.triangle import collapsed_rule
+from membrane.triangle import collapsed_rule, gauss
 
 HIGHEST_TABLE = 19
 """Highest order of scikit-fem's own rules on the triangle."""
@@ -31,5 +30,5 @@ def triangle_rule(order: int) -> tuple[Floats, Floats]:
 @cache
 def line_rule(order: int) -> tuple[Floats, Floats]:
     """Points (1, n) and weights (n,) on [0, 1], exact for polynomials of that order."""
-    x, weights = roots_legendre(order // 2 + 1)
+    x, weights = gauss(order // 2 + 1, 0, 0)
     return (1 + x[None]) / 2, weights / 2

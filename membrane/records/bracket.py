@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -38,3 +38,8 @@ class Bracket:
         with np.errstate(divide="ignore"):
             ratio[moving] = self.high[moving] / self.low[moving]
         return np.asarray(CENTS_PER_EIGENVALUE * np.log(ratio))
+
+    def holding(self, eigenvalues: Floats) -> Bracket:
+        """The bracket, widened where a better mesh's rounding puts a value (n,) just outside."""
+        low, high = np.minimum(self.low, eigenvalues), np.maximum(self.high, eigenvalues)
+        return replace(self, low=low, high=high)

@@ -73,7 +73,7 @@ class OwnForm:
 class Membrane:
     """All contributions, and the names of the edges that are held at zero.
 
-    samples : name of a region or an edge -> where its varying fields are looked at
+    samples : name of a region, an edge or a line load -> where its varying fields are looked at
     """
 
     contributions: tuple[Contribution, ...]
@@ -82,20 +82,20 @@ class Membrane:
     samples: Mapping[str, Samples] = dataclass_field(default_factory=dict)
 
     def parts(self, field: Field, where: str) -> tuple[Contribution, ...]:
-        """The contributions to a field on one region or edge."""
+        """The contributions to a field on one region, edge or line load."""
         return tuple(c for c in self.contributions if c.field is field and where in c.where)
 
     def varies(self, field: Field, where: str) -> bool:
-        """Whether a field is a function of place on one region or edge."""
+        """Whether a field is a function of place on one region, edge or line load."""
         return any(isinstance(c.value, Function) for c in self.parts(field, where))
 
     def at(self, field: Field, where: str, points: Floats) -> Floats:
-        """A field on one region or edge, SI, at ``points`` (2, n): (n,), or (n, 2, 2)."""
+        """A field on a region, edge or line load, SI, at ``points`` (2, n): (n,), or (n, 2, 2)."""
         parts = [c.at(points) for c in self.parts(field, where)]
         return sum(parts[1:], parts[0]) if parts else np.zeros(points.shape[1])
 
     def sampled(self, field: Field, where: str) -> Floats:
-        """A field on one region or edge, SI, at its samples: (n,), or (n, 2, 2).
+        """A field on one region, edge or line load, SI, at its samples: (n,), or (n, 2, 2).
 
         n is 1 where the field is constant.
         """

@@ -86,7 +86,7 @@ class Curve:
 
 @dataclass(frozen=True)
 class Samples:
-    """Points spread over a region or along an edge.
+    """Points spread over a region or along an edge or a line load.
 
     points : (2, n), metres
     weights : (n,), their shares of the area or the length, 1 together
@@ -101,7 +101,8 @@ class Outline:
     """The cut outline as it stands in the open kernel session.
 
     notes : sentences for the user on how its shapes were come by
-    samples : name of a region or an edge -> its samples; empty where no coefficient can vary
+    samples : name of a region, an edge or a line load -> its samples; empty where no
+        coefficient can vary
     """
 
     regions: tuple[Region, ...]

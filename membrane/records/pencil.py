@@ -80,6 +80,16 @@ class Pencil:
         first = len(self.stiffness)
         return self.pattern.total((q, part.scale) for q, part in enumerate(self.mass, first))
 
+    def shifted(self, shift: float) -> Any:
+        """K - shift M, CSC; with the entries of K where M has the same ones."""
+        from scipy.sparse import csc_array
+
+        K, M = self.K, self.M
+        same = np.array_equal(K.indptr, M.indptr) and np.array_equal(K.indices, M.indices)
+        if not same:
+            return K - shift * M
+        return csc_array((K.data - shift * M.data, K.indices, K.indptr), shape=K.shape)
+
     @property
     def keys(self) -> frozenset[str]:
         """The study keys that scale a part."""

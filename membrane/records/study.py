@@ -135,8 +135,8 @@ class LineLoad:
 
     name: str
     line: Shape
-    density: float = 0.0
-    stiffness: float = 0.0
+    density: Amount = 0.0
+    stiffness: Amount = 0.0
 
 
 @dataclass(frozen=True)
@@ -256,6 +256,8 @@ class Study:
             *(patch.added_density for patch in self.patches),
             *(edge.stiffness for edge in self.edges.values()),
             *(edge.mass for edge in self.edges.values()),
+            *(load.density for load in self.line_loads),
+            *(load.stiffness for load in self.line_loads),
         )
         found = (amount for amount in amounts if isinstance(amount, Function))
         return tuple(function.moved(self.outline.at) for function in found)

@@ -10,7 +10,7 @@ from membrane.study.edges import EDGE_KEYS, read_edge
 from membrane.study.layers import read_name
 from membrane.study.shapes import Kinds, read_shape
 from membrane.study.table import Table
-from membrane.units import LineDensity, LineStiffness
+from membrane.units import VaryingLineDensity, VaryingLineStiffness
 
 _LOADS = ("line_density", "line_stiffness")
 _LIPS = ("left", "right")
@@ -18,8 +18,8 @@ _LIPS = ("left", "right")
 
 @dataclass(frozen=True)
 class _Loads:
-    line_density: LineDensity = 0.0
-    line_stiffness: LineStiffness = 0.0
+    line_density: VaryingLineDensity = 0.0
+    line_stiffness: VaryingLineStiffness = 0.0
 
 
 def read_line_load(table: Table, base: Path) -> LineLoad | None:

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from membrane.records.membrane import Contribution, Field
 from membrane.records.outline import Outline
 from membrane.records.study import Study
+from membrane.terms.amounts import contribution, is_there
 
 
 @dataclass(frozen=True)
@@ -18,6 +19,6 @@ class Options:
 def contribute(study: Study, options: Options, outline: Outline) -> Iterator[Contribution]:
     """One contribution for each line load that has mass."""
     for load in study.line_loads:
-        if load.density > 0.0:
+        if is_there(load.density):
             key = f"line_loads.{load.name}.line_density"
-            yield Contribution(key, Field.LINE_MASS, (load.name,), load.density)
+            yield contribution(study, key, Field.LINE_MASS, (load.name,), load.density)

@@ -5,6 +5,7 @@ lower to the higher vertex, then the interior: the order that scikit-fem uses.
 """
 
 from membrane.triangle.fluxes import across, flux_shapes
+from membrane.triangle.jacobi import gauss
 from membrane.triangle.lattice import Lattice, lattice
 from membrane.triangle.nodes import EDGES, lobatto, nodes
 from membrane.triangle.rule import collapsed_rule
@@ -16,6 +17,7 @@ __all__ = [
     "across",
     "collapsed_rule",
     "flux_shapes",
+    "gauss",
     "lattice",
     "lobatto",
     "nodes",

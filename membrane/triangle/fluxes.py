@@ -6,9 +6,9 @@ from functools import cache
 
 import numpy as np
 from numpy.polynomial.legendre import legvander
-from scipy.special import roots_legendre
 
 from membrane.records.arrays import Floats
+from membrane.triangle.jacobi import gauss
 from membrane.triangle.nodes import EDGES, nodes
 from membrane.triangle.polynomials import orthonormal
 
@@ -62,7 +62,7 @@ def _to_moments(degree: int) -> Floats:
 
 def _edge_moments(edge: int, degree: int) -> Floats:
     """(k, n_shapes): integrals of the flux across an edge times each Legendre polynomial."""
-    x, weights = roots_legendre(degree + 1)
+    x, weights = gauss(degree + 1, 0, 0)
     low, high = (nodes(1)[:, [vertex]] for vertex in EDGES[edge])
     values, _ = _plain(low + (high - low) * (1 + x) / 2, degree)
     crossing = np.tensordot(across(edge), values, axes=1)
@@ -71,7 +71,7 @@ def _edge_moments(edge: int, degree: int) -> Floats:
 
 def _inner_moments(degree: int) -> Floats:
     """(k (k - 1), n_shapes): integrals times (p, 0) and (0, p) for all p of P_(k-2)."""
-    x, weights = roots_legendre(degree + 1)
+    x, weights = gauss(degree + 1, 0, 0)
     s, t = (grid.ravel() for grid in np.meshgrid((1 + x) / 2, (1 + x) / 2))
     points = np.stack([s * (1 - t), t])
     area = np.outer(weights, weights).ravel() / 4 * (1 - t)

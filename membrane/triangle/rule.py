@@ -5,9 +5,9 @@ from __future__ import annotations
 from functools import cache
 
 import numpy as np
-from scipy.special import roots_jacobi
 
 from membrane.records.arrays import Floats
+from membrane.triangle.jacobi import gauss
 
 
 @cache
@@ -17,8 +17,8 @@ def collapsed_rule(order: int) -> tuple[Floats, Floats]:
     The Gauss-Jacobi rule of the square, collapsed onto the triangle.
     """
     n = order // 2 + 1
-    x, x_weights = roots_jacobi(n, 0, 0)
-    y, y_weights = roots_jacobi(n, 1, 0)
+    x, x_weights = gauss(n, 0, 0)
+    y, y_weights = gauss(n, 1, 0)
     x, y = (1 + x) / 2, (1 + y) / 2
     points = np.stack([np.outer(x, 1 - y), np.outer(np.ones(n), y)]).reshape(2, -1)
     return points, np.outer(x_weights, y_weights).ravel() / 8

@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from scipy.special import jv, yv
+from scipy.special import jv, jvp, yv
 
+from membrane import run, study_from
 from tests.reference.solve import DISC, FREE, eigenvalues, error, roots
 
 pytestmark = pytest.mark.slow
@@ -106,3 +107,68 @@ def test_open_lines_converge(lines):
     """No closed form: the shortest study against one that asks for a thousandth of the error."""
     finer = eigenvalues(DISC, line_loads=lines, modes={"accuracy": 1e-5})
     assert error(eigenvalues(DISC, line_loads=lines), finer) < 2e-9
+
+
+def going_round(radius, mass, stiffness, top=8.5, size=22):
+    """Unit disc, fixed, with a ring whose mass and stiffness are even functions of theta.
+
+    The ring's jump of slope couples the orders m of the series a_m J_m(k r) cos(m theta), or
+    sin, in the equation of the rim above: diag(J_m(k)) a + cross (load) J(k r0) a = 0. Rows
+    and columns are scaled so that no order outweighs another. Derived here.
+    """
+    angles = np.linspace(0.0, 2 * np.pi, 4 * size, endpoint=False)
+    found = []
+    for wave, first, parity in [(np.cos, 0, 0), (np.cos, 0, 1), (np.sin, 1, 0), (np.sin, 1, 1)]:
+        orders = np.array([m for m in range(first, size) if m % 2 == parity])
+        shapes = wave(np.outer(orders, angles))
+        norms = (shapes**2).sum(axis=1)
+        masses, springs = (
+            (shapes * f(angles)) @ shapes.T / norms[:, None] for f in (mass, stiffness)
+        )
+
+        def determinant(k, orders=orders, masses=masses, springs=springs):
+            there, rim, slope = jv(orders, k * radius), jv(orders, k), jvp(orders, k)
+            cross = there * yv(orders, k) - yv(orders, k * radius) * rim
+            rows = radius ** orders.astype(float)
+            columns = 1.0 / (rows * np.hypot(rim, slope))
+            load = (0.5 * np.pi * radius * cross)[:, None] * (springs - k**2 * masses) * there
+            return np.linalg.det(rows[:, None] * (np.diag(rim) + load) * columns)
+
+        found += [k**2 for k in roots(np.vectorize(determinant), 0.5, top, 1500)]
+    return np.sort(found)[:20]
+
+
+RING = {"name": "ring", "shape": "disc", "diameter": 1.2}
+
+
+def test_the_series_of_a_ring_itself():
+    """A ring that is alike all round: order by order, as above."""
+    alike = going_round(0.6, lambda t: 0.4 + 0 * t, lambda t: 7.0 + 0 * t)
+    assert error(alike, ring_spectrum(0.6, 0.4, 7.0)) < 1e-10
+
+
+def test_a_ring_whose_mass_and_stiffness_go_round():
+    loads = {
+        "line_density": {"formula": "0.3*(1 + 0.8*cos(2*theta))"},
+        "line_stiffness": {"formula": "5 + 4*cos(2*theta)"},
+    }
+    exact = going_round(
+        0.6, lambda t: 0.3 * (1 + 0.8 * np.cos(2 * t)), lambda t: 5 + 4 * np.cos(2 * t)
+    )
+    assert error(eigenvalues(DISC, line_loads=[{**RING, **loads}]), exact) < 1e-9
+
+
+def test_a_constant_formula_of_a_line_is_the_constant():
+    by_formula = {"line_density": {"formula": "300 + 0*x", "unit": "g/m"}}
+    one = eigenvalues(DISC, line_loads=[{**RING, **by_formula}])
+    assert error(one, ring_spectrum(0.6, 0.3, 0.0)) < 1e-9
+
+
+def test_springs_in_proportion_to_all_mass_shift_every_eigenvalue():
+    """K + c M has the eigenvalues of K, each raised by c; here along a straight wire."""
+    line = wire("w", [0.2, 0.1], [0.8, 0.6], line_density={"formula": "0.2 + x*y"})
+    plain = eigenvalues(BOX, line_loads=[line])
+    sprung = {**line, "line_stiffness": {"formula": "3*(0.2 + x*y)"}}
+    bedded = {"areal_density": 1.0, "tension": 1.0, "bedding": 3.0}
+    shifted = run(study_from({"outline": BOX, "head": bedded, "line_loads": [sprung]}))
+    assert error(shifted.modes.eigenvalues[:20] - 3.0, plain) < 1e-9
