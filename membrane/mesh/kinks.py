@@ -11,8 +11,12 @@ from membrane.records.membrane import Contribution, Field, Membrane
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh
 
-OF_DENSITY = 2.0
-"""Exponent at a kink of the density, the bedding or an edge: u has r^2 where they only jump."""
+OF_DENSITY = 1.0
+"""Exponent at a kink of the density, the bedding or an edge.
+
+A mode has r^2 and more there, but the mass within r, of which quadrature misses a part, may go
+like little more than r^2, as the energy of a term r does.
+"""
 
 OF_TENSION = 1.0
 """Exponent at a kink of the tension that does not jump, such as a root of r."""
