@@ -38,6 +38,14 @@ potential of a charge c u: that of a charged half line has r log r at its end.
 """
 
 
+NEAR = 1e-6
+"""How far off a line a vertex on it may be, in lengths of a segment beside it."""
+
+ON_HEAD = (Field.AREAL_DENSITY, Field.BEDDING)
+ON_EDGES = (Field.EDGE_STIFFNESS, Field.EDGE_MASS)
+ON_LINES = (Field.LINE_STIFFNESS, Field.LINE_MASS)
+
+
 @dataclass(frozen=True)
 class Ray:
     """A kernel curve leaving a vertex.
@@ -243,6 +251,8 @@ class _Fan:
     def exponent(self, fan: list[Wedge]) -> float:
         """Smallest exponent that spoils smoothness; infinite where none does."""
         tensions = [self._here(Field.TENSION, w.region) for w in fan]
+        if any(self._breaks(Field.TENSION, w.region, fan) for w in fan):
+            return TENSION_JUMP
         if any(not np.allclose(tensions[0], other, rtol=1e-12) for other in tensions):
             return TENSION_JUMP
         if not fan[0].first.parts:
@@ -255,7 +265,11 @@ class _Fan:
         loads = [self.holds.loads(wedge.first) for wedge in fan]
         if not _balanced(loads, [wedge.first.tangent for wedge in fan], tension):
             return LOAD_ENDS
+        lines = {line for wedge in fan for line in wedge.first.lines}
+        if any(self._breaks(f, line, fan) for f in ON_LINES for line in lines):
+            return LOAD_ENDS
         jumps = not np.allclose(densities[0], densities, rtol=1e-12)
+        jumps = jumps or any(self._breaks(f, w.region, fan) for f in ON_HEAD for w in fan)
         return 2.0 if jumps or np.any(loads) else inf
 
     def _at_edge(self, fan: list[Wedge], tension: Floats) -> float:
@@ -266,7 +280,9 @@ class _Fan:
         springs = [self.holds.springs(edge) for edge in (first, last)]
         loads = [self.holds.loads(wedge.first) for wedge in fan[1:]]
         straight = abs(opening - pi) < WHOLE
-        if held == {False} and (np.any(loads) or (straight and springs[0] != springs[1])):
+        breaks = any(self._breaks(f, edge, fan) for f in ON_EDGES for edge in (first, last))
+        changing = straight and (breaks or springs[0] != springs[1])
+        if held == {False} and (np.any(loads) or changing):
             return min(leading, LOAD_ENDS)
         if abs(leading - round(leading)) > WHOLE * leading:
             return leading
@@ -275,6 +291,11 @@ class _Fan:
         if bent or np.any(springs) or several:
             return leading + 1.0
         return leading + _weaker_by(self.membrane, str(fan[0].region))
+
+    def _breaks(self, field: Field, name: str | None, fan: list[Wedge]) -> bool:
+        """Whether a field may jump or kink along a line through the vertex."""
+        slack = NEAR * fan[0].first.length
+        return self.membrane.breaks_at(field, str(name), tuple(self.place[:, 0]), slack)
 
     def _here(self, field: Field, name: str | None) -> Floats:
         """A field of a region at the vertex, or its mean where it has no sound value there."""
