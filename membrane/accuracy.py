@@ -41,3 +41,17 @@ def estimate(fine: Modes, coarse: Modes, wanted: float) -> Estimate:
     apart = CENTS_PER_OCTAVE * np.log2(fine.frequencies[moving] / known[moving])
     cents[moving] = np.maximum(np.abs(apart), ROUNDING)
     return Estimate(cents, float(2 * cents.max() / wanted))
+
+
+def widened(known: Estimate, modes: Modes, others: Modes, wanted: float) -> Estimate:
+    """An estimate for coefficients that break across triangles, from the modes on two meshes.
+
+    There the error comes from the quadrature and is as good as random: every frequency may
+    be off by twice the largest distance between the two meshes.
+    """
+    count = min(len(modes.frequencies), len(others.frequencies))
+    one, other = modes.frequencies[:count], others.frequencies[:count]
+    moving = (one > 0.0) & (other > 0.0)
+    apart = CENTS_PER_OCTAVE * np.abs(np.log2(one[moving] / other[moving]))
+    cents = known.cents + 2.0 * apart.max(initial=0.0) * (modes.frequencies > 0.0)
+    return Estimate(cents, float(2 * cents.max() / wanted))

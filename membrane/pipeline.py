@@ -12,7 +12,7 @@ import numpy as np
 from threadpoolctl import threadpool_limits
 
 from membrane import plugins
-from membrane.accuracy import Estimate, estimate
+from membrane.accuracy import Estimate, estimate, widened
 from membrane.coefficients import coefficients
 from membrane.errors import SolveError
 from membrane.kernel import Kernel
@@ -134,14 +134,39 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             outline = draw(kernel, study)
             membrane = coefficients(study, outline)
             resolution = suited_resolution(kernel, outline, membrane, study.modes)
-        for attempt in range(MESHES):
+
+        def solved(resolution: Resolution) -> _Solution:
             with clock.stage("mesh"):
                 mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
-            solution = _solve_on(mesh, membrane, resolution, study.modes, solver, clock)
-            if solution.error.excess <= 1.0 or attempt == MESHES - 1:
-                break
-            resolution = resolution.finer(solution.error.excess)
+            return _solve_on(mesh, membrane, resolution, study.modes, solver, clock)
+
+        if any(function.notes for function in study.functions):
+            solution = _across(solved, resolution, study.modes.accuracy)
+        else:
+            solution = _until_met(solved, resolution)
     return replace(solution, notes=outline.notes)
+
+
+def _until_met(solved: Callable[[Resolution], _Solution], resolution: Resolution) -> _Solution:
+    """The first solution that is accurate enough, on a finer mesh each time."""
+    for _ in range(MESHES - 1):
+        solution = solved(resolution)
+        if solution.error.excess <= 1.0:
+            return solution
+        resolution = resolution.finer(solution.error.excess)
+    return solved(resolution)
+
+
+def _across(
+    solved: Callable[[Resolution], _Solution], resolution: Resolution, wanted: float
+) -> _Solution:
+    """The solution on the second of two meshes, where a coefficient may break across triangles.
+
+    Finer ones would hardly help; how far the two are apart tells how far off both are.
+    """
+    first = solved(resolution)
+    second = solved(resolution.finer(max(first.error.excess, 1.0)))
+    return replace(second, error=widened(second.error, second.modes, first.modes, wanted))
 
 
 def _solve_on(

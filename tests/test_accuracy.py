@@ -5,7 +5,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from membrane.accuracy import ROUNDING, estimate
+from membrane.accuracy import ROUNDING, estimate, widened
 from membrane.records.modes import Modes
 
 
@@ -36,3 +36,11 @@ def test_more_modes_of_the_coarse_solve_are_left_alone():
 def test_excess_is_the_whole_interval_over_the_wanted_one(off):
     found = estimate(modes(100.0), modes(100.0 * 2 ** (off / 1200)), 0.04)
     assert abs(found.excess / (2 * off / 0.04) - 1) < 1e-6
+
+
+def test_two_meshes_widen_every_interval_by_twice_their_largest_distance():
+    known = estimate(modes(0.0, 100.0, 200.0), modes(0.0, 100.0, 200.0), 1.0)
+    other = modes(0.0, 100.0 * 2 ** (3 / 1200), 200.0)
+    found = widened(known, modes(0.0, 100.0, 200.0), other, 1.0)
+    np.testing.assert_allclose(found.cents, [0.0, 6.0, 6.0], atol=1e-6)
+    assert abs(found.excess - 12.0) < 1e-5

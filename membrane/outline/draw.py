@@ -6,7 +6,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 from membrane.kernel import Kernel
-from membrane.outline.curves import check_lines, curves
+from membrane.outline.curves import check_lines, check_loads, curves
 from membrane.outline.cut import Cut, cut
 from membrane.outline.names import names
 from membrane.outline.place import Placed, place
@@ -28,6 +28,7 @@ def draw(kernel: Kernel, study: Study) -> Outline:
     pieces = cut(kernel, outline.surface, _faces(patches), _faces(holes), points, known.cuts)
     named = curves(kernel, pieces, known)
     check_lines(kernel, known, named)
+    check_loads(study, named)
     check_whole(kernel, named, pieces.patches)
     check_slivers(kernel, named, pieces.patches)
     kernel.keep_only(pieces.patches)

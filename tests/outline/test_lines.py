@@ -61,6 +61,7 @@ def test_two_loads_share_a_curve():
     [
         ({"line_loads": [wire("w", [-1.2, 0], [1, 0])]}, "w lies outside the head by 200 mm"),
         ({"line_loads": [wire("w", [-1, 2], [1, 2])]}, "w lies wholly outside the head"),
+        ({"line_loads": [hoop(2.0)]}, "hoop runs along the edge rim, which is fixed"),
         ({"line_loads": [hoop(1.0, 0.7, 0.0)]}, "hoop lies outside the head by 1.19e"),
         (
             {
