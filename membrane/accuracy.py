@@ -2,49 +2,38 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import replace
 
 import numpy as np
 
-from membrane.pitch import CENTS_PER_OCTAVE
-from membrane.records.arrays import Floats
+from membrane.pitch import CENTS_PER_EIGENVALUE, CENTS_PER_OCTAVE
+from membrane.records.bracket import ESTIMATED, Bracket
 from membrane.records.modes import Modes
 
 ROUNDING = 1e-8
 """Cents below which an estimate says nothing: the rounding of graded meshes."""
 
 
-@dataclass(frozen=True)
-class Estimate:
-    """What is known of the error.
-
-    cents : (n,), how far off each frequency may be, up or down
-    excess : the widest interval over the wanted one
-    """
-
-    cents: Floats
-    excess: float
-
-
-def estimate(fine: Modes, coarse: Modes, wanted: float) -> Estimate:
-    """The two solves' distance, which is nearly all the coarser one's error.
+def estimate(fine: Modes, coarse: Modes, reason: str) -> Bracket:
+    """The two solves' distance, up and down, which is nearly all the coarser one's error.
 
     The finer solve is closer to the truth wherever the elements converge, so the estimate
     is pessimistic: by orders of magnitude for smooth modes, by a factor of one to three at
     corners, where only the mesh and not the degree helps.
 
-    wanted : cents from the low to the high end
+    reason : why nothing better is known
     """
     known = coarse.frequencies[: len(fine.eigenvalues)]
     moving = fine.frequencies > 0.0
     cents = np.zeros(len(moving))
     apart = CENTS_PER_OCTAVE * np.log2(fine.frequencies[moving] / known[moving])
     cents[moving] = np.maximum(np.abs(apart), ROUNDING)
-    return Estimate(cents, float(2 * cents.max() / wanted))
+    spread = np.exp(cents / CENTS_PER_EIGENVALUE)
+    return Bracket(fine.eigenvalues / spread, fine.eigenvalues * spread, ESTIMATED, reason)
 
 
-def widened(known: Estimate, modes: Modes, others: Modes, wanted: float) -> Estimate:
-    """An estimate for coefficients that break across triangles, from the modes on two meshes.
+def widened(known: Bracket, modes: Modes, others: Modes) -> Bracket:
+    """Estimates for coefficients that break across triangles, from the modes on two meshes.
 
     There the error comes from the quadrature and is as good as random: every frequency may
     be off by twice the largest distance between the two meshes.
@@ -53,5 +42,5 @@ def widened(known: Estimate, modes: Modes, others: Modes, wanted: float) -> Esti
     one, other = modes.frequencies[:count], others.frequencies[:count]
     moving = (one > 0.0) & (other > 0.0)
     apart = CENTS_PER_OCTAVE * np.abs(np.log2(one[moving] / other[moving]))
-    cents = known.cents + 2.0 * apart.max(initial=0.0) * (modes.frequencies > 0.0)
-    return Estimate(cents, float(2 * cents.max() / wanted))
+    spread = np.exp(2.0 * apart.max(initial=0.0) / CENTS_PER_EIGENVALUE)
+    return replace(known, low=known.low / spread, high=known.high * spread)

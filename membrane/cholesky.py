@@ -6,16 +6,16 @@ where it is installed; else SuperLU in its symmetric mode, slower and to the sam
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
 import numpy as np
-from scipy.sparse import tril
-from scipy.sparse.linalg import splu
 
 from membrane.errors import SolveError
-from membrane.records.arrays import Floats
+from membrane.records.arrays import Bools, Floats
 
 Solve = Callable[[Floats], Floats]
 
@@ -67,25 +67,80 @@ def _cholmod() -> Any:
     return cholmod
 
 
-def _lower(A: Any) -> Any:
-    from cvxopt import matrix, spmatrix
+@dataclass(frozen=True)
+class _Pattern:
+    """Where a matrix has entries, ready for CHOLMOD.
 
-    low = tril(A).tocoo()
-    rows, columns = (matrix(index.astype(np.int64)) for index in (low.row, low.col))
-    return spmatrix(matrix(low.data), rows, columns, A.shape)
+    indptr, indices : the columns of the whole matrix
+    kept : which of its entries are in the lower triangle
+    lower : cvxopt's matrix of ones there
+    order : the elimination order
+    """
+
+    indptr: Any
+    indices: Any
+    kept: Bools
+    lower: Any
+    order: Any
+
+    def is_of(self, A: Any) -> bool:
+        """Whether a matrix has its entries just here."""
+        return np.array_equal(A.indptr, self.indptr) and np.array_equal(A.indices, self.indices)
+
+    def filled(self, A: Any) -> Any:
+        """The lower triangle of a matrix, for CHOLMOD."""
+        from cvxopt import matrix
+
+        lower = +self.lower
+        lower.V = matrix(A.data[self.kept])
+        return lower
+
+
+_last: list[_Pattern] = []
+"""The pattern met last: a pencil's matrices share theirs, and cvxopt takes as long to read and
+order a matrix as to factorise it."""
+
+
+def _pattern(A: Any) -> _Pattern:
+    if not (_last and _last[0].is_of(A)):
+        _last[:] = [_new_pattern(A)]
+    return _last[0]
+
+
+def _new_pattern(A: Any) -> _Pattern:
+    from cvxopt import amd, matrix, spmatrix
+
+    columns = np.repeat(np.arange(A.shape[0]), np.diff(A.indptr))
+    kept = A.indices >= columns
+    rows = A.indices[kept].astype(np.int64)
+    lower = spmatrix(1.0, matrix(rows), matrix(columns[kept]), A.shape)
+    return _Pattern(A.indptr, A.indices, kept, lower, amd.order(lower))
+
+
+@contextmanager
+def _options(**chosen: Any) -> Iterator[None]:
+    """CHOLMOD's options, which all of a process share, as chosen for a while."""
+    options = _cholmod().options
+    before = dict(options)
+    options.update(chosen)
+    try:
+        yield
+    finally:
+        options.clear()
+        options.update(before)
 
 
 def _cholmod_factor(A: Any, kind: int) -> Any:
-    cholmod, low = _cholmod(), _lower(A)
-    before = cholmod.options.get("supernodal", SUPERNODAL)
-    cholmod.options["supernodal"] = kind
+    A = A.tocsc()
+    A.sum_duplicates()  # and sorts each column
+    cholmod, pattern = _cholmod(), _pattern(A)
+    lower = pattern.filled(A)
     try:
-        factor = cholmod.symbolic(low)
-        cholmod.numeric(low, factor)
+        with _options(supernodal=kind, nmethods=1):
+            factor = cholmod.symbolic(lower, p=pattern.order)
+            cholmod.numeric(lower, factor)
     except ArithmeticError as failure:
         raise SolveError(_NOT_FACTORED[kind]) from failure
-    finally:
-        cholmod.options["supernodal"] = before
     return factor
 
 
@@ -112,6 +167,8 @@ def _cholmod_pivots(A: Any) -> Floats:
 
 
 def _superlu(A: Any) -> Any:
+    from scipy.sparse.linalg import splu
+
     # without these options SuperLU pivots freely and orders for unsymmetric matrices
     options = {"SymmetricMode": True}
     return splu(A.tocsc(), permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options=options)

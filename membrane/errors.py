@@ -8,6 +8,7 @@
     │   └── DrawingError              a drawing that holds no sound outline
     ├── MeshError                     no valid mesh could be made
     ├── SolveError                    the modes could not be found or counted
+    ├── EngineError                   the processes of a sweep could not be had, or were lost
     └── OutputError                   a result could not be written or read
 
 A message is one sentence that says what is wrong and what to do about it.
@@ -76,6 +77,14 @@ class MeshError(MembraneError):
 
 class SolveError(MembraneError):
     """Modes that could not be found, or a count that did not close."""
+
+
+class EngineError(MembraneError):
+    """Processes of a sweep that could not be had, or were lost."""
+
+
+class BracketError(MembraneError):
+    """Why no bracket is guaranteed, as the end of a sentence; the run goes on with estimates."""
 
 
 class OutputError(MembraneError):

@@ -4,36 +4,38 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+import numpy as np
+
 from membrane.errors import StudyError
-from membrane.pitch import CENTS_PER_OCTAVE, note
+from membrane.pitch import note
 from membrane.records.arrays import Floats
+from membrane.records.bracket import Bracket
 from membrane.records.modes import Modes
 from membrane.records.spectrum import NodalPattern, Partial
 from membrane.records.study import ModesWanted
 
 
 def partials(
-    modes: Modes, error: Floats, patterns: Sequence[NodalPattern], wanted: ModesWanted
+    modes: Modes, bracket: Bracket, patterns: Sequence[NodalPattern], wanted: ModesWanted
 ) -> tuple[Partial, ...]:
     """One row for each mode.
 
-    error : (n,) cents, how far off each frequency may be, up or down
     Raises StudyError where the mode chosen for the ratios is not among them.
     """
     frequencies = modes.frequencies
     reference = _reference(frequencies, wanted.ratio_to)
     rows = []
-    for index, (frequency, cents) in enumerate(zip(frequencies, error, strict=True)):
-        spread = 2.0 ** (cents / CENTS_PER_OCTAVE)
+    low, high = (np.sqrt(ends) / (2 * np.pi) for ends in (bracket.low, bracket.high))
+    for index, frequency in enumerate(frequencies):
         name, above = note(float(frequency), wanted.reference_pitch)
         rows.append(
             Partial(
                 number=index + 1,
                 frequency=float(frequency),
-                low=float(frequency / spread),
-                high=float(frequency * spread),
-                bracket="estimated",
-                bracket_cents=None if name is None else float(2 * cents),
+                low=float(min(low[index], frequency)),
+                high=float(max(high[index], frequency)),
+                bracket=bracket.label,
+                bracket_cents=None if name is None else float(bracket.cents[index]),
                 ratio=None if reference is None else float(frequency / reference),
                 note=name,
                 note_cents=above,

@@ -8,13 +8,13 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 from time import perf_counter
 
-import numpy as np
 from threadpoolctl import threadpool_limits
 
 from membrane import plugins
-from membrane.accuracy import Estimate, estimate, widened
+from membrane.accuracy import estimate, widened
+from membrane.bounds import SPARE, bracketed, check_provable
 from membrane.coefficients import coefficients
-from membrane.errors import SolveError
+from membrane.errors import BracketError, SolveError
 from membrane.kernel import Kernel
 from membrane.mesh import (
     Resolution,
@@ -24,12 +24,13 @@ from membrane.mesh import (
     suited_resolution,
     unknowns,
 )
-from membrane.modes import coarser_modes, count_up_to, extract
+from membrane.modes import coarser_modes, count_up_to, extract, lowest
 from membrane.modes.extract import Eigensolver
 from membrane.nodal import nodal_patterns
 from membrane.outline import draw
 from membrane.partials import partials
 from membrane.pencil import assemble
+from membrane.records.bracket import Bracket
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
@@ -43,6 +44,9 @@ Progress = Callable[[str], None]
 MESHES = 6
 """How many meshes are tried, each finer, before the accuracy reached is reported as it is."""
 
+WORTH = 0.7
+"""Share of a bracket's width that a finer mesh may leave: above it, rounding is what is left."""
+
 ALWAYS_WRITTEN = ("table", "modes_csv", "summary")
 """Products of every run; the study's ``products.write`` names the others. The summary comes
 last: it lists the files."""
@@ -50,13 +54,14 @@ last: it lists the files."""
 
 @dataclass(frozen=True)
 class _Solution:
-    """A membrane on one mesh with its modes and their estimated error; notes on the outline."""
+    """A membrane on one mesh with its modes and their brackets; notes for the user."""
 
     membrane: Membrane
     mesh: Mesh
     pencil: Pencil
     modes: Modes
-    error: Estimate
+    bracket: Bracket
+    excess: float
     notes: tuple[str, ...] = ()
 
 
@@ -89,7 +94,7 @@ def run(study: Study, progress: Progress = lambda stage: None) -> Spectrum:
         solution = _solve(study, clock)
         with clock.stage("nodal lines"):
             patterns = nodal_patterns(solution.modes, study.edges)
-    rows = partials(solution.modes, solution.error.cents, patterns, study.modes)
+    rows = partials(solution.modes, solution.bracket, patterns, study.modes)
     return Spectrum(
         study=study,
         membrane=solution.membrane,
@@ -127,7 +132,7 @@ def write(spectrum: Spectrum, folder: Path) -> None:
 
 
 def _solve(study: Study, clock: _Clock) -> _Solution:
-    """Mesh and solve, finer each time, until the estimated error is within the wanted one."""
+    """Mesh and solve, finer each time, until every bracket is as narrow as wanted."""
     solver = plugins.load("eigensolver", study.modes.eigensolver).solve
     with Kernel.session() as kernel:
         with clock.stage("outline"):
@@ -135,56 +140,104 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             membrane = coefficients(study, outline)
             resolution = suited_resolution(kernel, outline, membrane, study.modes)
 
-        def solved(resolution: Resolution) -> _Solution:
+        def meshed(resolution: Resolution, fans: bool) -> Mesh:
             with clock.stage("mesh"):
-                mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
-            return _solve_on(mesh, membrane, resolution, study.modes, solver, clock)
+                return make_mesh(kernel, outline, membrane, study.modes, resolution, fans=fans)
+
+        def solved(resolution: Resolution) -> _Solution:
+            return _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
 
         if any(function.notes for function in study.functions):
-            solution = _across(solved, resolution, study.modes.accuracy)
+            best = _across(solved, resolution, study.modes.accuracy)
         else:
-            solution = _until_met(solved, resolution)
-    return replace(solution, notes=outline.notes)
+            best = _until_met(solved, resolution)
+    return replace(best, notes=(*outline.notes, *best.notes))
 
 
 def _until_met(solved: Callable[[Resolution], _Solution], resolution: Resolution) -> _Solution:
-    """The first solution that is accurate enough, on a finer mesh each time."""
-    for _ in range(MESHES - 1):
-        solution = solved(resolution)
-        if solution.error.excess <= 1.0:
-            return solution
-        resolution = resolution.finer(solution.error.excess)
-    return solved(resolution)
+    """The best solution, on a finer mesh each time until one is accurate enough."""
+    tried: list[_Solution] = []
+    for _ in range(MESHES):
+        found = solved(resolution)
+        tried.append(found)
+        if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
+            break
+        resolution = resolution.finer(found.excess)
+    return min(tried, key=lambda solution: solution.excess)
 
 
 def _across(
-    solved: Callable[[Resolution], _Solution], resolution: Resolution, wanted: float
+    solved: Callable[[Resolution], _Solution], resolution: Resolution, accuracy: float
 ) -> _Solution:
     """The solution on the second of two meshes, where a coefficient may break across triangles.
 
     Finer ones would hardly help; how far the two are apart tells how far off both are.
     """
     first = solved(resolution)
-    second = solved(resolution.finer(max(first.error.excess, 1.0)))
-    return replace(second, error=widened(second.error, second.modes, first.modes, wanted))
+    second = solved(resolution.finer(max(first.excess, 1.0)))
+    bracket = widened(second.bracket, second.modes, first.modes)
+    return replace(second, bracket=bracket, excess=bracket.widest / accuracy)
 
 
 def _solve_on(
-    mesh: Mesh,
+    meshed: Callable[[Resolution, bool], Mesh],
     membrane: Membrane,
     resolution: Resolution,
     wanted: ModesWanted,
     solver: Eigensolver,
     clock: _Clock,
 ) -> _Solution:
+    mesh = meshed(resolution, True)
     with clock.stage("assembly"):
-        fine = assemble(membrane, mesh, resolution.degree)
-        coarse = assemble(membrane, mesh, resolution.coarser_degree)
+        pencil = assemble(membrane, mesh, resolution.degree)
     with clock.stage("modes"):
-        count = wanted_count(fine, wanted)
-        modes = extract(fine, count, solver, wanted.accuracy)
-        check = coarser_modes(coarse, modes)
-    return _Solution(membrane, mesh, fine, modes, estimate(modes, check, wanted.accuracy))
+        count = wanted_count(pencil, wanted)
+        spare = min(SPARE, pencil.M.shape[0] - 1 - count) if wanted.bracket else 0
+        more = extract(pencil, count + max(spare, 0), solver, wanted.accuracy)
+        modes = lowest(more, count)
+
+    def provable() -> Modes:
+        """The same modes on a mesh that the proofs cover."""
+        if not mesh.has_fans:
+            return more
+        plain = meshed(resolution.of_proofs, False)
+        with clock.stage("bounds"):
+            again = assemble(membrane, plain, resolution.degree)
+            return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
+
+    bracket = _bracket(membrane, mesh, resolution, provable, modes, wanted, clock)
+    excess = bracket.widest / wanted.accuracy
+    return _Solution(membrane, mesh, pencil, modes, bracket, excess, _why(bracket))
+
+
+def _bracket(
+    membrane: Membrane,
+    mesh: Mesh,
+    resolution: Resolution,
+    provable: Callable[[], Modes],
+    modes: Modes,
+    wanted: ModesWanted,
+    clock: _Clock,
+) -> Bracket:
+    """A guaranteed bracket where one is wanted and to be had, else an estimate."""
+    reason = ""
+    if wanted.bracket:
+        try:
+            check_provable(membrane)
+            proof = provable()
+            with clock.stage("bounds"):
+                found = bracketed(membrane, proof, len(modes.eigenvalues), wanted.accuracy)
+            return found.holding(modes.eigenvalues)
+        except BracketError as why:
+            reason = str(why)
+    with clock.stage("estimate"):
+        coarse = assemble(membrane, mesh, resolution.coarser_degree)
+        return estimate(modes, coarser_modes(coarse, modes), reason)
+
+
+def _why(bracket: Bracket) -> tuple[str, ...]:
+    """A note where a guaranteed bracket was wanted and not to be had."""
+    return (f"Brackets are estimates, since {bracket.reason}.",) if bracket.reason else ()
 
 
 def wanted_count(pencil: Pencil, wanted: ModesWanted) -> int:
@@ -203,6 +256,6 @@ def _facts(solution: _Solution) -> dict[str, float]:
         "degree": solution.modes.space.degree,
         "geometry_order": solution.mesh.order,
         "unknowns": len(solution.modes.space.free),
-        "accuracy_met": bool(solution.error.excess <= 1.0),
-        "worst_estimate_cents": float(np.max(solution.error.cents)),
+        "accuracy_met": bool(solution.excess <= 1.0),
+        "widest_bracket_cents": solution.bracket.widest,
     }

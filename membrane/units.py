@@ -16,6 +16,7 @@ from numbers import Real
 from pathlib import Path
 from typing import Annotated, Any, TypeAlias
 
+from membrane.common_units import COMMON_UNITS
 from membrane.records.function import Amount, Function
 from membrane.records.sign import Sign
 from membrane.wording import nearest, shown
@@ -28,14 +29,6 @@ _DECIMAL_COMMA = re.compile(r"\s*[+-]?(\d*),(\d+)(?![\d,])")
 _MARKED = re.compile(r"\s*([+-]?[\d.]+)\s*(?:(\"|''|″|”)|('|′|’))\s*")
 """A number with an inch mark, or with a foot mark."""
 _TURN = 2.0 * pi * (1.0 + 1e-9)
-
-_COMMON_UNITS = (
-    *("m", "mm", "cm", "um", "in", "inch", "ft", "meter", "metre", "millimeter", "millimetre"),
-    *("centimeter", "centimetre", "rad", "deg", "degree", "radian", "kg", "g", "kilogram", "gram"),
-    *("N", "kN", "mN", "lbf", "newton", "Hz", "kHz", "hertz", "kilohertz", "cent", "Pa", "kPa"),
-    *("kg/m^2", "g/m^2", "kg/m", "g/m", "N/m", "kN/m", "N/mm", "N/m^2", "N/m^3", "kg/m^3"),
-)
-"""Spellings offered where a unit is unknown."""
 
 
 @dataclass(frozen=True)
@@ -125,7 +118,7 @@ class Quantity:
         try:
             factor, root = _root(unit)
         except ValueError:
-            hint = nearest(unit, _COMMON_UNITS)
+            hint = nearest(unit, COMMON_UNITS)
             reason = f"got {shown(text)}, whose unit is unknown{hint}"
             raise ValueError(self._expected(reason)) from None
         own_factor, own_root = _root(self.unit)
@@ -190,9 +183,13 @@ class _File:
         return core_schema.with_info_plain_validator_function(self.read)
 
 
-@lru_cache(maxsize=256)
 def _root(unit: str) -> tuple[float, str]:
     """Factor and name of pint's root unit. Raises ValueError for an unknown unit."""
+    return COMMON_UNITS.get(unit) or _root_by_pint(unit)
+
+
+@lru_cache(maxsize=256)
+def _root_by_pint(unit: str) -> tuple[float, str]:
     import pint
 
     if len(unit) > _LONGEST_UNIT or not _UNIT.fullmatch(unit):

@@ -22,19 +22,18 @@ OWNERS = {
     "skfem": ("pencil",),
     "cvxopt": ("cholesky",),
     "meshio": ("products.vtu", "drawings.mesh_file"),
-    "matplotlib": ("products.pictures",),
+    "matplotlib": ("products.pictures", "products.branch_picture"),
     "distributed": ("sweep.cluster",),
     "dask": ("sweep.cluster",),
-    "pandas": ("sweep.results",),
-    "pyarrow": ("sweep.results",),
+    "pandas": ("sweep.frame",),
     "ezdxf": ("drawings.dxf",),
     "svgelements": ("drawings.svg",),
 }
 """Heavy package -> the modules or folders of modules, below membrane, that own it."""
 
 STAGES = (
-    *("study", "outline", "coefficients", "mesh", "pencil", "modes", "accuracy", "nodal"),
-    *("partials", "products", "terms", "reduced"),
+    *("study", "outline", "coefficients", "mesh", "pencil", "modes", "bounds", "accuracy"),
+    *("nodal", "partials", "products", "terms", "reduced", "branches"),
 )
 """Rooms that know nothing of each other; only the pipeline knows their order."""
 

@@ -171,3 +171,17 @@ def test_units_without_a_sound_cache(tmp_path, cache):
         assert (done.stdout, done.stderr) == ("0.3556\n", "")
         for file in place.rglob("*.pickle"):
             file.write_bytes(file.read_bytes()[:100])
+
+
+@pytest.mark.parametrize("unit", units.COMMON_UNITS)
+def test_common_units_are_pints_to_the_last_bit(unit):
+    assert units.COMMON_UNITS[unit] == units._root_by_pint(unit)
+
+
+def test_common_units_do_not_load_pint():
+    code = (
+        "import sys; from membrane.units import _AREAL_DENSITY as density\n"
+        "density.read('260 g/m^2'); assert 'pint' not in sys.modules\n"
+        "density.read('1 kg/yd^2'); assert 'pint' in sys.modules\n"
+    )
+    assert subprocess.run([sys.executable, "-c", code]).returncode == 0

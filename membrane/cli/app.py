@@ -78,17 +78,27 @@ def sweep(
     ctx: typer.Context,
     study: StudyFile,
     out: Annotated[Path, typer.Option(metavar="DIR", help="Folder for the store and tables.")],
+    workers: Annotated[
+        int | None, typer.Option(help="Processes of this machine; all its cores if not given.")
+    ] = None,
+    scheduler: Annotated[
+        str | None, typer.Option(metavar="ADDRESS", help="Use a running Dask scheduler.")
+    ] = None,
     part: Annotated[
         str | None, typer.Option(metavar="N/M", help="Work on one of M parts of the points.")
     ] = None,
+    merge: Annotated[
+        bool, typer.Option("--merge", help="Bring the parts in DIR together.")
+    ] = False,
     retry: Annotated[bool, typer.Option("--retry", help="Try failed points again.")] = False,
+    parquet: Annotated[bool, typer.Option("--parquet", help="Write points.parquet too.")] = False,
     quiet: Annotated[bool, typer.Option("--quiet", help="Print nothing but errors.")] = False,
 ) -> None:
     """Solve every point of a study's sweep; go on where it was stopped."""
-    from membrane.cli.sweep import run_sweep
+    from membrane.cli.sweep import Wanted, run_sweep
 
     with failures_told(ctx, study):
-        run_sweep(study, out, part, retry, quiet)
+        run_sweep(study, Wanted(out, workers, scheduler, part, merge, retry, parquet, quiet))
 
 
 @app.command()

@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from pathlib import Path
 from typing import Any
 
+from membrane.cli.check_sweep import sweep_lines
 from membrane.plugins.options import plain, unit_of
 from membrane.records.function import Amount, Function
 from membrane.records.plan import Plan
@@ -27,14 +28,17 @@ from membrane.varying import KINDS, is_varying
 def describe_study(file: Path) -> str:
     """The lines that ``membrane check`` prints.
 
-    The outline is drawn and cut, but not meshed. Raises StudyError, or OutlineError for
-    shapes that do not fit together.
+    The outline is drawn and cut, but not meshed, unless there is a sweep, of which one point
+    is timed. Raises StudyError, or OutlineError for shapes that do not fit together.
     """
     study = read_study(file)
     from membrane.pipeline import plan
 
     planned = plan(study)
-    parts = (_shapes(study), _physics(study), _wanted(study), _size(planned))
+    parts = (
+        *(_shapes(study), _physics(study), _wanted(study), _size(planned)),
+        sweep_lines(study),
+    )
     pairs = [pair for pairs in parts for pair in pairs]
     width = max(len(label) for label, _ in pairs)
     return "\n".join(f"{label:<{width}}  {text}" for label, text in pairs)

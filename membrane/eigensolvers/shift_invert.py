@@ -1,11 +1,11 @@
-"""Shift-invert block Lanczos on the fastest factorisation there is."""
+"""Shift-invert band Lanczos on the fastest factorisation there is."""
 
 from __future__ import annotations
 
 from typing import Any
 
 from membrane.cholesky import factorised
-from membrane.eigensolvers.block_lanczos import largest
+from membrane.eigensolvers.band_lanczos import largest
 from membrane.records.arrays import Floats
 
 

@@ -34,7 +34,7 @@ class Bend:
     """
 
     per_circle: float = 10.0
-    per_gap: float = 1.0
+    per_gap: float = 2.0
     growth: float = 0.7
 
 
@@ -100,9 +100,12 @@ def _gaps(points: Floats, owner: Ints, apart: Bools, reach: Floats) -> Floats:
     owner : (n,) number of each point's curve
     apart : (n_curves, n_curves)
     """
+    gaps = np.full(owner.size, np.inf)
+    if not apart.any():
+        return gaps
     from scipy.spatial import KDTree
 
-    tree, gaps = KDTree(points.T), np.full(owner.size, np.inf)
+    tree = KDTree(points.T)
     open_, looked_at = np.arange(owner.size), _NEIGHBOURS
     while open_.size:
         looked_at = min(looked_at, owner.size)

@@ -2,26 +2,33 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 import numpy as np
 
 from membrane.errors import MeshError
+from membrane.mesh.corner import Fan
 from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
-from membrane.triangle import lattice, shapes
+from membrane.triangle import gauss, lattice, shapes
 
 FLATTEST = 0.02
 """Least jacobian allowed, relative to the triangle's own mean."""
+
+ROUNDING = 1e-12
+"""Rounding of a jacobian at the corner of a fan, where there is nothing left of it."""
 
 AREA = 1e-5
 """Largest relative error allowed in the area of a region."""
 
 
-def check_mesh(mesh: Mesh, outline: Outline) -> None:
+def check_mesh(mesh: Mesh, outline: Outline, fans: Sequence[Fan] = ()) -> None:
     """Raise MeshError where a triangle folds, an area is wrong or a tag is missing."""
     jacobian = jacobians(mesh)
-    mean = jacobian.mean(axis=0)
-    if np.any(jacobian.min(axis=0) < FLATTEST * np.abs(mean)):
+    pinch = _pinch(mesh, fans)
+    mean = jacobian.mean(axis=0) / pinch.mean(axis=0)
+    if np.any((jacobian - FLATTEST * np.abs(mean) * pinch).min(axis=0) < -ROUNDING * mean):
         raise MeshError("a curved triangle folds over")
     if np.any(mesh.region < 0):
         raise MeshError("a triangle belongs to no region")
@@ -49,6 +56,18 @@ def jacobians(mesh: Mesh) -> Floats:
     return _oriented(mesh, slopes)
 
 
+def _pinch(mesh: Mesh, fans: Sequence[Fan]) -> Floats:
+    """How the jacobian of a fan falls to nothing at its corner, at the points of ``jacobians``."""
+    x, y = lattice(2 * mesh.order).points
+    away = 1 - np.array([1 - x - y, x, y])
+    pinch = np.ones((x.size, mesh.size))
+    for fan in fans:
+        at = (mesh.vertices == fan.place[:, None]).all(axis=0)[mesh.triangles]
+        corner, triangle = np.nonzero(at)
+        pinch[:, triangle] = away[corner].T ** (2 * fan.power - 2)
+    return pinch
+
+
 def _oriented(mesh: Mesh, slopes: Floats) -> Floats:
     (a, c), (b, d) = np.tensordot(slopes, mesh.nodes, (1, 1)).transpose(0, 2, 1, 3)
     determinant = a * d - b * c
@@ -57,9 +76,7 @@ def _oriented(mesh: Mesh, slopes: Floats) -> Floats:
 
 def _areas(mesh: Mesh) -> Floats:
     """(n_triangles,) by Green's theorem along the sides, exact for the curved geometry."""
-    from scipy.special import roots_legendre
-
-    points, weights = roots_legendre(mesh.order + 1)
+    points, weights = gauss(mesh.order + 1, 0, 0)
     s = (1 + points) / 2
     loops = [np.array([s, 0 * s]), np.array([1 - s, s]), np.array([0 * s, 1 - s])]
     directions = np.array([[1.0, 0.0], [-1.0, 1.0], [0.0, -1.0]])

@@ -2,9 +2,14 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 import numpy as np
 
 from membrane.kernel import Kernel
+from membrane.mesh.blend import blending
+from membrane.mesh.corner import Fan
+from membrane.mesh.fans import FanNodes
 from membrane.records.arrays import Bools, Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
@@ -15,15 +20,21 @@ STRAIGHT = 1e-13
 """Largest departure from the chord, relative to its length, of a straight side."""
 
 
-def curved(kernel: Kernel, outline: Outline, raw: RawMesh, order: int) -> Mesh:
-    """The mesh of geometry order ``order``, or of order 1 where every side is straight."""
+def curved(
+    kernel: Kernel, outline: Outline, raw: RawMesh, order: int, fans: Sequence[Fan] = ()
+) -> Mesh:
+    """The mesh of geometry order ``order``; of the fans' own where every side is straight."""
     triangles = np.sort(raw.triangles, axis=0)
-    sides = _sides(raw, triangles)
-    order = order if _any_bent(kernel, raw) else 1
+    sides = segment_sides(raw, triangles)
+    if not _any_bent(kernel, raw):
+        order = max((fan.power for fan in fans), default=1)
+    placed = _nodes(kernel, raw, triangles, sides, order)
+    if fans:
+        FanNodes(kernel, raw, triangles, order).draw_in(placed, fans)
     return Mesh(
         vertices=raw.vertices,
         triangles=triangles,
-        nodes=_nodes(kernel, raw, triangles, sides, order),
+        nodes=placed,
         order=order,
         region_names=tuple(region.name for region in outline.regions),
         region=_regions(outline, raw),
@@ -37,7 +48,7 @@ def _any_bent(kernel: Kernel, raw: RawMesh) -> bool:
     ends = raw.vertices[:, raw.segments]
     for curve in np.unique(raw.segment_curve):
         on = raw.segment_curve == curve
-        bend = _departure(kernel, int(curve), raw.segment_parameters[:, on], ends[:, :, on], middle)
+        bend = from_chord(kernel, int(curve), raw.segment_parameters[:, on], ends[:, :, on], middle)
         if np.abs(bend).max() > STRAIGHT * np.ptp(ends[:, :, on], axis=1).max():
             return True
     return False
@@ -65,21 +76,13 @@ def _nodes(
 def _blend(
     kernel: Kernel, raw: RawMesh, curve: int, segment: Ints, low: Floats, high: Floats
 ) -> Floats:
-    """Displacement (2, n_nodes, n) of the nodes of triangles that have a side on a curve.
-
-    With d(s) the side's departure from its chord, a node is moved by
-    l1 l2 d(s)/(s (1 - s)), s = (1 + l2 - l1)/2: smooth up to the opposite vertex (after
-    W. J. Gordon & C. A. Hall, Numer. Math. 21 (1973) 109, from memory).
-    """
-    s = (1 + high - low) / 2
-    inner = s * (1 - s) > 1e-12
-    weight = np.zeros_like(s)
-    weight[inner] = (low * high)[inner] / (s * (1 - s))[inner]
+    """Displacement (2, n_nodes, n) of the nodes of triangles that have a side on a curve."""
+    s, weight = blending(low, high)
     parameters, ends = raw.segment_parameters[:, segment], raw.vertices[:, raw.segments[:, segment]]
-    return _departure(kernel, curve, parameters, ends, s[None]) * weight[:, None]
+    return from_chord(kernel, curve, parameters, ends, s[None]) * weight[:, None]
 
 
-def _departure(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: Floats) -> Floats:
+def from_chord(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: Floats) -> Floats:
     """Curve minus chord, (2, n_s, n_segments), at fractions ``s`` (1, n_s) of segments.
 
     parameters : (2, n_segments) and ends (2, 2, n_segments), from lower to higher vertex
@@ -90,7 +93,7 @@ def _departure(kernel: Kernel, curve: int, parameters: Floats, ends: Floats, s: 
     return np.asarray(exact - ((1 - fraction) * ends[:, [0]] + fraction * ends[:, [1]]))
 
 
-def _sides(raw: RawMesh, triangles: Ints) -> tuple[Ints, Ints, Ints]:
+def segment_sides(raw: RawMesh, triangles: Ints) -> tuple[Ints, Ints, Ints]:
     """For every pair of a triangle and a segment on its side: segment, triangle, side."""
     count = raw.vertices.shape[1]
     keys = raw.segments[0] * count + raw.segments[1]

@@ -1,89 +1,24 @@
-"""Geometric refinement of the triangles around singular corners."""
+"""Layers of triangles that shrink towards singular corners."""
 
 from __future__ import annotations
 
 from collections import defaultdict
-from math import atan2, ceil, inf, log
+from collections.abc import Sequence
+from math import atan2
 
 import numpy as np
 
 from membrane.kernel import Kernel
-from membrane.mesh.corners import Corner
+from membrane.mesh.corner import Corner, Fan
+from membrane.mesh.depth import FAN_POWERS, RATIO, treatment
 from membrane.records.arrays import Floats
 from membrane.records.raw_mesh import RawMesh
 
-RATIOS = ((1.0, 0.4), (inf, 0.3))
-"""Size of each layer to the one around it, for exponents up to the first number.
-
-A polynomial follows r^a across a layer the better the thinner it is; with these, elements
-of degree 8 leave less than 1e-9 at slits and reentrant corners in our trials.
-"""
-
-STRONG = 1.0
-"""Exponent below which wide triangles at a corner are halved."""
+STRONG = 0.6
+"""Exponent up to which wide triangles at a corner are halved."""
 
 WIDEST = 1.1
 """Widest angle of a triangle at a strong corner, radians: a little over 60 degrees."""
-
-SMALLEST = 2e-11
-"""Size of the innermost layer to the corner's coordinates, well above their rounding."""
-
-GAPS = 1e3
-"""Size of the innermost layer to what the kernel leaves between a corner and its curves."""
-
-DEEPEST = 60
-"""Most layers at one corner."""
-
-
-def ratio(exponent: float) -> float:
-    """Size of each layer to the one around it at a corner of that exponent."""
-    return next(size for most, size in RATIOS if exponent <= most * (1 + 1e-9))
-
-
-MEASURED = 8
-"""Degree of the elements on which the bounds below were measured."""
-
-STRAIGHT = 1e-7
-"""How near to a whole number an exponent is taken as whole."""
-
-FIRST = 0.2
-"""Bound on what a mode's first singular term leaves there, in the units of ``depth``."""
-
-NEXT = 1e-5
-"""What the next term of a mode, one order weaker, leaves in the triangles at a corner.
-
-In our trials r^2 log r left 1e-7 of the share, with triangles that follow the bend.
-"""
-
-
-def layers(exponent: float, tolerance: float) -> int:
-    """How many layers leave a relative error below ``tolerance`` in the eigenvalues.
-
-    The energy within a radius r of the corner, and so the error, goes like r^(2 exponent).
-    """
-    return min(max(ceil(log(tolerance) / (2 * exponent * log(ratio(exponent)))), 0), DEEPEST)
-
-
-def depth(exponent: float, share: float, tolerance: float, degree: int = MEASURED) -> int:
-    """How many layers a corner needs whose triangles have not been cut yet.
-
-    share : square of their longest side, as a share of the head's area
-    degree : of the elements; of the energy at a corner they miss a share that goes like
-        degree^(-4 exponent): I. Babuska & M. Suri, RAIRO M2AN 21 (1987) 199 (from memory)
-
-    Where the exponent is near a whole number k, as at the many corners of a fine polygon,
-    r^exponent is r^k but for a part in proportion to the difference: the energy that smooth
-    elements miss goes like its square. Measured at degree 8 on polygons of up to 48 sides
-    and on the L shape, an uncut corner left at most 0.03 off^2 share^exponent; at slits with
-    the exponents 1/2 and 1/4 the layers that follow from it left less than 1e-9 and 1e-8.
-    """
-    tolerance *= (degree / MEASURED) ** (4 * exponent)
-    off = abs(exponent - max(round(exponent), 1))
-    if off < STRAIGHT:
-        return layers(exponent, tolerance)
-    missed = FIRST * off**2 * min(share, 1.0) ** min(exponent, 1.0)
-    following = NEXT * min(share, 1.0)
-    return max(layers(exponent, tolerance / missed), layers(exponent + 1, tolerance / following))
 
 
 def graded(
@@ -91,19 +26,26 @@ def graded(
     raw: RawMesh,
     corners: tuple[Corner, ...],
     tolerance: float,
-    degree: int = MEASURED,
-) -> RawMesh:
-    """The mesh with every corner's triangles cut into layers that shrink towards it."""
+    degree: int,
+    powers: Sequence[int] = FAN_POWERS,
+) -> tuple[RawMesh, tuple[Fan, ...]]:
+    """The mesh with layers around every corner, and the innermost triangles to draw in.
+
+    degree : of the elements
+    powers : that may be taken for the fans
+    """
     growing = _Growing(kernel, raw)
     shares = _shares(raw)
+    fans = []
     for corner in corners:
-        cuts = depth(corner.exponent, float(shares[corner.vertex]), tolerance, degree)
-        if cuts == 0:
-            continue
+        share = float(shares[corner.vertex])
+        power, layers = treatment(corner.terms, share, tolerance, degree, powers)
         if corner.exponent < STRONG:
             growing.narrow(corner.vertex)
-        growing.grade(corner.vertex, cuts, ratio(corner.exponent))
-    return growing.raw_mesh()
+        if power > 1:
+            fans.append(Fan(raw.vertices[:, corner.vertex], power, corner.stretch))
+        growing.grade(corner.vertex, layers)
+    return growing.raw_mesh(), tuple(fans)
 
 
 def _shares(raw: RawMesh) -> Floats:
@@ -158,28 +100,9 @@ class _Growing:
             _, left, right = self._turned(number, apex)
             self._replace(number, [(apex, left, middle), (apex, middle, right)])
 
-    def _room(self, vertex: int, shrink: float) -> int:
-        """How many layers the rounding of a vertex and of its curves leaves room for."""
-        here = self.places[vertex]
-        around = {v for number in self.touching[vertex] for v in self.triangles[number]}
-        size = min(float(np.linalg.norm(self.places[v] - here)) for v in around - {vertex})
-        gap = max((self._gap(vertex, v) for v in around - {vertex}), default=0.0)
-        rounding = max(SMALLEST * float(np.linalg.norm(here)), GAPS * gap)
-        return max(ceil(log(max(rounding / size, 1e-300)) / log(shrink)), 1)
-
-    def _gap(self, vertex: int, end: int) -> float:
-        """How far a vertex lies off the curve under a side that leaves it, metres."""
-        segment = self.segments.get((min(vertex, end), max(vertex, end)))
-        if segment is None:
-            return 0.0
-        curve, *parameters = segment
-        at = np.array([parameters[0 if vertex < end else 1]])
-        away = self.kernel.evaluate(curve, at)[:, 0] - self.places[vertex]
-        return float(np.linalg.norm(away))
-
-    def grade(self, vertex: int, depth: int, shrink: float) -> None:
-        """Cut the triangles at a vertex into layers, each ``shrink`` times the last one."""
-        fractions = np.power(shrink, np.arange(1.0, min(depth, self._room(vertex, shrink)) + 1))
+    def grade(self, vertex: int, layers: int) -> None:
+        """Cut the triangles at a vertex into layers, each ``RATIO`` times the last one."""
+        fractions = np.power(RATIO, np.arange(1.0, layers + 1))
         chains: dict[int, list[int]] = {}
         for number in sorted(self.touching[vertex]):
             here, left, right = self._turned(number, vertex)

@@ -4,15 +4,19 @@ from __future__ import annotations
 
 import numpy as np
 
-from membrane.mesh.corner import Corner
+from membrane.mesh.corner import Corner, Term
 from membrane.records.arrays import Floats
 from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Field, Membrane
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh
 
-OF_DENSITY = 2.0
-"""Exponent at a kink of the density, the bedding or an edge: u has r^2 where they only jump."""
+OF_DENSITY = 1.0
+"""Exponent at a kink of the density, the bedding or an edge.
+
+A mode has r^2 and more there, but the mass within r, of which quadrature misses a part, may go
+like little more than r^2, as the energy of a term r does.
+"""
 
 OF_TENSION = 1.0
 """Exponent at a kink of the tension that does not jump, such as a root of r."""
@@ -43,7 +47,7 @@ def kinks(outline: Outline, membrane: Membrane, raw: RawMesh) -> tuple[Corner, .
         distance = np.hypot(*(raw.vertices - place[:, None]))
         vertex = int(np.argmin(distance))
         if distance[vertex] < NEAR * size:
-            found.append(Corner(vertex, _exponent(membrane, place, size)))
+            found.append(Corner(vertex, (Term(_exponent(membrane, place, size)),)))
     return tuple(found)
 
 
@@ -67,7 +71,7 @@ def _of_growth(c: Contribution, place: Floats, size: float) -> float:
     if not near > far > 0.0:
         return OF_DENSITY
     power = float(np.log(near / far) / np.log(FAR / NEAR))
-    return max(0.5 * (OF_DENSITY - power), WEAKEST) if power > BOUNDED else OF_DENSITY
+    return max(OF_DENSITY - 0.5 * power, WEAKEST) if power > BOUNDED else OF_DENSITY
 
 
 def _around(place: Floats, distance: float) -> Floats:

@@ -3,12 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from dataclasses import replace
+from math import inf
 
 from membrane.errors import MeshError
 from membrane.kernel import COARSE, USUAL, Kernel
 from membrane.mesh.checks import check_mesh
 from membrane.mesh.corners import corners
 from membrane.mesh.curve import curved
+from membrane.mesh.departure import departure
+from membrane.mesh.depth import FAN_POWERS, NO_FANS
 from membrane.mesh.grade import graded
 from membrane.mesh.resolution import (
     LOWEST_DEGREE,
@@ -33,8 +37,12 @@ def make_mesh(
     membrane: Membrane,
     wanted: ModesWanted,
     resolution: Resolution,
+    *,
+    fans: bool = True,
 ) -> Mesh:
     """A valid curved mesh of the outline in the open kernel session.
+
+    fans : whether triangles at corners may be drawn in, which the proofs do not cover
 
     Raises MeshError where no valid mesh is found, or only one too large to solve on.
     """
@@ -44,7 +52,7 @@ def make_mesh(
     for attempt in range(ATTEMPTS):
         finer = {name: size * 0.7**attempt for name, size in sizes.items()}
         try:
-            return _attempt(kernel, outline, membrane, finer, along, resolution)
+            return _attempt(kernel, outline, membrane, finer, along, resolution, fans)
         except MeshError as failure:
             last = failure
     raise MeshError(
@@ -60,13 +68,15 @@ def _attempt(
     sizes: Mapping[str, float],
     along: Mapping[int, float],
     resolution: Resolution,
+    fans: bool,
 ) -> Mesh:
     # the lowest degree is for very many small shapes, each exact enough with fewer segments
     bend = COARSE if resolution.degree == LOWEST_DEGREE else USUAL
     raw = kernel.triangulate(outline, sizes, bend, along)
     found = corners(kernel, outline, membrane, raw)
-    raw = graded(kernel, raw, found, resolution.tolerance, resolution.degree)
+    powers = FAN_POWERS if fans else NO_FANS
+    raw, drawn_in = graded(kernel, raw, found, resolution.tolerance, resolution.degree, powers)
     raw = opened(raw, [curve.tag for curve in outline.curves if curve.lips])
-    mesh = curved(kernel, outline, raw, resolution.degree)
-    check_mesh(mesh, outline)
-    return mesh
+    mesh = curved(kernel, outline, raw, resolution.degree, drawn_in)
+    check_mesh(mesh, outline, drawn_in)
+    return replace(mesh, departure=inf if drawn_in else departure(kernel, raw, mesh))

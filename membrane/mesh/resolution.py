@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import ceil, factorial, pi, sqrt
 
 import numpy as np
@@ -16,6 +16,9 @@ from membrane.records.study import ModesWanted
 
 LOWEST_DEGREE, HIGHEST_DEGREE = 4, 12
 """Degrees that are chosen where the user sets none."""
+
+PROOFS = 100.0
+"""How much more than in the modes corners may leave in the brackets around them."""
 
 MOST_UNKNOWNS = 1_000_000
 """More than this takes hours and tens of gigabytes."""
@@ -40,6 +43,11 @@ class Resolution:
     def coarser_degree(self) -> int:
         """Degree of the second solve, which measures the error of the first."""
         return _coarser(self.degree)
+
+    @property
+    def of_proofs(self) -> Resolution:
+        """For a mesh on which brackets are proven: they cannot show what its corners leave."""
+        return replace(self, tolerance=PROOFS * self.tolerance)
 
     def finer(self, excess: float) -> Resolution:
         """The next to try, where the measured error was ``excess`` times the wanted one."""

@@ -24,7 +24,7 @@ def coarser_modes(pencil: Pencil, fine: Modes) -> Modes:
     """
     shift = rigid_shift(pencil) if pencil.moves_rigidly else 0.0
     start = transferred(fine.space, fine.vectors, pencil.space)[pencil.space.free]
-    inverse = factorised(pencil.K - shift * pencil.M)
+    inverse = factorised(pencil.shifted(shift))
     vectors = inverse(pencil.M @ start)
     if pencil.moves_rigidly:
         vectors[:, 0] = rigid_mode(pencil)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
@@ -22,8 +23,12 @@ Eigensolver = Callable[[Any, Any, int, float], tuple[Floats, Floats]]
 LOOSEST = 1e-5
 """Relative distance from which two eigenvalues are never taken for one."""
 
-EXTRAS = 6
+EXTRAS = 3
 """Modes asked for beyond the wanted ones, to see the end of the last cluster."""
+
+REPAIR = 30
+"""Modes asked for beyond the last ones where the count finds that one was missed: for so many
+more, the solver looks deeper and for one copy more of each."""
 
 SOLVES = 4
 """How often a count that does not close is solved again, each time for more modes."""
@@ -49,16 +54,27 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
         missing = _count_below(pencil, values, kept) - kept
         if missing == 0:
             return _modes(pencil, values[:kept], vectors[:, :kept], same)
-        ask += max(missing, EXTRAS)
+        ask += max(missing, REPAIR)
     raise SolveError(
         f"the count of modes did not close after {SOLVES} solves; "
         "ask for another number of modes or another accuracy."
     )
 
 
+def lowest(modes: Modes, count: int) -> Modes:
+    """The ``count`` lowest of some modes, or a few more where they would cut a cluster."""
+    kept = int(np.searchsorted(modes.clusters, modes.clusters[count - 1], side="right"))
+    return replace(
+        modes,
+        eigenvalues=modes.eigenvalues[:kept],
+        vectors=modes.vectors[:, :kept],
+        clusters=modes.clusters[:kept],
+    )
+
+
 def count_up_to(pencil: Pencil, frequency: float) -> int:
     """How many modes lie below a frequency, Hz, by the inertia of K - s M."""
-    return negative_count(pencil.K - (2 * np.pi * frequency) ** 2 * pencil.M)
+    return negative_count(pencil.shifted((2 * np.pi * frequency) ** 2))
 
 
 def _lowest(pencil: Pencil, count: int, solver: Eigensolver) -> tuple[Floats, Floats]:
@@ -90,7 +106,7 @@ def _count_below(pencil: Pencil, values: Floats, kept: int) -> int:
     if kept == len(values):
         return kept  # every mode that the mesh carries was asked for
     limit = (values[kept - 1] + values[kept]) / 2
-    return negative_count(pencil.K - limit * pencil.M)
+    return negative_count(pencil.shifted(limit))
 
 
 def _modes(pencil: Pencil, values: Floats, vectors: Floats, same: float) -> Modes:

@@ -5,11 +5,11 @@ from __future__ import annotations
 from functools import cache
 
 import numpy as np
-from scipy.special import roots_jacobi, roots_legendre
 from skfem.quadrature import get_quadrature
 from skfem.refdom import RefTri
 
 from membrane.records.arrays import Floats
+from membrane.triangle import collapsed_rule, gauss
 
 HIGHEST_TABLE = 19
 """Highest order of scikit-fem's own rules on the triangle."""
@@ -24,20 +24,11 @@ def triangle_rule(order: int) -> tuple[Floats, Floats]:
     if order <= HIGHEST_TABLE:
         points, weights = get_quadrature(RefTri, order + 1 if order in NEGATIVE else order)
         return np.ascontiguousarray(points), weights
-    return _collapsed(order // 2 + 1)
-
-
-def _collapsed(n: int) -> tuple[Floats, Floats]:
-    """Gauss-Jacobi rule on the square, collapsed onto the triangle; exact to order 2n - 1."""
-    x, x_weights = roots_jacobi(n, 0, 0)
-    y, y_weights = roots_jacobi(n, 1, 0)
-    x, y = (1 + x) / 2, (1 + y) / 2
-    points = np.stack([np.outer(x, 1 - y), np.outer(np.ones(n), y)]).reshape(2, -1)
-    return points, np.outer(x_weights, y_weights).ravel() / 8
+    return collapsed_rule(order)
 
 
 @cache
 def line_rule(order: int) -> tuple[Floats, Floats]:
     """Points (1, n) and weights (n,) on [0, 1], exact for polynomials of that order."""
-    x, weights = roots_legendre(order // 2 + 1)
+    x, weights = gauss(order // 2 + 1, 0, 0)
     return (1 + x[None]) / 2, weights / 2

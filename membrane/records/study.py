@@ -194,7 +194,8 @@ class ModesWanted:
 
     count : how many modes; ignored where ``up_to`` is given
     up_to : Hz; every mode up to this frequency
-    accuracy : cents
+    accuracy : cents, from the low to the high end of a bracket
+    bracket : whether guaranteed brackets are wanted; else they are estimates
     degree : of the finite elements; None lets the accuracy choose
     eigensolver : registered plugin name
     ratio_to : number of the mode that has ratio 1; None takes the first above 0 Hz
@@ -204,6 +205,7 @@ class ModesWanted:
     count: int = 20
     up_to: float | None = None
     accuracy: float = 0.01
+    bracket: bool = True
     degree: int | None = None
     eigensolver: str = "shift_invert"
     ratio_to: int | None = None

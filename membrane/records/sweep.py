@@ -49,12 +49,14 @@ class Sweep:
 
     count : points of a random sweep
     seed : of its random numbers
+    bracket : whether every point is to have a guaranteed bracket; else they are estimates
     """
 
     pick: Pick
     axes: tuple[Axis, ...]
     count: int = 0
     seed: int = 0
+    bracket: bool = False
 
     @property
     def size(self) -> int:

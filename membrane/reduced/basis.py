@@ -6,12 +6,15 @@ from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
-from scipy.linalg import eigh
+from scipy.linalg import cholesky, eigh, solve_triangular
 
 from membrane.cholesky import Solve, factorised
 from membrane.records.arrays import Floats
 from membrane.records.pencil import Pencil
 from membrane.reduced.affine import Affine
+
+ROUNDING = 1e-14
+"""Square of a direction's length, over the longest one's, that is rounding."""
 
 
 @dataclass(frozen=True)
@@ -59,39 +62,52 @@ class Basis:
         return int(self.shapes.shape[1])
 
 
-def grown(basis: Basis, whole: Affine, ref: Reference, shapes: Floats, apart: float) -> Basis:
-    """The basis with what ``shapes`` (n_free, n) have outside it.
+def directions(basis: Basis, ref: Reference, shapes: Floats) -> tuple[Floats, Floats]:
+    """What ``shapes`` (n_free, n) have outside the basis, the longest first.
 
-    apart : length, in the reference's mass, from which a new direction is kept
+    returns : orthonormal directions (n_free, m) and their lengths (m,), both in the
+        reference's mass
     """
-    new = _outside(basis.shapes, _outside(basis.shapes, shapes, ref.mass), ref.mass)
-    new = _principal(new, ref.mass, apart)
-    if new.shape[1] == 0:
-        return basis
-    new = _orthonormal(_outside(basis.shapes, new, ref.mass), ref.mass)
-    whole_shapes = np.hstack([basis.shapes, new])
+    new = shapes
+    for _ in range(2):  # once leaves too much of the basis in what is short
+        new = _outside(basis.shapes, new, ref.mass)
+    squares, turn = eigh(_symmetric(new.T @ (ref.mass @ new)))
+    kept = np.nonzero(squares > ROUNDING * np.max(squares, initial=0.0))[0][::-1]
+    lengths = np.sqrt(squares[kept])
+    return np.asarray(new @ (turn[:, kept] / lengths)), lengths
+
+
+def grown(basis: Basis, whole: Affine, ref: Reference, new: Floats) -> Basis:
+    """The basis with ``directions`` that it has not yet."""
+    shapes = np.hstack([basis.shapes, _orthonormal(basis, ref, new)])
+    new = shapes[:, basis.size :]
     forces = [A @ new for A in whole.matrices]
     return Basis(
-        whole_shapes,
-        np.stack([_bordered(basis.matrices[q], whole_shapes.T @ f) for q, f in enumerate(forces)]),
-        _grown_gram(basis.gram, whole, whole_shapes, [ref.inverse(f) for f in forces]),
+        shapes,
+        np.stack([_bordered(basis.matrices[q], shapes.T @ f) for q, f in enumerate(forces)]),
+        _grown_gram(basis.gram, whole, shapes, [ref.inverse(f) for f in forces]),
     )
+
+
+def turned(basis: Basis, turn: Floats) -> Basis:
+    """The basis of the combinations ``turn`` (N, fewer) of its shapes."""
+    return Basis(
+        basis.shapes @ turn,
+        np.einsum("ia,qij,jb->qab", turn, basis.matrices, turn, optimize=True),
+        np.einsum("ia,piqj,jb->paqb", turn, basis.gram, turn, optimize=True),
+    )
+
+
+def _orthonormal(basis: Basis, ref: Reference, new: Floats) -> Floats:
+    """Directions freed of what rounding has left in them of the basis and of each other."""
+    new = _outside(basis.shapes, new, ref.mass)
+    lower = cholesky(new.T @ (ref.mass @ new), lower=True)
+    return np.asarray(solve_triangular(lower, new.T, lower=True).T)
 
 
 def _outside(shapes: Floats, others: Floats, mass: Any) -> Floats:
     """What is left of ``others`` without their share of ``shapes``."""
     return np.asarray(others - shapes @ (shapes.T @ (mass @ others)))
-
-
-def _principal(shapes: Floats, mass: Any, apart: float) -> Floats:
-    """Orthonormal directions of the shapes' span, those at least ``apart`` long."""
-    lengths, turn = eigh(_symmetric(shapes.T @ (mass @ shapes)))
-    kept = lengths > apart**2
-    return np.asarray(shapes @ (turn[:, kept] / np.sqrt(lengths[kept])))
-
-
-def _orthonormal(shapes: Floats, mass: Any) -> Floats:
-    return _principal(shapes, mass, 0.0)
 
 
 def _symmetric(A: Floats) -> Floats:

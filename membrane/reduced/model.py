@@ -45,8 +45,8 @@ class ReducedModel:
     keys : of the study, one for each number of a point
     stiffness, mass : (n_matrices, N, N), weighted as ``*_weights`` say
     residual : (Q, r, N), a factor of the residuals' Gram matrix, stiffness then mass
-    held_by : columns of the points that hold the head at rest while they are not 0;
-        empty where it is always held
+    held_by : columns of the numbers that hold the head, as one that is not 0 does; None
+        where something else always does
     shift : (rad/s)^2, that the error estimate adds to every eigenvalue
     reach : the basis holds every mode up to this times the last wanted eigenvalue, as was
         looked at at sampled points
@@ -63,7 +63,7 @@ class ReducedModel:
     stiffness_weights: Weights
     mass_weights: Weights
     residual: Floats
-    held_by: tuple[int, ...]
+    held_by: tuple[int, ...] | None
     shift: float
     reach: float
     lowest: Floats
@@ -93,7 +93,8 @@ class ReducedModel:
 
     def moves_rigidly(self, point: Floats) -> bool:
         """Whether nothing holds the head at a point."""
-        return bool(self.held_by) and all(point[column] == 0.0 for column in self.held_by)
+        held_by = self.held_by
+        return held_by is not None and all(point[column] == 0.0 for column in held_by)
 
     def _answer(self, point: Floats) -> tuple[Floats, Floats]:
         values, vectors, _ = self.modes_at(point, self.count + MORE)

@@ -4,18 +4,25 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
-from typing import Any
 
 import numpy as np
-from scipy.linalg import eigh
 
+from membrane.cholesky import factorised
 from membrane.pitch import CENTS_PER_EIGENVALUE
 from membrane.records.arrays import Floats
 from membrane.records.pencil import Pencil
 from membrane.reduced.affine import FIXED, Affine, affine
-from membrane.reduced.basis import Basis, Reference, grown
-from membrane.reduced.model import MORE, Answers, ReducedModel
-from membrane.reduced.reach import outside
+from membrane.reduced.basis import Basis, Reference, directions
+from membrane.reduced.compress import compressed
+from membrane.reduced.making import (
+    Making,
+    guards,
+    with_directions,
+    with_modes,
+    worst_cents,
+)
+from membrane.reduced.model import ReducedModel
+from membrane.reduced.reach import REACH, reaching
 
 TRAINING, ROUND = 60, 2000
 """Points of the sweep that the model is first made for, and then passed over."""
@@ -23,29 +30,13 @@ TRAINING, ROUND = 60, 2000
 MARGIN = 0.7
 """Of the wanted accuracy, that the sampled points must reach, so that the others do too."""
 
-CHECKS = 3
-"""Points at which the reach of the basis is looked at."""
-
-REACH, SAFE = 2.0, 0.9
-"""How far a basis is taken to reach at first, and the share of what is found that counts."""
-
-LEAST_REACH = 1.25
-"""Below it the basis gets what it has missed."""
-
-MOST_SOLVES = 60
-"""Full solves after which the model stays as it is."""
-
-COARSE = 3.0
-"""First length outside the basis, over the root of the wanted relative accuracy, from which a
-direction of a solved point is kept."""
-
-FINER = 4.0
-"""How many times better than the wanted accuracy a solved point becomes."""
-
-BEST = 1e-5
-"""Length outside the basis below which a direction is rounding, and no more is gained."""
+MOST_STEPS = 80
+"""Points worked on, after which the model stays as it is."""
 
 SEED = 20240229
+
+AT_REST = 1e-10
+"""Force on a constant shape, over a matrix's largest entry, that is rounding."""
 
 
 @dataclass(frozen=True)
@@ -59,17 +50,6 @@ class Solved:
 
 Solve = Callable[[Pencil, int], Solved]
 """At least so many of the lowest modes of a pencil, none missing."""
-
-
-@dataclass(frozen=True)
-class _Making:
-    """A model on its way."""
-
-    whole: Affine
-    reference: Reference
-    basis: Basis
-    model: ReducedModel
-    solve: Solve
 
 
 def prepare(
@@ -88,20 +68,19 @@ def prepare(
     Raises SolveError where a key scales no part or has no bounds.
     """
     points = np.asarray(points, dtype=float)
-    sample = np.random.default_rng(SEED).permutation(len(points))
+    sample = points[np.random.default_rng(SEED).permutation(len(points))[:ROUND]]
+    training = sample[:TRAINING]
     making = _begun(affine(pencil, keys), points, count, accuracy, solve)
-    making = _enriched(making, points[sample[:TRAINING]])
-    making = _reaching(making, points[sample[:CHECKS]])
-    return _enriched(making, points[sample[:ROUND]]).model
+    making = compressed(_enriched(making, training), training, MARGIN)
+    making = _checked(making, _ends(making, training), solve)
+    return _enriched(making, sample).model
 
 
-def _begun(whole: Affine, points: Floats, count: int, accuracy: float, solve: Solve) -> _Making:
+def _begun(whole: Affine, points: Floats, count: int, accuracy: float, solve: Solve) -> Making:
     """A model from one full solve, in the middle of the points."""
     middle, lowest = np.median(points, axis=0), points.min(axis=0)
-    first = solve(whole.at(middle), count + _guards(count))
+    first = solve(whole.at(middle), count + guards(count))
     low = whole.at(lowest)
-    shift = float(first.eigenvalues[1]) if low.moves_rigidly else 0.0
-    reference = Reference.of(low, shift)
     model = ReducedModel(
         keys=whole.keys,
         count=count,
@@ -111,123 +90,83 @@ def _begun(whole: Affine, points: Floats, count: int, accuracy: float, solve: So
         stiffness_weights=whole.stiffness_weights,
         mass_weights=whole.mass_weights,
         residual=np.empty((0, 0, 0)),
-        held_by=_held_by(whole) if low.moves_rigidly else (),
-        shift=shift,
+        held_by=_held_by(whole) if low.moves_rigidly else None,
+        shift=float(first.eigenvalues[1]) if low.moves_rigidly else 0.0,
         reach=REACH,
         lowest=lowest,
-        element_cents=np.zeros(count),
-        solves=0,
+        element_cents=first.cents[:count],
+        solves=1,
     )
-    making = _Making(whole, reference, Basis.empty(whole), model, solve)
+    making = Making(whole, Reference.of(low, model.shift), Basis.empty(whole), model)
     if low.moves_rigidly:
-        making = _with_shapes(making, np.ones((len(low.space.free), 1)), BEST)
-    return _with_solved(making, middle, first)
-
-
-def _guards(count: int) -> int:
-    """Modes solved for beyond the wanted ones: about as far as ``LEAST_REACH`` goes."""
-    return MORE + 2 + count // 4
+        making = _with_constant(making)
+    return with_modes(making, middle, first.vectors)
 
 
 def _held_by(whole: Affine) -> tuple[int, ...]:
     """Columns of the keys whose stiffness moves a constant shape."""
     ones = np.ones(whole.stiffness[0].shape[0])
     pairs = zip(whole.stiffness_weights.columns, whole.stiffness, strict=True)
-    acting = (c for c, A in pairs if c != FIXED and abs(ones @ (A @ ones)) > 1e-10 * A.max())
-    return tuple(acting)
+    moved = (c for c, A in pairs if c != FIXED and np.abs(A @ ones).max() > AT_REST * A.max())
+    return tuple(moved)
 
 
-def _enriched(making: _Making, points: Floats) -> _Making:
-    """The worst point solved in full, again and again, until all are well within accuracy."""
+def _with_constant(making: Making) -> Making:
+    """The model with the motion of a head that nothing holds."""
+    constant = np.ones((making.reference.mass.shape[0], 1))
+    return with_directions(making, directions(making.basis, making.reference, constant)[0])
+
+
+def _enriched(making: Making, points: Floats) -> Making:
+    """The worst point worked on, again and again, until all are well within the accuracy."""
     wanted = MARGIN * making.model.accuracy
-    cents = _worst(making.model.answers(points))
+    cents = worst_cents(making, points)
     failing = cents > wanted
-    while failing.any() and making.model.solves < MOST_SOLVES:
+    for _ in range(MOST_STEPS):
+        if not failing.any():
+            break
         worst = points[failing][np.argmax(cents[failing])]
-        making = _at(making, worst)
-        cents[failing] = _worst(making.model.answers(points[failing]))
+        making = with_modes(making, worst, _stepped(making, worst))
+        cents[failing] = worst_cents(making, points[failing])
         failing = cents > wanted
     return making
 
 
-def _worst(answers: Answers) -> Floats:
-    return np.asarray(answers.cents.max(axis=1))
+def _stepped(making: Making, point: Floats) -> Floats:
+    """The model's modes at a point after a step of inverse iteration on the full pencil.
 
-
-def _at(making: _Making, point: Floats) -> _Making:
-    count = making.model.count
-    return _with_solved(making, point, making.solve(making.whole.at(point), count + _guards(count)))
-
-
-def _with_solved(making: _Making, point: Floats, solved: Solved) -> _Making:
-    """The model with the modes of a point, as finely as the accuracy there needs.
-
-    A fixed fineness would stall: a point may fail for directions just below it.
+    It costs a part of a full solve, and what it adds is what the basis has not yet.
     """
-    model = making.model
-    element = np.maximum(model.element_cents, solved.cents[: model.count])
-    model = replace(model, element_cents=element, solves=model.solves + 1)
-    making = replace(making, model=model)
-    relative = model.accuracy / CENTS_PER_EIGENVALUE
-    apart = COARSE * np.sqrt(relative)
-    while True:
-        making = _with_shapes(making, _weighted(solved.vectors, model.count, apart), apart)
-        done = _worst(making.model.answers(point[None]))[0] <= model.accuracy / FINER
-        if done or apart < BEST:
-            return making
-        apart /= 3.0
+    count, shift = making.model.count, making.model.shift
+    values, vectors, _ = making.model.modes_at(point, count + guards(count))
+    pencil = making.whole.at(point)
+    inverse = factorised(pencil.K if shift == 0.0 else pencil.K + shift * pencil.M)
+    return np.asarray(inverse(pencil.M @ (making.basis.shapes @ vectors)) * (values + shift))
 
 
-def _weighted(vectors: Floats, count: int, apart: float) -> Floats:
-    """Modes beyond the wanted ones are kept only where a third of them is new."""
-    coarse = np.ones(vectors.shape[1])
-    coarse[count + MORE :] = min(1.0, 3.0 * apart)
-    return np.asarray(vectors * coarse)
+def _ends(making: Making, points: Floats) -> Floats:
+    """The two points where the last mode is lowest and highest."""
+    last = making.model.answers(points).eigenvalues[:, -1]
+    return points[[np.argmin(last), np.argmax(last)]]
 
 
-def _with_shapes(making: _Making, shapes: Floats, apart: float) -> _Making:
-    basis = grown(making.basis, making.whole, making.reference, shapes, apart)
-    first = len(making.whole.stiffness)
-    model = replace(
-        making.model,
-        stiffness=basis.matrices[:first],
-        mass=basis.matrices[first:],
-        residual=_factor(basis.gram, 1e-7 * making.model.accuracy / CENTS_PER_EIGENVALUE),
-    )
-    return replace(making, basis=basis, model=model)
-
-
-def _factor(gram: Floats, negligible: float) -> Floats:
-    """L (Q, r, N) with |sum of a_q L_q y|^2 = the Gram matrix's product of the a_q y."""
-    matrices, size = gram.shape[:2]
-    scale = 1.0 / np.sqrt(np.einsum("qiqi->q", gram))[:, None]
-    square = (gram * scale[:, :, None, None] * scale).reshape(matrices * size, -1)
-    values, vectors = eigh((square + square.T) / 2)
-    kept = values > negligible * values[-1]
-    factor = (vectors[:, kept] * np.sqrt(values[kept])).T.reshape(-1, matrices, size)
-    return np.ascontiguousarray(np.moveaxis(factor / scale, 0, 1))
-
-
-def _reaching(making: _Making, points: Floats) -> _Making:
-    """The basis with what it has missed at points, and the reach that it has there."""
-    reach = REACH
+def _checked(making: Making, points: Floats, solve: Solve) -> Making:
+    """The model held against full solves at a few points, and how far it reaches there."""
     for point in points:
-        making, found = _reaching_at(making, point)
-        reach = min(reach, SAFE * found)
-    return replace(making, model=replace(making.model, reach=reach))
+        making = _compared(making, point, solve)
+    return reaching(making, points)
 
 
-def _reaching_at(making: _Making, point: Floats) -> tuple[_Making, float]:
-    pencil, shift = making.whole.at(point), making.model.shift
-    held = pencil.K + shift * pencil.M
-    last = making.model.modes_at(point, making.model.count)[0][-1] + shift
-    for _ in range(MOST_SOLVES):
-        value, shape = outside(held, pencil.M, making.basis.shapes)
-        if SAFE * value >= LEAST_REACH * last:
-            break
-        making = _with_shapes(making, _unit(shape, making.reference.mass), BEST)
-    return making, value / last
-
-
-def _unit(shape: Floats, mass: Any) -> Floats:
-    return np.asarray(shape / np.sqrt(np.sum(shape * (mass @ shape))))
+def _compared(making: Making, point: Floats, solve: Solve) -> Making:
+    """The model with a full solve's own error, and with its modes where they are outside."""
+    model = making.model
+    full = solve(making.whole.at(point), model.count + guards(model.count))
+    answer = model.answers(point[None])
+    element = np.maximum(model.element_cents, full.cents[: model.count])
+    making = replace(making, model=replace(model, element_cents=element, solves=model.solves + 1))
+    moving = full.eigenvalues[: model.count] > 0.0
+    exact = full.eigenvalues[: model.count][moving]
+    off = CENTS_PER_EIGENVALUE * np.log(answer.eigenvalues[0][moving] / exact)
+    if (off > answer.cents[0][moving]).any():
+        return with_modes(making, point, full.vectors)
+    return making

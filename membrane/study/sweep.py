@@ -19,6 +19,7 @@ class _Keys:
     count: int | None = None
     seed: int | None = None
     file: File | None = None
+    bracket: bool = False
 
 
 _BELONGS = {"count": Pick.RANDOM, "seed": Pick.RANDOM, "file": Pick.TABLE}
@@ -38,7 +39,7 @@ def read_sweep(table: Table, probe: Probe, base: Path) -> Sweep | None:
     if not axes or None in axes:
         return None
     known = tuple(axis for axis in axes if axis is not None)
-    return Sweep(keys.pick, known, keys.count or 0, keys.seed or 0)
+    return Sweep(keys.pick, known, keys.count or 0, keys.seed or 0, keys.bracket)
 
 
 def _axes(table: Table, keys: _Keys, probe: Probe) -> list[Axis | None]:

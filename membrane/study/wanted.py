@@ -29,7 +29,7 @@ class _ModesKeys:
     count: int | None = None
     up_to: PositiveFrequency | None = None
     accuracy: PositiveCents = _DEFAULT.accuracy
-    bracket: bool = False
+    bracket: bool = _DEFAULT.bracket
     degree: int | None = None
     eigensolver: str = _DEFAULT.eigensolver
     ratio_to: int | None = None
@@ -55,6 +55,7 @@ def read_modes(table: Table) -> ModesWanted | None:
         count=count,
         up_to=keys.up_to,
         accuracy=keys.accuracy,
+        bracket=keys.bracket,
         degree=keys.degree,
         eigensolver=keys.eigensolver,
         ratio_to=keys.ratio_to,
@@ -98,8 +99,6 @@ def _check_modes(table: Table, keys: _ModesKeys) -> None:
             f"{keys.accuracy:g} cent is below what rounding leaves certain; "
             f"give {SMALLEST_ACCURACY:g} cent or more.",
         )
-    if keys.bracket:
-        table.refuse("bracket", f"guaranteed brackets are {NOT_YET}; leave the key out.")
     low, high = DEGREES
     if keys.degree is not None and not low <= keys.degree <= high:
         table.refuse("degree", f"expected a degree from {low} to {high}, got {keys.degree}.")

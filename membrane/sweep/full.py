@@ -9,20 +9,26 @@ import json
 from collections import OrderedDict
 from collections.abc import Mapping
 from dataclasses import dataclass
+from time import perf_counter
 from typing import Any
 
+import numpy as np
 from threadpoolctl import threadpool_limits
 
 from membrane import plugins
-from membrane.accuracy import Estimate, estimate
+from membrane.accuracy import estimate
+from membrane.bounds import SPARE, bracketed
 from membrane.coefficients import coefficients
-from membrane.errors import StudyError
+from membrane.errors import BracketError, StudyError
 from membrane.kernel import Kernel
 from membrane.mesh import Resolution, make_mesh, suited_resolution
-from membrane.modes import coarser_modes, extract
+from membrane.modes import coarser_modes, extract, lowest
 from membrane.outline import draw
 from membrane.pencil import assemble, rescaled
 from membrane.pipeline import MESHES, wanted_count
+from membrane.pitch import CENTS_PER_EIGENVALUE
+from membrane.records.arrays import Floats
+from membrane.records.bracket import Bracket
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
@@ -59,15 +65,21 @@ class FullSolves:
 
     source : the study's plain data in SI numbers
     shaping : for each axis, whether another value of it needs another mesh
+    bracket : whether guaranteed brackets are wanted, which take longer
 
     The meshes of an outline are made for the study's own head, whatever the point's
     coefficients: each finer than the last, until the point's accuracy is met.
     """
 
     def __init__(
-        self, source: Mapping[str, Any], axes: tuple[Axis, ...], shaping: tuple[bool, ...]
+        self,
+        source: Mapping[str, Any],
+        axes: tuple[Axis, ...],
+        shaping: tuple[bool, ...],
+        bracket: bool = False,
     ) -> None:
         self._source = source
+        self._bracket = bracket
         self._axes = axes
         self._shaping = shaping
         self._ladders: OrderedDict[str, list[_Rung]] = OrderedDict()
@@ -77,12 +89,13 @@ class FullSolves:
         study = study_from(study_data(self._source, self._axes, point.values))
         own = self._own_head(point)
         with threadpool_limits(limits=1, user_api="blas"):
-            for rung in range(MESHES):
-                modes, error = _solved(study, self._rung(own, rung))
-                if error.excess <= 1.0:
+            for place in range(MESHES):
+                modes, bracket = _solved(study, self._rung(own, place), self._bracket)
+                if bracket.widest <= study.modes.accuracy:
                     break
         count = None if study.modes.up_to else study.modes.count
-        return Answer(modes.frequencies[:count], error.cents[:count], "estimated", rung + 1)
+        errors = _errors(modes, bracket)
+        return Answer(modes.frequencies[:count], errors[:count], bracket.label, place + 1)
 
     def _own_head(self, point: Point) -> Study:
         """The study with the shapes of the point, but its own coefficients."""
@@ -100,6 +113,27 @@ class FullSolves:
         while len(ladder) <= place:
             ladder.append(_made(own, ladder[-1].resolution.finer(FINER) if ladder else None))
         return ladder[place]
+
+
+@dataclass(frozen=True)
+class Sample:
+    """Seconds that a mesh with its matrices takes, and a solve on it."""
+
+    mesh: float
+    solve: float
+
+
+def timed_sample(study: Study) -> Sample:
+    """What one full solve of the study's own values takes here.
+
+    Raises MembraneError where it cannot be solved.
+    """
+    with threadpool_limits(limits=1, user_api="blas"):
+        start = perf_counter()
+        rung = _made(study, None)
+        middle = perf_counter()
+        _solved(study, rung, study.sweep is not None and study.sweep.bracket)
+    return Sample(middle - start, perf_counter() - middle)
 
 
 def shaping_axes(study: Study) -> tuple[bool, ...]:
@@ -146,15 +180,37 @@ def _made(own: Study, resolution: Resolution | None) -> _Rung:
     return _Rung(wanted, outline, membrane, mesh, fine, coarse)
 
 
-def _solved(study: Study, rung: _Rung) -> tuple[Modes, Estimate]:
-    membrane = coefficients(study, rung.outline)
-    fine, coarse = (
-        rescaled(pencil, rung.membrane, membrane) or assemble(membrane, rung.mesh, degree)
-        for pencil, degree in (
-            (rung.fine, rung.resolution.degree),
-            (rung.coarse, rung.resolution.coarser_degree),
-        )
-    )
-    solver = plugins.load("eigensolver", study.modes.eigensolver).solve
-    modes = extract(fine, wanted_count(fine, study.modes), solver, study.modes.accuracy)
-    return modes, estimate(modes, coarser_modes(coarse, modes), study.modes.accuracy)
+def _solved(study: Study, rung: _Rung, guaranteed: bool) -> tuple[Modes, Bracket]:
+    """The modes of a study on a mesh of its outline, bracketed as well as is wanted and can be."""
+    wanted, membrane = study.modes, coefficients(study, rung.outline)
+    fine = _pencil(rung, rung.fine, membrane)
+    solver = plugins.load("eigensolver", wanted.eigensolver).solve
+    count = wanted_count(fine, wanted)
+    spare = min(SPARE, fine.M.shape[0] - 1 - count) if guaranteed else 0
+    more = extract(fine, count + max(spare, 0), solver, wanted.accuracy)
+    modes = lowest(more, count)
+    reason = ""
+    if guaranteed:
+        try:
+            return modes, bracketed(membrane, more, len(modes.eigenvalues), wanted.accuracy)
+        except BracketError as why:
+            reason = str(why)
+    coarse = _pencil(rung, rung.coarse, membrane)
+    return modes, estimate(modes, coarser_modes(coarse, modes), reason)
+
+
+def _pencil(rung: _Rung, own: Pencil, membrane: Membrane) -> Pencil:
+    """The pencil of a membrane from that of the study's own head, or else assembled."""
+    found = rescaled(own, rung.membrane, membrane)
+    return found or assemble(membrane, rung.mesh, own.space.degree)
+
+
+def _errors(modes: Modes, bracket: Bracket) -> Floats:
+    """(n,) cents, how far off each frequency may be, up or down."""
+    errors = np.zeros(len(modes.eigenvalues))
+    moving = modes.eigenvalues > 0.0
+    found = modes.eigenvalues[moving]
+    with np.errstate(divide="ignore"):
+        apart = np.log([bracket.high[moving] / found, found / bracket.low[moving]])
+    errors[moving] = CENTS_PER_EIGENVALUE * np.maximum(apart.max(axis=0), 0.0)
+    return errors

@@ -10,7 +10,7 @@ from pathlib import Path
 from typing import Any
 
 import membrane
-from membrane.records.sweep import Axis, Sweep
+from membrane.records.sweep import Sweep
 from membrane.sweep.points import Point
 
 _WITHOUT_EFFECT = ("title", "products", "sweep")
@@ -32,10 +32,10 @@ def sweep_name(study: str, sweep: Sweep) -> str:
     return _name([study, asdict(sweep)])
 
 
-def point_name(study: str, axes: tuple[Axis, ...], point: Point) -> str:
-    """The name of a point: the same in every sweep over one study."""
-    pairs = ((axis.key, value) for axis, value in zip(axes, point.values, strict=True))
-    return _name([study, sorted(pairs)])
+def point_name(study: str, sweep: Sweep, point: Point) -> str:
+    """The name of a point: the same in every sweep over one study that asks the same of it."""
+    pairs = ((axis.key, value) for axis, value in zip(sweep.axes, point.values, strict=True))
+    return _name([study, sweep.bracket, sorted(pairs)])
 
 
 def _name(content: Any) -> str:

@@ -33,11 +33,11 @@ MISSING, DONE, FAILED = 0, 1, 2
 _SCHEMA = """
 CREATE TABLE sweeps (
     name TEXT PRIMARY KEY, study TEXT NOT NULL, title TEXT NOT NULL, axes TEXT NOT NULL,
-    size INTEGER NOT NULL, begun TEXT NOT NULL DEFAULT (datetime('now')));
+    size INTEGER NOT NULL, turn INTEGER NOT NULL);
 CREATE TABLE points (
     sweep TEXT NOT NULL, number INTEGER NOT NULL, name TEXT NOT NULL, point TEXT NOT NULL,
     sentence TEXT NOT NULL, seconds REAL NOT NULL, frequencies BLOB, error_cents BLOB,
-    kind TEXT, solves INTEGER, PRIMARY KEY (sweep, number)) WITHOUT ROWID;
+    kind TEXT, solves INTEGER, worst_cents REAL, PRIMARY KEY (sweep, number)) WITHOUT ROWID;
 CREATE INDEX by_name ON points (name);
 """
 _COLUMNS = "point, sentence, seconds, frequencies, error_cents, kind, solves"
@@ -57,6 +57,23 @@ class Entry:
     title: str
     axes: tuple[str, ...]
     size: int
+
+
+@dataclass(frozen=True)
+class Totals:
+    """A sweep in a few numbers.
+
+    settled : points that are done or have failed
+    worst_cents : the largest error, None where no point is done
+    seconds : that all points took, each on one process
+    solves : full solves that were made
+    """
+
+    settled: int
+    done: int
+    worst_cents: float | None
+    seconds: float
+    solves: int
 
 
 class Store:
@@ -87,15 +104,19 @@ class Store:
             yield cls(file, connection)
 
     def sweeps(self) -> list[Entry]:
-        """All sweeps, in the order in which they began."""
-        rows = self._read("SELECT name, study, title, axes, size FROM sweeps ORDER BY rowid")
+        """All sweeps, the one that was last worked on at the end."""
+        rows = self._read("SELECT name, study, title, axes, size FROM sweeps ORDER BY turn")
         return [Entry(row[0], row[1], row[2], tuple(json.loads(row[3])), row[4]) for row in rows]
 
     def begin(self, entry: Entry) -> None:
-        """Note a sweep, unless it is noted already."""
+        """Note a sweep, unless it is noted already, as the one that is worked on."""
         row = (entry.name, entry.study, entry.title, json.dumps(entry.axes), entry.size)
-        insert = "INSERT OR IGNORE INTO sweeps (name, study, title, axes, size)"
-        self._write(f"{insert} VALUES (?, ?, ?, ?, ?)", [row])
+        turn = "(SELECT ifnull(max(turn), 0) + 1 FROM sweeps)"
+        self._write(
+            f"INSERT INTO sweeps VALUES (?, ?, ?, ?, ?, {turn}) "
+            f"ON CONFLICT (name) DO UPDATE SET turn = {turn}",
+            [row],
+        )
 
     def states(self, entry: Entry) -> Ints:
         """(size + 1,), by number: MISSING, DONE or FAILED."""
@@ -108,10 +129,17 @@ class Store:
     def add(self, entry: Entry, named: Iterable[tuple[str, Outcome]]) -> None:
         """Write outcomes, each with the name of its point, and see that they are on the disk."""
         rows = [(entry.name, o.point.number, name, *_row(o)) for name, o in named]
-        columns = f"(sweep, number, name, {_COLUMNS})"
-        self._write(
-            f"INSERT OR REPLACE INTO points {columns} VALUES (?, ?, ?, ?, ?, ?, ?, ?, ?, ?)", rows
-        )
+        columns = f"sweep, number, name, {_COLUMNS}, worst_cents"
+        marks = ", ".join("?" * len(columns.split(",")))
+        self._write(f"INSERT OR REPLACE INTO points ({columns}) VALUES ({marks})", rows)
+
+    def totals(self, entry: Entry) -> Totals:
+        """A sweep in a few numbers."""
+        query = """
+            SELECT count(*), ifnull(sum(sentence = ''), 0), max(worst_cents),
+                ifnull(sum(seconds), 0.0), ifnull(sum(solves), 0)
+            FROM points WHERE sweep = ?"""
+        return Totals(*next(self._read(query, (entry.name,))))
 
     def known(self, name: str) -> Outcome | None:
         """The answer to a point of that name in any sweep."""
@@ -141,9 +169,9 @@ def _row(outcome: Outcome) -> tuple[Any, ...]:
     values = json.dumps(outcome.point.values)
     start = (values, outcome.sentence, outcome.seconds)
     if answer is None:
-        return (*start, None, None, None, None)
+        return (*start, None, None, None, None, None)
     blobs = _blob(answer.frequencies), _blob(answer.error_cents)
-    return (*start, *blobs, answer.kind, answer.solves)
+    return (*start, *blobs, answer.kind, answer.solves, float(answer.error_cents.max()))
 
 
 def _outcome(number: int, row: Any) -> Outcome:

@@ -28,7 +28,7 @@ class Task:
 
     def name_of(self, point: Point) -> str:
         """The name of a point by its content."""
-        return point_name(self.entry.study, self.sweep.axes, point)
+        return point_name(self.entry.study, self.sweep, point)
 
 
 def task_of(study: Study) -> Task:
@@ -43,5 +43,5 @@ def task_of(study: Study) -> Task:
     name = study_name(study.source)
     keys = tuple(axis.key for axis in sweep.axes)
     entry = Entry(sweep_name(name, sweep), name, study.title, keys, sweep.size)
-    answering = FullSolves(study.source, sweep.axes, shaping)
+    answering = FullSolves(study.source, sweep.axes, shaping, sweep.bracket)
     return Task(entry, sweep, Points(sweep, shaping), answering)

@@ -81,7 +81,7 @@ def _begun(task: Task, store: Store, say: Callable[[str], None]) -> Ints:
     if np.any(states):
         say(f"Going on: {np.count_nonzero(states)} of {task.entry.size} points are there already.")
     elif others:
-        say("The study has changed: a new sweep begins, and the earlier one is kept beside it.")
+        say("The study has changed: a new sweep begins, the earlier one is kept beside it.")
     store.begin(task.entry)
     return states
 

@@ -5,9 +5,9 @@ from __future__ import annotations
 from functools import cache
 
 import numpy as np
-from scipy.special import roots_jacobi
 
 from membrane.records.arrays import Floats
+from membrane.triangle.jacobi import gauss
 
 EDGES = ((0, 1), (1, 2), (0, 2))
 """Local vertices of each edge, the lower first."""
@@ -16,7 +16,7 @@ EDGES = ((0, 1), (1, 2), (0, 2))
 @cache
 def lobatto(degree: int) -> Floats:
     """(degree + 1,) Gauss-Lobatto points on [0, 1]."""
-    inner = roots_jacobi(degree - 1, 1, 1)[0] if degree > 1 else np.empty(0)
+    inner = gauss(degree - 1, 1, 1)[0] if degree > 1 else np.empty(0)
     return np.concatenate([[0.0], (1 + inner) / 2, [1.0]])
 
 

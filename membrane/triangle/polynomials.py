@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import numpy as np
-from scipy.special import eval_jacobi
 
 from membrane.records.arrays import Floats
+from membrane.triangle.jacobi import jacobi
 
 
 def orthonormal(points: Floats, degree: int) -> tuple[Floats, Floats]:
@@ -19,16 +19,19 @@ def orthonormal(points: Floats, degree: int) -> tuple[Floats, Floats]:
     """
     height = points[1]
     legendre, slopes = _homogenised_legendre(points, degree)
-    values, gradients = [], []
+    values = np.empty(((degree + 1) * (degree + 2) // 2, height.size))
+    gradients = np.empty((2, *values.shape))
+    start = 0
     for i in range(degree + 1):
-        for j in range(degree + 1 - i):
-            norm = np.sqrt((2 * i + 1) * (2 * i + 2 * j + 2))
-            factor = eval_jacobi(j, 2 * i + 1, 0, 2 * height - 1)
-            factor_slope = _jacobi_slope(j, 2 * i + 1, height)
-            values.append(norm * legendre[i] * factor)
-            rise = np.stack([np.zeros_like(height), factor_slope])
-            gradients.append(norm * (slopes[i] * factor + legendre[i] * rise))
-    return np.array(values), np.stack(gradients, axis=1)
+        j = np.arange(degree + 1 - i)
+        these = slice(start, start + j.size)
+        norm = np.sqrt((2 * i + 1) * (2 * i + 2 * j + 2))[:, None]
+        factors, factor_slopes = jacobi(degree - i, 2 * i + 1, 0, 2 * height - 1)
+        values[these] = norm * legendre[i] * factors
+        gradients[:, these] = norm * slopes[i][:, None] * factors
+        gradients[1, these] += 2 * norm * legendre[i] * factor_slopes
+        start = these.stop
+    return values, gradients
 
 
 def _homogenised_legendre(points: Floats, degree: int) -> tuple[Floats, Floats]:
@@ -46,11 +49,3 @@ def _homogenised_legendre(points: Floats, degree: int) -> tuple[Floats, Floats]:
         fall = b * (t2_slope * values[i - 1] + t2 * slopes[i - 1])
         slopes.append(rise - fall)
     return np.array(values[: degree + 1]), np.array(slopes[: degree + 1])
-
-
-def _jacobi_slope(order: int, alpha: int, height: Floats) -> Floats:
-    """d/dy of P_order^(alpha, 0)(2y - 1); DLMF 18.9.15."""
-    if order == 0:
-        return np.zeros_like(height)
-    slope = eval_jacobi(order - 1, alpha + 1, 1, 2 * height - 1)
-    return np.asarray((order + alpha + 1) * slope, dtype=float)

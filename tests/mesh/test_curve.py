@@ -22,8 +22,8 @@ def side_points(mesh, name):
     return np.hstack(points)
 
 
-def test_polygons_stay_of_order_one():
-    assert zoo.prepared(zoo.L_SHAPE).mesh.order == 1
+def test_a_polygon_without_fans_stays_of_order_one():
+    assert zoo.prepared(zoo.SQUARE).mesh.order == 1
 
 
 def test_rim_and_patch_border_are_circles():

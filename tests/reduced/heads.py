@@ -21,8 +21,8 @@ LOADED: dict[str, Any] = {
 }
 
 
-def pencil(keys: dict[str, Any], degree: int = 5) -> Pencil:
-    ready = zoo.prepared(keys, degree)
+def pencil(keys: dict[str, Any], degree: int = 4) -> Pencil:
+    ready = zoo.prepared(keys, degree, phase=5.0, tolerance=1e-4)
     return assemble(ready.membrane, ready.mesh, degree)
 
 

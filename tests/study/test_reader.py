@@ -168,6 +168,7 @@ def test_modes(whole):
     assert whole.modes == ModesWanted(
         up_to=800.0,
         accuracy=0.001,
+        bracket=False,
         degree=6,
         eigensolver="dense",
         ratio_to=2,

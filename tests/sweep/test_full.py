@@ -48,6 +48,22 @@ def test_points_of_a_round_head_have_the_frequencies_of_bessel_zeros():
 
 
 @pytest.mark.slow
+def test_a_guaranteed_bracket_where_one_is_wanted():
+    """Bessel zeros as above; every error is a bound, and within the accuracy."""
+    axes = [{"key": "head.tension", "values": ["1 kN/m", "4 kN/m"]}]
+    keys = KEYS | {"modes": {"count": 3, "accuracy": "1e-4 cent"}}
+    task = task_of(study_from(keys | {"sweep": {"axes": axes, "bracket": True}}))
+    zeros = np.array([jn_zeros(0, 1)[0], *[jn_zeros(1, 1)[0]] * 2])
+    for number, answer in answers(task, [1, 2]).items():
+        (tension,) = task.points.point(number).values
+        exact = zeros / (np.pi * 0.356) * np.sqrt(tension / 0.262)
+        off = 1200 * np.abs(np.log2(answer.frequencies / exact))
+        assert answer.kind == "guaranteed"
+        assert np.all(off <= answer.error_cents)
+        assert np.all(answer.error_cents <= 1e-4)
+
+
+@pytest.mark.slow
 def test_answers_are_the_same_whatever_came_before():
     study = study_from(LOADED)
     numbers = list(range(1, 13))

@@ -1,0 +1,72 @@
+"""What a sweep has found so far, as arrays, read from its store."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+
+from membrane.errors import OutputError
+from membrane.records.arrays import Floats, Ints
+from membrane.sweep.part import WHOLE
+from membrane.sweep.store import Store
+
+
+@dataclass(frozen=True)
+class SweepResults:
+    """All points that are done, n of them, in the order of their numbers.
+
+    numbers : (n,), from 1
+    axes : key -> (n,), SI
+    frequencies : (n, modes), Hz; NaN where a point has fewer modes than others
+    error_cents : (n, modes), how far off each may be, up or down
+    kinds : (n,), what the errors are
+    failures : number -> the sentence that says why there is no answer
+    """
+
+    numbers: Ints
+    axes: Mapping[str, Floats]
+    frequencies: Floats
+    error_cents: Floats
+    kinds: tuple[str, ...]
+    failures: Mapping[int, str]
+
+    def frame(self) -> Any:
+        """The rows of points.csv as a pandas DataFrame; needs pandas."""
+        from membrane.sweep.frame import frame
+
+        return frame(self)
+
+
+def read_sweep(folder: Path | str) -> SweepResults:
+    """The sweep that was last worked on in a folder, also while it is worked on.
+
+    Raises OutputError where there is none.
+    """
+    with Store.reading(WHOLE.file(Path(folder))) as store:
+        entries = store.sweeps()
+        if not entries:
+            raise OutputError(f"no sweep has begun in {folder}; run membrane sweep first.")
+        outcomes = list(store.outcomes(entries[-1]))
+    done = [(o.point, o.answer) for o in outcomes if o.answer is not None]
+    values = np.array([point.values for point, _ in done], dtype=float)
+    columns = values.reshape(len(done), len(entries[-1].axes)).T
+    return SweepResults(
+        numbers=np.array([point.number for point, _ in done], dtype=np.int64),
+        axes=dict(zip(entries[-1].axes, columns, strict=True)),
+        frequencies=_padded([answer.frequencies for _, answer in done]),
+        error_cents=_padded([answer.error_cents for _, answer in done]),
+        kinds=tuple(answer.kind for _, answer in done),
+        failures={o.point.number: o.sentence for o in outcomes if o.answer is None},
+    )
+
+
+def _padded(rows: list[Floats]) -> Floats:
+    """(n, longest) with NaN after the end of a shorter row."""
+    padded = np.full((len(rows), max(map(len, rows), default=0)), np.nan)
+    for place, row in enumerate(rows):
+        padded[place, : len(row)] = row
+    return padded
