@@ -176,8 +176,10 @@ def _solve_on(
         """The same modes on a mesh that the proofs cover."""
         if not mesh.has_fans:
             return more
-        again = assemble(membrane, meshed(resolution.of_proofs, False), resolution.degree)
-        return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
+        plain = meshed(resolution.of_proofs, False)
+        with clock.stage("bounds"):
+            again = assemble(membrane, plain, resolution.degree)
+            return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
 
     bracket = _bracket(membrane, mesh, resolution, provable, modes, wanted, clock)
     excess = bracket.widest / wanted.accuracy

@@ -85,6 +85,15 @@ def load_products(degree: int, of_functions: int) -> Floats:
     return np.asarray((q * weights) @ shapes(points, of_functions)[0].T)
 
 
+@cache
+def driving_products(degree: int, of_functions: int) -> Floats:
+    """(i, j): integrals of the fluxes times the slopes of the functions' shapes, likewise."""
+    points, weights = collapsed_rule(degree + of_functions - 1)
+    values, _ = flux_shapes(points, degree)
+    _, slopes = shapes(points, of_functions)
+    return np.asarray(sum((values[k] * weights) @ slopes[k].T for k in range(2)))
+
+
 def spring_matrices(rim: Rim, degree: int) -> Floats:
     """(n, k, k) matrices of (s . n)(t . n) / beta along the sides of a rim."""
     x, weights = gauss(rim.weights.size, 0, 0)

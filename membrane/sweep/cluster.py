@@ -30,6 +30,9 @@ AHEAD = 2
 PATIENCE = 10.0
 """Seconds after which the workers are counted again, and to wait for a scheduler."""
 
+NO_FIXED_PORT = "127.0.0.1:0"
+"""Where Dask's own pages are shown: several sweeps may run on one machine."""
+
 CORES: int = CPU_COUNT
 """Processors that this process may use."""
 
@@ -47,7 +50,7 @@ class Processes:
                 n_workers=self._count,
                 threads_per_worker=1,
                 memory_limit=0,
-                dashboard_address=None,
+                dashboard_address=NO_FIXED_PORT,
                 silence_logs=logging.CRITICAL,
             ) as cluster,
             Client(cluster) as client,
