@@ -13,7 +13,7 @@ def sweep_lines(study: Study) -> list[tuple[str, str]]:
     """
     if study.sweep is None:
         return []
-    from membrane.sweep.full import timed_sample
+    from membrane.sweep.solving import timed_sample
     from membrane.sweep.task import task_of
 
     points = task_of(study).points
