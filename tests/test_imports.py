@@ -22,7 +22,7 @@ OWNERS = {
     "skfem": ("pencil",),
     "cvxopt": ("cholesky",),
     "meshio": ("products.vtu", "drawings.mesh_file"),
-    "matplotlib": ("products.pictures",),
+    "matplotlib": ("products.pictures", "products.branch_picture"),
     "distributed": ("sweep.cluster",),
     "dask": ("sweep.cluster",),
     "pandas": ("sweep.frame",),
@@ -33,7 +33,7 @@ OWNERS = {
 
 STAGES = (
     *("study", "outline", "coefficients", "mesh", "pencil", "modes", "bounds", "accuracy"),
-    *("nodal", "partials", "products", "terms", "reduced"),
+    *("nodal", "partials", "products", "terms", "reduced", "branches"),
 )
 """Rooms that know nothing of each other; only the pipeline knows their order."""
 

@@ -29,6 +29,7 @@ class FullSolves:
         self.source = source
         self.points = points
         self.ladders = Ladders(points.sweep.bracket)
+        self._last_own: tuple[tuple[float, ...], Study] | None = None
 
     def answer(self, point: Point) -> Answer:
         """The modes of a point. Raises MembraneError where there are none."""
@@ -49,5 +50,9 @@ class FullSolves:
 
     def own_head(self, point: Point) -> Study:
         """The study with the shapes of the point, but its own coefficients."""
-        axes = [a for a, s in zip(self.points.sweep.axes, self.points.shaping, strict=True) if s]
-        return study_from(study_data(self.source, axes, self.points.mesh_of(point)))
+        shapes = self.points.mesh_of(point)
+        if self._last_own is None or self._last_own[0] != shapes:
+            pairs = zip(self.points.sweep.axes, self.points.shaping, strict=True)
+            axes = [axis for axis, is_shape in pairs if is_shape]
+            self._last_own = shapes, study_from(study_data(self.source, axes, shapes))
+        return self._last_own[1]

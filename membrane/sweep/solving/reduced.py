@@ -31,7 +31,7 @@ from membrane.sweep.solving.solve import errors
 REDUCED = "reduced"
 """The kind of error: the model's own estimate, and the widest of the full solves behind it."""
 
-LEAST = 200
+LEAST = 500
 """Points on one mesh from which a model costs less than the full solves that it saves."""
 
 SHARE = 0.8
@@ -56,6 +56,7 @@ class ReducedSolves:
     """
 
     def __init__(self, source: Mapping[str, Any], points: Points) -> None:
+        self.source = source
         self._full = FullSolves(source, points)
         self._points = points
         self._models: OrderedDict[str, ReducedModel | None] = OrderedDict()
