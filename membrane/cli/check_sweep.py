@@ -20,8 +20,9 @@ def sweep_lines(study: Study) -> list[tuple[str, str]]:
     sample = timed_sample(study)
     seconds = points.meshes * sample.mesh + len(points) * sample.solve
     time = (
-        f"about {_lasting(seconds)} of one processor: {sample.mesh:.2g} s a mesh, "
-        f"{sample.solve:.2g} s a solve, both timed on the study's own values"
+        f"about {_lasting(seconds)} of one processor if all is solved in full: "
+        f"{sample.mesh:.2g} s a mesh, {sample.solve:.2g} s a solve, both timed on the study's own "
+        "values"
     )
     axes = [(f"axis {axis.key}", _axis(axis, study.sweep.pick)) for axis in study.sweep.axes]
     sizes = f"{len(points)} points, {points.meshes} different meshes"

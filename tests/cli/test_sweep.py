@@ -121,6 +121,6 @@ def test_check_says_how_large_a_sweep_is(study, monkeypatch):
     assert "sweep                  grid: 4 points, 2 different meshes" in lines
     assert "axis holes.port.at[1]  2 values from 0.1 to 0.177" in lines
     assert (
-        "time                   about 4.1 hours of one processor: 1e+02 s a mesh, 3.6e+03 s a "
-        "solve, both timed on the study's own values"
+        "time                   about 4.1 hours of one processor if all is solved in full: "
+        "1e+02 s a mesh, 3.6e+03 s a solve, both timed on the study's own values"
     ) in lines
