@@ -6,7 +6,7 @@ import argparse
 import subprocess
 import sys
 
-SECTIONS = ("accuracy", "assembly", "eigen")
+SECTIONS = ("accuracy", "assembly", "eigen", "growth", "whole")
 
 
 def main() -> None:

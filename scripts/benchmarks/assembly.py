@@ -38,7 +38,7 @@ def measure(quick: bool) -> dict[str, list[Row]]:
     """One row for each head, degree and size: curved and straight triangles."""
     sizes = UNKNOWNS[: 1 if quick else None]
     rows = [
-        _row(name, degree, unknowns)
+        _row(name, degree, unknowns, quick)
         for name in ("disc", "L-shape")
         for degree in DEGREES
         for unknowns in sizes
@@ -46,7 +46,7 @@ def measure(quick: bool) -> dict[str, list[Row]]:
     return {"assembly": rows}
 
 
-def _row(name: str, degree: int, unknowns: int) -> Row:
+def _row(name: str, degree: int, unknowns: int, quick: bool) -> Row:
     # about 30 modes lie below the wave number k = 10, and n = A k^2 / phase^2 degree^2
     phase = 18.0 * degree / np.sqrt(unknowns)
     _, mesh = ours.meshed(HEADS[name]().keys, 20, Resolution(degree, float(phase), 1e-6))
@@ -57,7 +57,9 @@ def _row(name: str, degree: int, unknowns: int) -> Row:
             "theirs": partial(_theirs, _basis(ready, mesh)),
             "ours, basis": partial(_ours_from_mesh, mesh, degree),
             "theirs, basis": partial(_theirs_from_mesh, mesh, degree),
-        }
+        },
+        rounds=3 if quick else 7,
+        budget=5.0 if quick else 20.0,
     )
     return {
         "head": name,
