@@ -13,13 +13,11 @@ from __future__ import annotations
 from functools import cache
 
 import numpy as np
-from numpy.polynomial.legendre import legval
 
 from membrane.bounds.head import Head
 from membrane.bounds.pieces import Piece
-from membrane.bounds.rims import Rim
 from membrane.records.arrays import Floats
-from membrane.triangle import collapsed_rule, flux_shapes, gauss, shapes
+from membrane.triangle import collapsed_rule, flux_shapes, shapes
 from membrane.triangle.polynomials import orthonormal
 
 
@@ -92,11 +90,3 @@ def driving_products(degree: int, of_functions: int) -> Floats:
     values, _ = flux_shapes(points, degree)
     _, slopes = shapes(points, of_functions)
     return np.asarray(sum((values[k] * weights) @ slopes[k].T for k in range(2)))
-
-
-def spring_matrices(rim: Rim, degree: int) -> Floats:
-    """(n, k, k) matrices of (s . n)(t . n) / beta along the sides of a rim."""
-    x, weights = gauss(rim.weights.size, 0, 0)
-    crossing = np.stack([(2 * j + 1) * legval(x, np.eye(degree)[j]) for j in range(degree)])
-    each = weights / 2 / (rim.spring[:, None] * rim.speed)
-    return np.asarray(np.einsum("im,tm,jm->tij", crossing, each, crossing, optimize=True))

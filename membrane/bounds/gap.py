@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from membrane.bounds.crouzeix_raviart import crouzeix_raviart
+from membrane.bounds.crouzeix_raviart import crouzeix_raviart, longest_along
 from membrane.bounds.head import Head
 from membrane.bounds.leaves import leaves
 from membrane.errors import BracketError
@@ -51,10 +51,9 @@ def proven_limit(head: Head, highest: float, following: float, count: int) -> fl
     Raises BracketError where the count does not close.
     """
     gap = 1 - highest / following
-    time = np.linalg.inv(head.tension) * head.density[:, None, None]
     step = STEP * np.sqrt(max(gap, 1e-6) / following)
     for _ in range(TRIES):
-        leaf = leaves(head.mesh, time, step, MOST)
+        leaf = leaves(head, step, longest_along(head, following, step), MOST)
         if leaf is None:
             break
         discrete = crouzeix_raviart(head, leaf)

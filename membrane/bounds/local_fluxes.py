@@ -13,12 +13,10 @@ from membrane.bounds.flux_matrices import (
     driving_products,
     load_products,
     spreads,
-    spring_matrices,
 )
 from membrane.bounds.head import Head
 from membrane.bounds.pieces import Piece, pieces
-from membrane.bounds.rims import rims
-from membrane.records.arrays import Bools, Floats, Ints
+from membrane.records.arrays import Floats, Ints
 from membrane.records.pencil import Space
 
 
@@ -53,44 +51,34 @@ class LocalFluxes:
 
 def local_fluxes(head: Head, sources: Sources, degree: int) -> Iterator[LocalFluxes]:
     """The fluxes of a degree, some triangles at a time."""
-    springs, sprung = _springs(head, degree)
     for whole in pieces(head, 2 * degree, extra=0):
         for piece in whole.parts(10 * degree**2):
-            some = piece.triangles
             spread = spreads(piece, degree)
-            system = _system(head, piece, sources.gamma, spread, springs[some], degree)
-            right = _right(head, piece, sources, spread, sprung[some], degree)
+            system = _system(head, piece, sources.gamma, spread, degree)
+            right = _right(head, piece, sources, spread, degree)
             found = np.asarray(np.linalg.solve(system, right)[:, : degree * (degree + 2)])
-            yield LocalFluxes(some, found[:, :, 3 * degree :], found[:, :, : 3 * degree])
+            yield LocalFluxes(piece.triangles, found[:, :, 3 * degree :], found[:, :, : 3 * degree])
 
 
-def _system(
-    head: Head, piece: Piece, gamma: float, spread: Floats, springs: Floats, degree: int
-) -> Floats:
+def _system(head: Head, piece: Piece, gamma: float, spread: Floats, degree: int) -> Floats:
     """(m, i + j, i + j): fluxes first, of which 3k across the sides, then p."""
     divergence = divergence_matrix(degree)
     inner, fluxes = divergence.shape
     k = (gamma * head.density + head.bedding)[piece.triangles, None, None]
     system = np.zeros((piece.triangles.size, fluxes + inner, fluxes + inner))
     system[:, :fluxes, :fluxes] = compliances(head, piece, degree)
-    system[:, : 3 * degree, : 3 * degree] += springs
     system[:, fluxes:, :fluxes] = divergence
     system[:, :fluxes, fluxes:] = divergence.T
     system[:, fluxes:, fluxes:] = -k * spread
     return system
 
 
-def _right(
-    head: Head, piece: Piece, sources: Sources, spread: Floats, sprung: Bools, degree: int
-) -> Floats:
+def _right(head: Head, piece: Piece, sources: Sources, spread: Floats, degree: int) -> Floats:
     """(m, i + j, 3k + n): a unit of each multiplier, then what each function drives."""
     some, sides, fluxes = piece.triangles, 3 * degree, degree * (degree + 2)
     functions = sources.vectors[sources.space.element_dofs[:, some]]
     slopes = _applied(driving_products(degree, sources.space.degree), functions)
     loads = _applied(load_products(degree, sources.space.degree), functions)
-    # by parts, slopes and spread loads differ by what crosses the sides
-    kept = _applied(-divergence_matrix(degree).T[:sides], np.swapaxes(loads, 0, 1))
-    slopes[:, :sides] = np.where(sprung[..., None], kept, slopes[:, :sides])
     c = 1 / (sources.values + sources.gamma)
     rho, kappa = (each[some, None, None] for each in (head.density, head.bedding))
     missing = rho - c * (sources.gamma * rho + kappa)
@@ -105,16 +93,3 @@ def _right(
 def _applied(matrix: Floats, functions: Floats) -> Floats:
     """(m, i, n): a matrix (i, j) times local functions (j, m, n)."""
     return np.asarray(np.swapaxes(np.tensordot(matrix, functions, axes=1), 0, 1))
-
-
-def _springs(head: Head, degree: int) -> tuple[Floats, Bools]:
-    """(n_triangles, 3k, 3k) what sprung sides add to the triangles' matrices, and which fluxes
-    (n_triangles, 3k) cross such sides."""
-    sides = 3 * degree
-    found = np.zeros((head.mesh.size, sides, sides))
-    sprung = np.zeros((head.mesh.size, sides), dtype=bool)
-    for rim in rims(head, 2 * degree):
-        own = slice(rim.edge * degree, (rim.edge + 1) * degree)
-        found[rim.triangles, own, own] += spring_matrices(rim, degree)
-        sprung[rim.triangles, own] = True
-    return found, sprung

@@ -34,7 +34,7 @@ class Bend:
     """
 
     per_circle: float = 10.0
-    per_gap: float = 2.0
+    per_gap: float = 1.0
     growth: float = 0.7
 
 

@@ -19,6 +19,9 @@ DEEPEST = 40
 WHOLE = 1e-7
 """How near to a whole number an exponent is taken as whole."""
 
+LOOSE = 1e-8
+"""Relative error above which a single layer is enough around fans of every power."""
+
 MISSED = 20.0
 """Bound on the energy that the triangles at a corner miss, in the units of ``_remaining``."""
 
@@ -40,7 +43,7 @@ def treatment(
 
     def layers(power: int) -> int:
         needed = max(_layers(term, power, share, tolerance, degree) for term in terms)
-        return max(needed, _fewest(power))
+        return max(needed, _fewest(power, tolerance))
 
     power = min((m for m in powers if m <= degree), key=layers)
     return power, layers(power)
@@ -68,6 +71,6 @@ def _missed(term: Term, power: int, share: float, degree: int) -> float:
     return float(MISSED * off**2 * min(share, 1.0) ** min(term.exponent, 1.0) * degree ** (-4 * e))
 
 
-def _fewest(power: int) -> int:
+def _fewest(power: int, tolerance: float) -> int:
     """Layers that leave a fan smooth modes: drawn in, their waves become shorter."""
-    return min(power - 1, 2)
+    return min(power - 1, 1 if tolerance > LOOSE else 2)

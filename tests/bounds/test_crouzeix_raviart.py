@@ -7,7 +7,7 @@ from hypothesis import strategies as st
 from scipy.linalg import eigh, null_space
 from scipy.special import jn_zeros, jnp_zeros
 
-from membrane.bounds.crouzeix_raviart import LIU, crouzeix_raviart
+from membrane.bounds.crouzeix_raviart import LIU, crouzeix_raviart, longest_along
 from membrane.bounds.head import head_of
 from membrane.bounds.leaves import leaves
 from membrane.triangle import EDGES, collapsed_rule, nodes
@@ -19,8 +19,8 @@ from tests.bounds.heads import numbers, rectangles
 def counted(keys, limit, step, **resolution):
     here = zoo.prepared(keys, fans=False, **resolution)
     head = head_of(here.membrane, here.mesh)
-    time = np.linalg.inv(head.tension) * head.density[:, None, None]
-    leaf = leaves(here.mesh, time, step / np.sqrt(limit), 100_000)
+    step /= np.sqrt(limit)
+    leaf = leaves(head, step, longest_along(head, limit, step), 100_000)
     return crouzeix_raviart(head, leaf).count(limit)
 
 
