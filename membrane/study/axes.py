@@ -22,7 +22,7 @@ _VALUES = ("values", *_ENDS)
 class _Keys:
     key: str
     steps: int | None = None
-    spacing: Spacing = Spacing.LINEAR
+    spacing: Spacing | None = None
 
 
 def read_axis(table: Table, probe: Probe, pick: Pick) -> Axis | None:
@@ -38,12 +38,14 @@ def read_axis(table: Table, probe: Probe, pick: Pick) -> Axis | None:
         return None
     between = not listed and pick is Pick.RANDOM
     if not listed and not between:
-        values = spaced(values[0], values[1], keys.steps or 0, keys.spacing)
+        values = spaced(values[0], values[1], keys.steps or 0, keys.spacing or Spacing.LINEAR)
     whole = probe.is_whole(keys.key)
     if whole and any(value != round(value) for value in values):
         table.refuse("", f"{keys.key} takes whole numbers; give them as values.")
         return None
-    return Axis(keys.key, probe.find(keys.key), values, between, keys.spacing, whole)
+    return Axis(
+        keys.key, probe.find(keys.key), values, between, keys.spacing or Spacing.LINEAR, whole
+    )
 
 
 def spaced(low: float, high: float, steps: int, spacing: Spacing) -> tuple[float, ...]:
