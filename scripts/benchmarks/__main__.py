@@ -6,7 +6,7 @@ import argparse
 import subprocess
 import sys
 
-SECTIONS = ("accuracy", "eigen")
+SECTIONS = ("accuracy", "eigen", "sweep")
 
 
 def main() -> None:
