@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from membrane.pitch import CENTS_PER_EIGENVALUE, CENTS_PER_OCTAVE
@@ -28,3 +30,17 @@ def estimate(fine: Modes, coarse: Modes, reason: str) -> Bracket:
     cents[moving] = np.maximum(np.abs(apart), ROUNDING)
     spread = np.exp(cents / CENTS_PER_EIGENVALUE)
     return Bracket(fine.eigenvalues / spread, fine.eigenvalues * spread, ESTIMATED, reason)
+
+
+def widened(known: Bracket, modes: Modes, others: Modes) -> Bracket:
+    """Estimates for coefficients that break across triangles, from the modes on two meshes.
+
+    There the error comes from the quadrature and is as good as random: every frequency may
+    be off by twice the largest distance between the two meshes.
+    """
+    count = min(len(modes.frequencies), len(others.frequencies))
+    one, other = modes.frequencies[:count], others.frequencies[:count]
+    moving = (one > 0.0) & (other > 0.0)
+    apart = CENTS_PER_OCTAVE * np.abs(np.log2(one[moving] / other[moving]))
+    spread = np.exp(2.0 * apart.max(initial=0.0) / CENTS_PER_EIGENVALUE)
+    return replace(known, low=known.low / spread, high=known.high * spread)

@@ -11,7 +11,7 @@ from time import perf_counter
 from threadpoolctl import threadpool_limits
 
 from membrane import plugins
-from membrane.accuracy import estimate
+from membrane.accuracy import estimate, widened
 from membrane.bounds import SPARE, bracketed, check_provable
 from membrane.coefficients import coefficients
 from membrane.errors import BracketError, SolveError
@@ -144,15 +144,39 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
             with clock.stage("mesh"):
                 return make_mesh(kernel, outline, membrane, study.modes, resolution, fans=fans)
 
-        tried: list[_Solution] = []
-        for _ in range(MESHES):
-            found = _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
-            tried.append(found)
-            if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
-                break
-            resolution = resolution.finer(found.excess)
-    best = min(tried, key=lambda solution: solution.excess)
+        def solved(resolution: Resolution) -> _Solution:
+            return _solve_on(meshed, membrane, resolution, study.modes, solver, clock)
+
+        if any(function.notes for function in study.functions):
+            best = _across(solved, resolution, study.modes.accuracy)
+        else:
+            best = _until_met(solved, resolution)
     return replace(best, notes=(*outline.notes, *best.notes))
+
+
+def _until_met(solved: Callable[[Resolution], _Solution], resolution: Resolution) -> _Solution:
+    """The best solution, on a finer mesh each time until one is accurate enough."""
+    tried: list[_Solution] = []
+    for _ in range(MESHES):
+        found = solved(resolution)
+        tried.append(found)
+        if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
+            break
+        resolution = resolution.finer(found.excess)
+    return min(tried, key=lambda solution: solution.excess)
+
+
+def _across(
+    solved: Callable[[Resolution], _Solution], resolution: Resolution, accuracy: float
+) -> _Solution:
+    """The solution on the second of two meshes, where a coefficient may break across triangles.
+
+    Finer ones would hardly help; how far the two are apart tells how far off both are.
+    """
+    first = solved(resolution)
+    second = solved(resolution.finer(max(first.excess, 1.0)))
+    bracket = widened(second.bracket, second.modes, first.modes)
+    return replace(second, bracket=bracket, excess=bracket.widest / accuracy)
 
 
 def _solve_on(
@@ -176,8 +200,10 @@ def _solve_on(
         """The same modes on a mesh that the proofs cover."""
         if not mesh.has_fans:
             return more
-        again = assemble(membrane, meshed(resolution.of_proofs, False), resolution.degree)
-        return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
+        plain = meshed(resolution.of_proofs, False)
+        with clock.stage("bounds"):
+            again = assemble(membrane, plain, resolution.degree)
+            return extract(again, len(more.eigenvalues), solver, wanted.accuracy)
 
     bracket = _bracket(membrane, mesh, resolution, provable, modes, wanted, clock)
     excess = bracket.widest / wanted.accuracy

@@ -25,6 +25,9 @@ _NUMBER_AND_UNIT = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s
 _NAME_AND_POWER = r"(?:[^\W\d_]\w*|°)(?:(?:\^|\*\*)-?\d)?"
 _UNIT = re.compile(rf"{_NAME_AND_POWER}(?:(?:\s*[*·/]\s*|\s+){_NAME_AND_POWER}){{0,9}}")
 _LONGEST_UNIT = 60
+_DECIMAL_COMMA = re.compile(r"\s*[+-]?(\d*),(\d+)(?![\d,])")
+_MARKED = re.compile(r"\s*([+-]?[\d.]+)\s*(?:(\"|''|″|”)|('|′|’))\s*")
+"""A number with an inch mark, or with a foot mark."""
 _TURN = 2.0 * pi * (1.0 + 1e-9)
 
 
@@ -82,6 +85,7 @@ class Quantity:
         return replace(function, factor=factor, unit=self.unit, noun=self.noun, sign=self.varying)
 
     def _from_text(self, text: str) -> float:
+        self._refuse_spelling(text)
         found = _NUMBER_AND_UNIT.fullmatch(text)
         if not found:
             raise ValueError(self._expected(f"got {shown(text)}."))
@@ -95,6 +99,19 @@ class Quantity:
             return float(Fraction(number) * factor)
         except OverflowError:
             return inf
+
+    def _refuse_spelling(self, text: str) -> None:
+        """Raise ValueError with the remedy for a decimal comma, inch marks and foot marks."""
+        marked, comma = _MARKED.fullmatch(text), _DECIMAL_COMMA.match(text)
+        if marked:
+            meant = shown(f"{marked[1]} {'in' if marked[2] else 'ft'}")
+        elif comma:
+            meant = shown(text.strip().replace(",", ".", 1))
+            thousands = len(comma[2]) == 3 and comma[1].strip("0")
+            meant += f" or {shown(text.strip().replace(',', '', 1))}" if thousands else ""
+        else:
+            return
+        raise ValueError(self._expected(f"got {shown(text)}; write {meant}."))
 
     def _factor(self, unit: str, text: str) -> Fraction:
         """How many SI units one ``unit`` is, as exactly as its definition."""
@@ -138,8 +155,9 @@ class _Unit(Quantity):
     """A unit by its name, "mm", or by what it measures, "25.4 mm"."""
 
     def read(self, value: Any) -> float | Function:
-        named = isinstance(value, str) and value.strip()[:1].isalpha()
-        return super().read(f"1 {value.strip()}" if named else value)
+        if isinstance(value, str) and value.strip()[:1].isalpha():
+            return float(self._factor(value.strip(), value))
+        return super().read(value)
 
 
 @dataclass(frozen=True)

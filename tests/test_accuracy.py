@@ -5,7 +5,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from membrane.accuracy import ROUNDING, estimate
+from membrane.accuracy import ROUNDING, estimate, widened
 from membrane.records.modes import Modes
 
 
@@ -38,3 +38,10 @@ def test_the_interval_reaches_as_far_down_as_up(off):
     found = estimate(fine, modes(100.0 * 2 ** (off / 1200)), "")
     np.testing.assert_allclose(found.low * found.high, fine.eigenvalues**2)
     assert abs(found.widest / (2 * off) - 1) < 1e-6
+
+
+def test_two_meshes_widen_every_interval_by_twice_their_largest_distance():
+    known = estimate(modes(0.0, 100.0, 200.0), modes(0.0, 100.0, 200.0), "")
+    other = modes(0.0, 100.0 * 2 ** (3 / 1200), 200.0)
+    found = widened(known, modes(0.0, 100.0, 200.0), other)
+    np.testing.assert_allclose(found.cents, [0.0, 12.0, 12.0], atol=1e-6)

@@ -59,3 +59,21 @@ def test_cholmod_options_are_left_as_they_were():
     after = dict(cholmod.options)
     after.pop("supernodal", None) if "supernodal" not in before else None
     assert after == before
+
+
+def test_matrices_of_one_pattern_are_kept_apart(library):
+    """The pattern is read once; the numbers and the factors are each matrix's own."""
+    A = definite(80, 4)
+    B = A + 2.0 * csc_matrix(diags(np.ones(80)))
+    b = np.ones(80)
+    by_A, by_B = cholesky.factorised(A), cholesky.factorised(B)
+    assert cholesky.negative_count(A - 1e6 * csc_matrix(diags(np.ones(80)))) == 80
+    np.testing.assert_allclose(A @ by_A(b), b, atol=1e-11)
+    np.testing.assert_allclose(B @ by_B(b), b, atol=1e-11)
+
+
+def test_a_pattern_is_not_taken_for_another(library):
+    A, other = definite(80, 5), definite(80, 6)
+    b = np.ones(80)
+    for matrix in (A, other, A):
+        np.testing.assert_allclose(matrix @ cholesky.factorised(matrix)(b), b, atol=1e-11)

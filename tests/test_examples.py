@@ -24,7 +24,7 @@ def snippets(language):
 def test_there_are_examples():
     assert len(STUDIES) >= 5
     assert len(SCRIPTS) >= 2
-    assert len(snippets("toml")) == 5
+    assert len(snippets("toml")) == 6
 
 
 @pytest.mark.slow

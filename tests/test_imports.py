@@ -37,7 +37,7 @@ STAGES = (
 )
 """Rooms that know nothing of each other; only the pipeline knows their order."""
 
-MAY_KNOW_STAGES = ("pipeline", "cli", "__init__", "__main__", "sweep.full")
+MAY_KNOW_STAGES = ("pipeline", "cli", "__init__", "__main__", "sweep.solving")
 HEAVY = (*OWNERS, "scipy", "pydantic", "pint", "numpy")
 
 

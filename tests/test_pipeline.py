@@ -48,6 +48,18 @@ def test_a_coarse_start_is_refined_until_the_accuracy_is_met(monkeypatch):
     assert max(p.bracket_cents for p in spectrum.partials) <= 0.05
 
 
+def test_brackets_of_a_head_with_fans_are_proven_on_a_mesh_without():
+    """9.6397238440219: T. Betcke & L. N. Trefethen, SIAM Review 47 (2005) 469."""
+    spectrum = solved(zoo.L_SHAPE, count=4)
+    first = spectrum.partials[0]
+    assert spectrum.modes.space.mesh.has_fans
+    assert {partial.bracket for partial in spectrum.partials} == {"guaranteed"}
+    assert spectrum.modes.eigenvalues[0] == pytest.approx(9.6397238440219, rel=1e-8)
+    assert first.low <= np.sqrt(9.6397238440219) / (2 * np.pi) <= first.high
+    for partial in spectrum.partials:
+        assert partial.low <= partial.frequency <= partial.high
+
+
 def test_what_falls_short_is_said(monkeypatch):
     monkeypatch.setattr(pipeline, "suited_resolution", lambda *_: Resolution(4, 3.0, 1e-3))
     monkeypatch.setattr(pipeline, "MESHES", 1)

@@ -121,6 +121,13 @@ def test_lengths_agree_with_pints_own_conversion(value, unit):
         (units.Angle, 30, 'an angle within one turn, got 30; write "30 deg".'),
         (units.Angle, "361 deg", 'an angle within one turn, got "361 deg".'),
         (units.Cents, "0.01 Hz", 'expected an interval such as "0.01 cent", got "0.01 Hz".'),
+        (units.ArealDensity, "0,26 kg/m^2", 'got "0,26 kg/m^2"; write "0.26 kg/m^2".'),
+        (units.LineTension, "1,000 N/m", 'write "1.000 N/m" or "1000 N/m".'),
+        (units.Length, '14"', 'write "14 in".'),
+        (units.Length, "14 ″", 'write "14 in".'),
+        (units.Length, "1.5'", 'write "1.5 ft".'),
+        (units.UnitOfLength, "kg", 'expected a unit of length such as "mm", got "kg".'),
+        (units.UnitOfLength, "cmm", 'got "cmm", whose unit is unknown; did you mean "mm"?'),
         (units.Length, {"formula": "r"}, "cannot vary over the head"),
     ],
 )

@@ -55,12 +55,17 @@ def drawn(keys: dict[str, Any]) -> Iterator[tuple[Kernel, Study, Outline, Membra
 
 
 def prepared(
-    keys: dict[str, Any], degree: int = 6, phase: float = 3.0, tolerance: float = 1e-8
+    keys: dict[str, Any],
+    degree: int = 6,
+    phase: float = 3.0,
+    tolerance: float = 1e-8,
+    *,
+    fans: bool = True,
 ) -> Prepared:
     """A study's mesh at a given resolution."""
     with drawn(keys) as (kernel, study, outline, membrane):
         resolution = Resolution(degree, phase, tolerance)
-        mesh = make_mesh(kernel, outline, membrane, study.modes, resolution)
+        mesh = make_mesh(kernel, outline, membrane, study.modes, resolution, fans=fans)
     return Prepared(study, outline, membrane, mesh)
 
 

@@ -30,23 +30,10 @@ SAMPLES = 8
 RISE = 1 / np.cos(np.pi / (2 * SAMPLES))
 
 
-def owner(head: Head, leaf: Leaves) -> Ints:
-    """(3, n): the mesh's side that each side of the leaves is a part of, or -1."""
-    x, y = leaf.corners
-    outside = np.stack([1 - x - y, x, y])  # (3 coordinates, 3 corners, n)
-    found = np.full((3, leaf.parent.size), -1)
-    for side, (a, b) in enumerate(EDGES):
-        for edge, pair in enumerate(EDGES):
-            third = 3 - sum(pair)
-            on = (outside[third, a] == 0.0) & (outside[third, b] == 0.0)
-            found[side, on] = head.facets.of_triangle[edge, leaf.parent[on]]
-    return found
-
-
 def bends(head: Head, leaf: Leaves, owners: Ints, gradients: Floats) -> Floats:
     """(n,): e of each leaf.
 
-    owners : (3, n), as from ``owner``
+    owners : (3, n), as from ``owner_of``
     gradients : (2, 3, n), of the leaves' barycentric coordinates, per metre
     """
     e = np.zeros(leaf.parent.size)

@@ -9,8 +9,9 @@ from membrane.bounds.gap import proven_limit, widest_gap
 from membrane.bounds.geometry import stretches
 from membrane.bounds.goerisch import flux_form, lower_bounds
 from membrane.bounds.head import Head, head_of
+from membrane.bounds.local_fluxes import Sources
 from membrane.bounds.pieces import pieces
-from membrane.bounds.provable import unproven
+from membrane.bounds.provable import check_provable
 from membrane.bounds.rims import rims
 from membrane.bounds.ritz import forms
 from membrane.errors import BracketError, SolveError
@@ -40,9 +41,7 @@ def bracketed(membrane: Membrane, modes: Modes, count: int, accuracy: float) -> 
     accuracy : cents, from low to high; the work stops where it is reached
     Raises BracketError, whose sentence says why none is guaranteed.
     """
-    reason = unproven(membrane)
-    if reason:
-        raise BracketError(reason)
+    check_provable(membrane)
     head = head_of(membrane, modes.space.mesh)
     kept = widest_gap(modes.eigenvalues, count)
     try:
@@ -85,6 +84,7 @@ class _Bounds:
 
     def _low(self, degree: int) -> Floats:
         gamma = SHIFT * self.limit
-        fluxes = best_fluxes(self.head, self.space, self.vectors, degree, gamma)
+        sources = Sources(self.space, self.vectors, self.high, gamma)
+        fluxes = best_fluxes(self.head, sources, degree)
         c = flux_form(self.head, self.space, self.vectors, fluxes, gamma, self.pieces, self.rims)
         return lower_bounds(self.forms, c, self.limit, gamma)

@@ -15,6 +15,16 @@ to at least beta times its length times the mean squared, just that. Summed up: 
 >= the discrete form of I u. If that has j negative and no zero eigenvalues, at most j exact ones
 lie at or below s: on their span the left side is not positive, and I is one to one there, since
 I u = 0 leaves (1 - g c^2) T |grad w|^2, which is positive unless u = 0.
+
+A side e with mass, opposite the corner P of K, takes a part of T |grad w|^2 for w on it: from
+
+    the divergence of (x - P) w^2,
+    integral of w^2 on e = |e|/|K| integral of w^2 + w (x - P) . grad w,
+
+and so, by T^-1, integral of w^2 on e <= d^2 integral of T grad w . grad w, with d^2 =
+|e|/|K| (0.1893^2 + 0.1893) h^2, |e| and |K| in metres. The side then has mu/(1 - s mu d^2/y)
+for mu, where y is its part and 1 - the sum of all y what is left for g: g/(1 - g c^2/(1 - sum)).
+Where there is mass it takes half; of a line each of the triangles beside it bears half.
 """
 
 from __future__ import annotations
@@ -26,10 +36,10 @@ from typing import Any
 import numpy as np
 from scipy.sparse import coo_array, csr_array, diags_array
 
-from membrane.bounds.bend import bends, owner
+from membrane.bounds.bend import bends
 from membrane.bounds.facets import Facets, facets_of
 from membrane.bounds.head import Head
-from membrane.bounds.leaves import Leaves
+from membrane.bounds.leaves import Leaves, owner_of
 from membrane.cholesky import negative_count
 from membrane.errors import SolveError
 from membrane.records.arrays import Bools, Floats, Ints
@@ -47,6 +57,7 @@ class CrouzeixRaviart:
     areas : (n,)
     tension : (n, 2, 2), at most; density : (n,), at least; bedding : (n,), at most
     spring : (n_facets,), N/m, at most, times the length
+    mass : (3, n), kg, at least, on each side of each triangle, times the length
     """
 
     facets: Facets
@@ -57,21 +68,41 @@ class CrouzeixRaviart:
     density: Floats
     bedding: Floats
     spring: Floats
+    mass: Floats
     fills: bool
 
     def count(self, s: float) -> int | None:
         """How many eigenvalues at most lie at or below ``s``; None where the mesh cannot tell."""
         g = np.maximum(s * self.density - self.bedding, 0.0)
-        loss = g * (LIU * self._longest) ** 2
-        if not self.fills or loss.max() >= 1.0:
+        square = self._longest**2
+        heavy = self.mass > 0.0
+        part = heavy / (2 * np.maximum(heavy.sum(axis=0), 1))
+        loss = g * LIU**2 * square / (1 - part.sum(axis=0))
+        along = s * self.mass * (LIU**2 + LIU) * square / self.areas
+        if not self.fills or loss.max() >= 1.0 or (along >= part)[heavy].any():
             return None
-        shares = np.tile(self.areas / 3 * g / (1 - loss), 3)
-        load = np.bincount(self.facets.of_triangle.ravel(), shares, self.facets.size)
+        load = np.tile(self.areas / 3 * g / (1 - loss), 3)
+        load = np.bincount(self.facets.of_triangle.ravel(), load, self.facets.size)
+        rest = np.where(heavy, 1 - along / np.where(heavy, part, 1.0), 1.0)
+        form = self._stiffness - diags_array(load) - self._on_sides(s * self.mass / rest)
         free = ~self.fixed
         try:
-            return negative_count(csr_array(self._stiffness - diags_array(load))[free][:, free])
+            return negative_count(csr_array(form)[free][:, free])
         except SolveError:  # a zero pivot proves nothing
             return None
+
+    def _on_sides(self, load: Floats) -> Any:
+        """The mass of loaded sides (3, n): shapes are 1 on their own side, and 1 - 2 t from one
+        end and from the other on the two beside it."""
+        sides = self.facets.of_triangle
+        own = [(sides[i], sides[i], load[i]) for i in range(3)]
+        for i in range(3):
+            j, k = (i + 1) % 3, (i + 2) % 3
+            third = load[i] / 3
+            own += [(sides[j], sides[j], third), (sides[k], sides[k], third)]
+            own += [(sides[j], sides[k], -third), (sides[k], sides[j], -third)]
+        rows, columns, data = (np.concatenate(each) for each in zip(*own, strict=True))
+        return coo_array((data, (rows, columns)), shape=(self.facets.size,) * 2).tocsr()
 
     @cached_property
     def _longest(self) -> Floats:
@@ -97,10 +128,20 @@ class CrouzeixRaviart:
         return (K + diags_array(self.spring)).tocsr()
 
 
+def longest_along(head: Head, s: float, step: float) -> Floats:
+    """(n_facets,), metres: parts of sides with mass that cost the count to ``s`` no more, as a
+    share, than triangles of the travel time ``step`` do; infinite elsewhere."""
+    share = s * LIU**2 * step**2
+    tension = np.linalg.eigvalsh(head.tension)[:, 0].min()
+    # on an equilateral triangle d^2 is about half its side
+    with np.errstate(divide="ignore"):
+        return np.asarray(share * tension / (s * head.mass))
+
+
 def crouzeix_raviart(head: Head, leaf: Leaves) -> CrouzeixRaviart:
     """The safe coefficients of a head on leaves of its mesh."""
     gradients, signed = _gradients(leaf)
-    owners = owner(head, leaf)
+    owners = owner_of(head, leaf)
     e = bends(head, leaf, owners, gradients)
     fills = bool((e < 1.0).all() and (signed * _turned(head, leaf) > 0.0).all())
     e = np.minimum(e, 0.999)
@@ -114,8 +155,16 @@ def crouzeix_raviart(head: Head, leaf: Leaves) -> CrouzeixRaviart:
         density=head.density[leaf.parent] * (1 + e) ** 2,
         bedding=head.bedding[leaf.parent] * (1 - e) ** 2,
         spring=_on_facets(facets, owners, head.spring, 1 - e) * facets.lengths(leaf.vertices),
+        mass=_masses(head, facets, leaf, owners) * (1 + e),
         fills=fills,
     )
+
+
+def _masses(head: Head, facets: Facets, leaf: Leaves, owners: Ints) -> Floats:
+    """(3, n), kg, on the sides of the leaves; those within the head share it."""
+    share = head.mass / np.where(head.border, 1.0, 2.0)
+    lengths = facets.lengths(leaf.vertices)[facets.of_triangle]
+    return np.asarray(np.where(owners >= 0, share[owners], 0.0) * lengths)
 
 
 def _gradients(leaf: Leaves) -> tuple[Floats, Floats]:

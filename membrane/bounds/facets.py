@@ -32,6 +32,13 @@ class Facets:
         wanted = np.hstack([np.empty((2, 0), dtype=np.int64), *pairs])
         return np.isin(_keys(self.ends), _keys(wanted))
 
+    def beside(self, edge: int) -> tuple[Ints, Ints]:
+        """Sides, and one triangle of each, whose side number ``edge`` it is: each side once."""
+        count = self.of_triangle.shape[1]
+        sides, first = np.unique(self.of_triangle, return_index=True)
+        here = first // count == edge
+        return sides[here], first[here] % count
+
     def lengths(self, vertices: Floats) -> Floats:
         """(n,), metres, of the straight sides."""
         return np.asarray(np.hypot(*(vertices[:, self.ends[1]] - vertices[:, self.ends[0]])))

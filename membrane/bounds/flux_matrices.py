@@ -13,13 +13,11 @@ from __future__ import annotations
 from functools import cache
 
 import numpy as np
-from numpy.polynomial.legendre import legval
 
 from membrane.bounds.head import Head
 from membrane.bounds.pieces import Piece
-from membrane.bounds.rims import Rim
 from membrane.records.arrays import Floats
-from membrane.triangle import collapsed_rule, flux_shapes, gauss, shapes
+from membrane.triangle import collapsed_rule, flux_shapes, shapes
 from membrane.triangle.polynomials import orthonormal
 
 
@@ -85,9 +83,10 @@ def load_products(degree: int, of_functions: int) -> Floats:
     return np.asarray((q * weights) @ shapes(points, of_functions)[0].T)
 
 
-def spring_matrices(rim: Rim, degree: int) -> Floats:
-    """(n, k, k) matrices of (s . n)(t . n) / beta along the sides of a rim."""
-    x, weights = gauss(rim.weights.size, 0, 0)
-    crossing = np.stack([(2 * j + 1) * legval(x, np.eye(degree)[j]) for j in range(degree)])
-    each = weights / 2 / (rim.spring[:, None] * rim.speed)
-    return np.asarray(np.einsum("im,tm,jm->tij", crossing, each, crossing, optimize=True))
+@cache
+def driving_products(degree: int, of_functions: int) -> Floats:
+    """(i, j): integrals of the fluxes times the slopes of the functions' shapes, likewise."""
+    points, weights = collapsed_rule(degree + of_functions - 1)
+    values, _ = flux_shapes(points, degree)
+    _, slopes = shapes(points, of_functions)
+    return np.asarray(sum((values[k] * weights) @ slopes[k].T for k in range(2)))

@@ -2,158 +2,128 @@
 
 For each function u the flux s minimises
 
-    integral of T^-1 s . s + (rho u + div s)^2 / k + along springs (s . n)^2 / beta,
+    integral of T^-1 s . s + (rho u + div s)^2 / k + along lines (mu u - [s . n])^2 / l,
 
-k = gamma rho + kappa, with no flux across free edges. With p = (rho u + div s)/k that is
+k = gamma rho + kappa, l = gamma mu + beta, [s . n] what leaves the triangles beside a line or an
+edge, with no flux across free edges. Near c T grad u, c = 1/(lambda + gamma), it is found from
+there: with (rho u + div s)/k = c u + p and (mu u - [s . n])/l = c u + m, by parts,
 
-    (T^-1 s, t) + (p, div t) + springs + m across sides = 0,   (div s, q) - (k p, q) = -(rho u, q)
+    (T^-1 s, t) + (p, div t) - <m, t . n> = c (grad u, t),
+    (div s, q) - (k p, q) = -((rho - c k) u, q)
 
-in each triangle by itself, where the multipliers m make the fluxes of neighbours agree: they are
-all that is left to one sparse system (D. N. Arnold & F. Brezzi, RAIRO M2AN 19 (1985) 7, from
-memory). Nothing is divided by k, so that the smallest layers at a corner lose no digits. A flux
-that is not quite the best costs width, never validity.
+in each triangle by itself. What is left to one sparse system are the m, where there is no line the
+multipliers that make the fluxes of neighbours agree: [s . n] + l m = (mu - c l) u on all sides but
+the fixed ones (after D. N. Arnold & F. Brezzi, RAIRO M2AN 19 (1985) 7, from memory). Nothing is
+divided by k or l, and p and m are small, so that the smallest layers at a corner lose no digits. A
+flux that is not quite the best costs width, never validity.
 """
 
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from scipy.sparse import csc_array
 
-from membrane.bounds.flux_matrices import (
-    compliances,
-    divergence_matrix,
-    load_products,
-    spreads,
-    spring_matrices,
-)
 from membrane.bounds.head import Head
-from membrane.bounds.pieces import Piece, pieces
+from membrane.bounds.local_fluxes import LocalFluxes, Sources, local_fluxes
 from membrane.bounds.rims import rims
+from membrane.bounds.ritz import on_rim
 from membrane.cholesky import factorised
 from membrane.records.arrays import Floats, Ints
-from membrane.records.pencil import Space
 
 
-@dataclass(frozen=True)
-class _Solved:
-    """Some triangles, each solved by itself.
-
-    triangles : (n,)
-    driven : (n, i, m), the fluxes with no multipliers
-    answers : (n, i, 3k), the fluxes for a unit of each multiplier
-    """
-
-    triangles: Ints
-    driven: Floats
-    answers: Floats
-
-
-def best_fluxes(head: Head, space: Space, vectors: Floats, degree: int, gamma: float) -> Floats:
-    """(i, n_triangles, n): local fluxes of a degree for the functions ``vectors``."""
-    springs = _springs(head, degree)
-    parts = [
-        _solved(head, space, vectors, piece, degree, gamma, springs[piece.triangles])
-        for whole in pieces(head, 2 * degree, extra=0)
-        for piece in whole.parts(10 * degree**2)
-    ]
+def best_fluxes(head: Head, sources: Sources, degree: int) -> Floats:
+    """(i, n_triangles, n): local fluxes of a degree for the functions of ``sources``."""
+    parts = list(local_fluxes(head, sources, degree))
     numbers, signs = _sides(head, degree)
-    multipliers = _multipliers(head, degree, parts, numbers, signs)
-    local = np.empty((degree * (degree + 2), head.mesh.size, vectors.shape[1]))
+    traces = _traces(head, sources, degree, parts)
+    local = np.empty((degree * (degree + 2), head.mesh.size, sources.values.size))
     for part in parts:
         some = part.triangles
-        across = signs[:, some].T[..., None] * multipliers[numbers[:, some].T]
-        local[:, some] = np.swapaxes(part.driven - part.answers @ across, 0, 1)
-    return _agreed(head, degree, local, numbers)
+        outer = signs[:, some].T[..., None] * traces[numbers[:, some].T]
+        local[:, some] = np.swapaxes(part.driven + part.answers @ outer, 0, 1)
+    return _agreed(head, degree, local)
 
 
-def _solved(
-    head: Head,
-    space: Space,
-    vectors: Floats,
-    piece: Piece,
-    degree: int,
-    gamma: float,
-    springs: Floats,
-) -> _Solved:
-    some, edges = piece.triangles, 3 * degree
-    divergence = divergence_matrix(degree)
-    pressures, fluxes = divergence.shape
-    spread = spreads(piece, degree)
-    k = (gamma * head.density + head.bedding)[some, None, None]
-    system = np.zeros((some.size, fluxes + pressures, fluxes + pressures))
-    system[:, :fluxes, :fluxes] = compliances(head, piece, degree)
-    system[:, :edges, :edges] += springs
-    system[:, fluxes:, :fluxes] = divergence
-    system[:, :fluxes, fluxes:] = divergence.T
-    system[:, fluxes:, fluxes:] = -k * spread
-    functions = vectors[space.element_dofs[:, some]]
-    loads = np.tensordot(load_products(degree, space.degree), functions, axes=1)
-    share = (head.turning * head.density)[some, None, None]
-    right = np.zeros((some.size, fluxes + pressures, edges + vectors.shape[1]))
-    right[:, :edges, :edges] = np.eye(edges)
-    right[:, fluxes:, edges:] = -share * (spread @ np.swapaxes(loads, 0, 1))
-    found = np.linalg.solve(system, right)[:, :fluxes]
-    return _Solved(some, found[:, :, edges:], found[:, :, :edges])
-
-
-def _springs(head: Head, degree: int) -> Floats:
-    """(n_triangles, 3k, 3k): what sprung sides add to the triangles' matrices."""
-    found = np.zeros((head.mesh.size, 3 * degree, 3 * degree))
-    for rim in rims(head, 2 * degree):
-        own = slice(rim.edge * degree, (rim.edge + 1) * degree)
-        found[rim.triangles, own, own] += spring_matrices(rim, degree)
-    return found
+def outward(head: Head, fluxes: Floats, degree: int) -> Floats:
+    """(n_facets k, n): [s . n] on each side, per unit of its parameter, in Legendre polynomials."""
+    numbers, signs = _sides(head, degree)
+    net = np.zeros((head.facets.size * degree, fluxes.shape[2]))
+    np.add.at(net, numbers, signs[..., None] * fluxes[: 3 * degree])
+    order = np.tile(np.arange(degree), head.facets.size)
+    return np.asarray((2 * order + 1)[:, None] * net)
 
 
 def _sides(head: Head, degree: int) -> tuple[Ints, Floats]:
     """Numbers of the fluxes across each triangle's sides, (3k, n_triangles), and their signs:
-    1 in one of the triangles beside a side, -1 in the other."""
-    facets = head.facets.of_triangle
-    _, first = np.unique(facets, return_index=True)
-    signs = np.full(facets.size, -1.0)
-    signs[first] = 1.0
-    numbers = facets[:, None] * degree + np.arange(degree)[:, None]
-    return numbers.reshape(3 * degree, -1), np.repeat(signs.reshape(facets.shape), degree, axis=0)
+    1 where a flux that counts as positive leaves the triangle, else -1."""
+    numbers = head.facets.of_triangle[:, None] * degree + np.arange(degree)[:, None]
+    signs = np.array([[1.0], [1.0], [-1.0]]) * head.turning  # from left to right of the way
+    return numbers.reshape(3 * degree, -1), np.repeat(signs, degree, axis=0)
 
 
-def _multipliers(
-    head: Head, degree: int, parts: list[_Solved], numbers: Ints, signs: Floats
-) -> Floats:
-    """(n_facets k, m): what makes neighbours agree, and free edges bear no flux."""
-    total, width = head.facets.size * degree, parts[0].driven.shape[2]
-    gaps = np.zeros((total, width))
+def _traces(head: Head, sources: Sources, degree: int, parts: list[LocalFluxes]) -> Floats:
+    """(n_facets k, n): m on each side, in Legendre polynomials; 0 on fixed ones."""
+    numbers, signs = _sides(head, degree)
+    total = head.facets.size * degree
+    right = np.zeros((total, sources.values.size))
+    blocks = []
     for part in parts:
-        turned = signs[:, part.triangles].T[..., None] * part.driven[:, : 3 * degree]
-        np.add.at(gaps, numbers[:, part.triangles].T, turned)
-    entries = zip(*_entries(degree, parts, numbers, signs), strict=True)
-    rows, columns, data = (np.concatenate(each) for each in entries)
-    held = np.repeat(~head.border | head.free, degree)
-    system = csc_array((data, (rows, columns)), shape=(total, total))[held][:, held]
-    found = np.zeros((total, width))
-    found[held] = factorised(system)(gaps[held])
+        dofs, sign = numbers[:, part.triangles].T, signs[:, part.triangles].T
+        np.add.at(right, dofs, -sign[..., None] * part.driven[:, : 3 * degree])
+        answers = part.answers[:, : 3 * degree]
+        blocks.append((dofs, sign[:, :, None] * answers * sign[:, None, :]))
+    for dofs, block, load in _loaded(head, sources, degree):
+        np.add.at(right, dofs, load)
+        blocks.append((dofs, block))
+    held = np.repeat(~head.fixed, degree)
+    found = np.zeros_like(right)
+    found[held] = factorised(_sparse(blocks, total)[held][:, held])(right[held])
     return found
 
 
-def _entries(
-    degree: int, parts: list[_Solved], numbers: Ints, signs: Floats
-) -> Iterator[tuple[Ints, Ints, Floats]]:
-    for part in parts:
-        dofs, sign = numbers[:, part.triangles].T, signs[:, part.triangles].T
-        rows, columns = np.broadcast_arrays(dofs[:, :, None], dofs[:, None, :])
-        block = sign[:, :, None] * part.answers[:, : 3 * degree] * sign[:, None, :]
-        yield rows.ravel(), columns.ravel(), block.ravel()
+def _loaded(head: Head, sources: Sources, degree: int) -> Iterator[tuple[Ints, Floats, Floats]]:
+    """Of loaded sides the numbers (n, k), the matrices (n, k, k) and the loads (n, k, m).
+
+    With m = (mu/l - c) u - [s . n]/l tested by each polynomial P along the side, and D^-1 the
+    integrals of their squares: [s . n] = D W^-1 (integrals of (mu/l - c) u P - D^-1 m), where W
+    are the integrals of P P'/l.
+    """
+    space, c = sources.space, 1 / (sources.values + sources.gamma)
+    squares = 1 / (2 * np.arange(degree) + 1)
+    for rim in rims(head, 2 * degree):
+        P, stiff = rim.legendre(degree), rim.stiff(sources.gamma)
+        per_metre = rim.weights / (stiff * rim.speed)
+        inverse = np.linalg.inv(np.einsum("im,tm,jm->tij", P, per_metre, P, optimize=True))
+        local = sources.vectors[space.element_dofs[:, rim.triangles]]
+        u = on_rim(rim, space.degree, local) * (rim.mass[:, None] / stiff - c)[:, None]
+        load = inverse @ np.einsum("im,m,tmn->tin", P, rim.weights, u, optimize=True)
+        block = squares[:, None] * inverse * squares
+        numbers = rim.facets[:, None] * degree + np.arange(degree)
+        yield numbers, block, squares[:, None] * load
 
 
-def _agreed(head: Head, degree: int, local: Floats, numbers: Ints) -> Floats:
-    """The same, neighbours made to agree and free edges to bear nothing to the last digit."""
+def _sparse(blocks: list[tuple[Ints, Floats]], total: int) -> Any:
+    """The sum of blocks (n, i, i) at their dofs (n, i)."""
+    rows = [np.broadcast_to(dofs[:, :, None], block.shape).ravel() for dofs, block in blocks]
+    columns = [np.broadcast_to(dofs[:, None, :], block.shape).ravel() for dofs, block in blocks]
+    data = np.concatenate([block.ravel() for _, block in blocks])
+    places = np.concatenate(rows), np.concatenate(columns)
+    return csc_array((data, places), shape=(total, total))
+
+
+def _agreed(head: Head, degree: int, local: Floats) -> Floats:
+    """The same, made to agree across sides without load, and to bear nothing on free edges, to
+    the last digit."""
+    numbers, _ = _sides(head, degree)
     edges = 3 * degree
     total = np.zeros((head.facets.size * degree, local.shape[2]))
     np.add.at(total, numbers, local[:edges])
     beside = np.bincount(numbers.ravel(), minlength=total.shape[0])
     mean = total / beside[:, None]
     mean[np.repeat(head.free, degree)] = 0.0
-    local[:edges] = mean[numbers]
+    loaded = np.repeat(head.loaded, degree)[numbers]
+    local[:edges] = np.where(loaded[..., None], local[:edges], mean[numbers])
     return local

@@ -3,20 +3,22 @@
 N. J. Lehmann, ZAMM 29 (1949) 341; F. Goerisch & H. Haunhorst, ZAMM 65 (1985) 129; with fluxes
 T. Vejchodsky, Numer. Methods PDE 34 (2018) 1188 (volumes and pages from memory).
 
-Let A = a + gamma b. A(u, v) is the inner product of (grad u, u, u on springs) and that of v with
-the weights T, k = gamma rho + kappa and beta. For a flux s with s . n = 0 on free edges the
-triple w = (T^-1 s, (rho u + div s)/k, -s . n/beta) has with that of any v, which vanishes on
-fixed edges, the product
+Let A = a + gamma b. A(u, v) is the inner product of (grad u, u, u on lines) and that of v with the
+weights T, k = gamma rho + kappa and l = gamma mu + beta. For a flux s with s . n = 0 on free edges,
+and [s . n] the sum of what leaves the triangles beside a line or an edge, the triple
+w = (T^-1 s, (rho u + div s)/k, (mu u - [s . n])/l) has with that of any v, which vanishes on fixed
+edges, the product
 
-    integral of s . grad v + (rho u + div s) v - along springs s . n v = b(u, v)
+    integral of s . grad v + (rho u + div s) v + along lines (mu u - [s . n]) v = b(u, v)
 
 by parts. So with C the inner products of the w, and where lambda_(N+1) > nu, n = nu + gamma,
 
     (A - n B) x = t (A - 2 n B + n^2 C) x,  t_1 <= ... <= t_N < 0
     gives  lambda_(N+1-i) >= n - n/(1 - t_i) - gamma.
 
-Larger A or C, as forms, give lower bounds: then both sides' forms grow, and where t < 0 the
-form A - n B - t (A - 2 n B + n^2 C) grows with them, so that fewer t lie below any limit.
+Larger a or C or smaller b, as forms, give lower bounds: since gamma < n both sides' forms then
+grow, and where t < 0 the form A - n B - t (A - 2 n B + n^2 C) grows with them, so that fewer t lie
+below any limit.
 """
 
 from __future__ import annotations
@@ -27,10 +29,11 @@ import numpy as np
 from scipy.linalg import eigh
 
 from membrane.bounds.flux_matrices import metric
+from membrane.bounds.fluxes import outward
 from membrane.bounds.head import Head
 from membrane.bounds.pieces import Piece
 from membrane.bounds.rims import Rim
-from membrane.bounds.ritz import Forms, on_piece, quadratic, weighted
+from membrane.bounds.ritz import Forms, on_piece, on_rim, quadratic, weighted
 from membrane.records.arrays import Floats
 from membrane.records.pencil import Space
 from membrane.triangle import flux_shapes
@@ -64,6 +67,7 @@ def flux_form(
     stiff = gamma * head.density + head.bedding
     c = np.zeros((vectors.shape[1],) * 2)
     degree = round(np.sqrt(1 + fluxes.shape[0])) - 1
+    net = outward(head, fluxes, degree)
     for whole in pieces:
         values, divergences = flux_shapes(whole.points, degree)
         for piece in whole.parts(vectors.shape[1]):
@@ -77,19 +81,23 @@ def flux_form(
             rest = head.density[piece.triangles, None, None] * u + spread
             c += weighted(over_k, rest, rest)
     for rim in rims:
-        crossing = _crossing(rim, degree, fluxes)
-        each = rim.weights / (rim.spring[:, None] * rim.speed)
-        c += (1 + rim.doubt) * weighted(each, crossing, crossing)
+        u = on_rim(rim, space.degree, vectors[space.element_dofs[:, rim.triangles]])
+        across = _at(rim.legendre(degree), net[rim.facets * degree + np.arange(degree)[:, None]])
+        c += _along(rim, u, across, gamma)
     return c
+
+
+def _along(rim: Rim, u: Floats, across: Floats, gamma: float) -> Floats:
+    """The integral of (mu u - s . n)^2 / (gamma mu + beta) along the sides of a rim.
+
+    u, across : (n_sides, m, n), the functions, and what crosses per unit of the parameter
+    """
+    per_metre = rim.weights / (rim.stiff(gamma) * rim.speed)
+    borne = rim.mass[:, None, None] * u * rim.speed[..., None]
+    found = weighted(per_metre, borne - across, borne - across)
+    each = weighted(per_metre, borne, borne) + weighted(per_metre, across, across)
+    return np.asarray(found + rim.doubt * each)
 
 
 def _at(shape: Floats, local: Floats) -> Floats:
     return np.asarray(np.swapaxes(np.tensordot(shape.T, local, axes=1), 0, 1))
-
-
-def _crossing(rim: Rim, degree: int, fluxes: Floats) -> Floats:
-    """(n_triangles, m, n): what crosses sprung sides, per unit of their parameter."""
-    from membrane.triangle import across
-
-    values, _ = flux_shapes(rim.points, degree)
-    return _at(np.tensordot(across(rim.edge), values, axes=1), fluxes[:, rim.triangles])

@@ -26,7 +26,8 @@ class Head:
     bedding : (n_triangles,), N/m^3
     facets : the sides of the triangles
     fixed : (n_facets,), whether a side is held at zero
-    spring : (n_facets,), N/m^2; 0 on free sides, on fixed ones and within the head
+    spring : (n_facets,), N/m^2, on edges and lines; 0 on fixed sides
+    mass : (n_facets,), kg/m, likewise
     """
 
     mesh: Mesh
@@ -36,6 +37,7 @@ class Head:
     facets: Facets
     fixed: Bools
     spring: Floats
+    mass: Floats
 
     @cached_property
     def border(self) -> Bools:
@@ -45,8 +47,13 @@ class Head:
 
     @cached_property
     def free(self) -> Bools:
-        """(n_facets,): which sides of the border nothing holds."""
-        return np.asarray(self.border & ~self.fixed & (self.spring == 0.0))
+        """(n_facets,): which sides of the border bear nothing and nothing holds."""
+        return np.asarray(self.border & ~self.fixed & ~self.loaded)
+
+    @property
+    def loaded(self) -> Bools:
+        """(n_facets,): which sides bear springs or mass."""
+        return np.asarray((self.spring > 0.0) | (self.mass > 0.0))
 
     @cached_property
     def bent(self) -> Bools:
@@ -86,6 +93,8 @@ def head_of(membrane: Membrane, mesh: Mesh) -> Head:
         for field in (Field.TENSION, Field.AREAL_DENSITY, Field.BEDDING)
     }
     fixed = facets.among(mesh.edges[name] for name in membrane.fixed_edges)
+    springs = _borne(membrane, mesh, facets, Field.EDGE_STIFFNESS, Field.LINE_STIFFNESS)
+    masses = _borne(membrane, mesh, facets, Field.EDGE_MASS, Field.LINE_MASS)
     return Head(
         mesh=mesh,
         tension=values[Field.TENSION][mesh.region],
@@ -93,12 +102,17 @@ def head_of(membrane: Membrane, mesh: Mesh) -> Head:
         bedding=values[Field.BEDDING][mesh.region],
         facets=facets,
         fixed=fixed,
-        spring=np.where(fixed, 0.0, _springs(membrane, mesh, facets)),
+        spring=np.where(fixed, 0.0, springs),
+        mass=np.where(fixed, 0.0, masses),
     )
 
 
-def _springs(membrane: Membrane, mesh: Mesh, facets: Facets) -> Floats:
-    spring = np.zeros(facets.size)
-    for name, pairs in mesh.edges.items():
-        spring[facets.among([pairs])] = float(membrane.total(Field.EDGE_STIFFNESS, name))
-    return spring
+def _borne(
+    membrane: Membrane, mesh: Mesh, facets: Facets, on_edges: Field, on_lines: Field
+) -> Floats:
+    """(n_facets,): what edges and lines put on the sides along them."""
+    found = np.zeros(facets.size)
+    for field, named in ((on_edges, mesh.edges), (on_lines, mesh.lines)):
+        for name, pairs in named.items():
+            found[facets.among([pairs])] += float(membrane.total(field, name))
+    return found

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from membrane.bounds.facets import facets_of
+from membrane.bounds.head import Head
 from membrane.records.arrays import Bools, Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.triangle import EDGES, nodes, shapes
@@ -28,36 +29,52 @@ class Leaves:
     corners: Floats
 
 
-def leaves(mesh: Mesh, speed: Floats, step: float, most: int) -> Leaves | None:
-    """Parts with every side at most ``step`` long in travel time; None if more than ``most``.
+def leaves(head: Head, step: float, along: Floats, most: int) -> Leaves | None:
+    """Parts that are small enough; None if they are more than ``most``.
 
-    speed : (n_triangles, 2, 2), a side d of a triangle takes the time (d . speed d)^(1/2)
-    step : seconds
+    step : longest travel time along any of their sides, seconds
+    along : (n_facets,), longest parts of the mesh's own sides, metres
     """
+    mesh = head.mesh
     corners = np.repeat(nodes(1)[:, :, None], mesh.size, axis=2)
     found = Leaves(mesh.vertices, mesh.triangles, np.arange(mesh.size), corners)
     while found.parent.size <= most:
-        lengths = _lengths(found, speed)
-        if lengths.max() <= step:
+        times = _lengths(found, np.linalg.inv(head.tension) * head.density[:, None, None])
+        owners = owner_of(head, found)
+        metres = _lengths(found, np.broadcast_to(np.eye(2), head.tension.shape))
+        long = (times > step) | ((owners >= 0) & (metres > along[owners]))
+        if not long.any():
             return found
-        found = _halved(mesh, found, lengths, step)
+        found = _halved(mesh, found, times, long)
     return None
 
 
-def _lengths(leaf: Leaves, speed: Floats) -> Floats:
-    """(3, n): travel times of the sides."""
+def owner_of(head: Head, leaf: Leaves) -> Ints:
+    """(3, n): the mesh's side that each side of the leaves is a part of, or -1."""
+    x, y = leaf.corners
+    outside = np.stack([1 - x - y, x, y])  # (3 coordinates, 3 corners, n)
+    found = np.full((3, leaf.parent.size), -1)
+    for side, (a, b) in enumerate(EDGES):
+        for edge, pair in enumerate(EDGES):
+            third = 3 - sum(pair)
+            on = (outside[third, a] == 0.0) & (outside[third, b] == 0.0)
+            found[side, on] = head.facets.of_triangle[edge, leaf.parent[on]]
+    return found
+
+
+def _lengths(leaf: Leaves, metric: Floats) -> Floats:
+    """(3, n): lengths of the sides by a metric (n_parents, 2, 2)."""
     places = leaf.vertices[:, leaf.triangles]
     sides = np.stack([places[:, b] - places[:, a] for a, b in EDGES], axis=1)
-    T = speed[leaf.parent]
-    return np.asarray(np.sqrt(np.einsum("dst,tde,est->st", sides, T, sides)))
+    return np.asarray(np.sqrt(np.einsum("dst,tde,est->st", sides, metric[leaf.parent], sides)))
 
 
-def _halved(mesh: Mesh, leaf: Leaves, lengths: Floats, step: float) -> Leaves:
-    """Every side too long is halved, and with any side of a triangle its longest."""
+def _halved(mesh: Mesh, leaf: Leaves, lengths: Floats, long: Bools) -> Leaves:
+    """Every ``long`` side is halved, and with any side of a triangle its longest."""
     facets = facets_of(leaf.triangles)
     longest = lengths.argmax(axis=0)
     marked = np.zeros(facets.size, dtype=bool)
-    marked[facets.of_triangle[lengths > step]] = True
+    marked[facets.of_triangle[long]] = True
     marked = _closed(facets.of_triangle, longest, marked)
     new = np.full(facets.size, -1)
     new[marked] = leaf.vertices.shape[1] + np.arange(np.count_nonzero(marked))

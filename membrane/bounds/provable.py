@@ -4,13 +4,7 @@ from __future__ import annotations
 
 from membrane.errors import BracketError
 from membrane.records.function import Function
-from membrane.records.membrane import Field, Membrane
-
-UNPROVEN = {
-    Field.EDGE_MASS: "an edge bears mass",
-    Field.LINE_MASS: "a line bears mass",
-    Field.LINE_STIFFNESS: "a line bears springs",
-}
+from membrane.records.membrane import Membrane
 
 
 def check_provable(membrane: Membrane) -> None:
@@ -27,6 +21,4 @@ def unproven(membrane: Membrane) -> str:
     for contribution in membrane.contributions:
         if isinstance(contribution.value, Function):
             return "a property varies from place to place"
-        if contribution.field in UNPROVEN and contribution.scale > 0.0:
-            return UNPROVEN[contribution.field]
     return ""

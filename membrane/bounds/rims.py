@@ -1,4 +1,4 @@
-"""Sprung sides with the points and lengths that integrals along them need."""
+"""Loaded sides with the points and lengths that integrals along them need."""
 
 from __future__ import annotations
 
@@ -6,6 +6,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.polynomial.legendre import legvander
 
 from membrane.bounds.head import Head
 from membrane.records.arrays import Floats, Ints
@@ -17,11 +18,14 @@ EXTRA = 24
 
 @dataclass(frozen=True)
 class Rim:
-    """Sprung sides that are the same side of their triangles.
+    """Sides with springs or mass that are the same side of a triangle beside each.
 
     edge : 0, 1 or 2, which side of the triangles
-    triangles : (n,)
+    triangles : (n,), one of the triangles beside each
+    facets : (n,)
     spring : (n,), N/m^2
+    mass : (n,), kg/m
+    places : (m,), the side's parameter, from 0 to 1
     points : (2, m), on the reference triangle
     weights : (m,), of the side's parameter from 0 to 1
     speed : (n, m), metres per unit of the parameter
@@ -30,28 +34,41 @@ class Rim:
 
     edge: int
     triangles: Ints
+    facets: Ints
     spring: Floats
+    mass: Floats
+    places: Floats
     points: Floats
     weights: Floats
     speed: Floats
     doubt: float
 
+    def legendre(self, degree: int) -> Floats:
+        """(degree, m): the Legendre polynomials below a degree, along the sides."""
+        return np.asarray(legvander(2 * self.places - 1, degree - 1).T)
+
+    def stiff(self, gamma: float) -> Floats:
+        """(n, 1): gamma mu + beta, N/m^2."""
+        return np.asarray((gamma * self.mass + self.spring)[:, None])
+
 
 def rims(head: Head, degree: int) -> Iterator[Rim]:
-    """The sprung sides. ``degree`` : of the integrands along them."""
+    """The loaded sides. ``degree`` : of the integrands along them."""
     bend = EXTRA if head.bent.any() else 0
     x, weights = gauss((degree + bend) // 2 + 1, 0, 0)
     for edge in range(3):
-        facet = head.facets.of_triangle[edge]
-        triangles = np.nonzero(head.spring[facet] > 0.0)[0]
+        facets, triangles = head.facets.beside(edge)
+        some = head.loaded[facets]
+        facets, triangles = facets[some], triangles[some]
         if not triangles.size:
             continue
-        points = _along(edge, (1 + x) / 2)
+        places = (1 + x) / 2
+        points = _along(edge, places)
         speed = _speed(head, triangles, edge, points)
         off = _departure(head, triangles, edge)
         doubt = (1 + off) / (1 - off) - 1 if off < 1.0 else np.inf
-        spring = head.spring[facet[triangles]]
-        yield Rim(edge, triangles, spring, points, weights / 2, speed, doubt)
+        loads = head.spring[facets], head.mass[facets]
+        yield Rim(edge, triangles, facets, *loads, places, points, weights / 2, speed, doubt)
 
 
 def _along(edge: int, s: Floats) -> Floats:

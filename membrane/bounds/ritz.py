@@ -1,9 +1,9 @@
 """Rayleigh-Ritz: eigenvalues in the span of some functions, each at least the exact one.
 
 With a(u, v) = integral of T grad u . grad v + kappa u v + the springs' beta u v, and
-b(u, v) = integral of rho u v, N independent functions that vanish on the fixed edges give
-L_1 <= ... <= L_N with L_k >= lambda_k: the min-max principle. Nothing need be known of how
-the functions were come by. A quadratic form above a gives larger values still.
+b(u, v) = integral of rho u v + the lines' mu u v, N independent functions that vanish on the
+fixed edges give L_1 <= ... <= L_N with L_k >= lambda_k: the min-max principle. Nothing need be
+known of how the functions were come by. A form above a, or below b, gives larger values still.
 """
 
 from __future__ import annotations
@@ -27,7 +27,7 @@ class Forms:
     """Matrices (n, n) of some functions.
 
     a : of the energy, or of a form above it
-    b : of the mass
+    b : of the mass, or of a form below it
     """
 
     a: Floats
@@ -54,8 +54,9 @@ def forms(
             b += weighted(head.density[piece.triangles, None] * piece.areas, u, u)
     for rim in rims:
         u = on_rim(rim, space.degree, vectors[space.element_dofs[:, rim.triangles]])
-        beta = rim.spring[:, None] * rim.speed * rim.weights
-        a += (1 + rim.doubt) * weighted(beta, u, u)
+        length = rim.speed * rim.weights
+        a += (1 + rim.doubt) * weighted(rim.spring[:, None] * length, u, u)
+        b += weighted(rim.mass[:, None] * length, u, u) / (1 + rim.doubt)
     return Forms((a + a.T) / 2, (b + b.T) / 2)
 
 

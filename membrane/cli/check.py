@@ -86,7 +86,7 @@ def _shape(shape: Shape) -> str:
 
 
 def _options(options: object) -> str:
-    pairs = plain(options).items()
+    pairs = [pair for pair in plain(options).items() if pair[1] not in ([], "")]
     worded = (f"{key} {_value(value)} {unit_of(options, key)}".rstrip() for key, value in pairs)
     return ", ".join(worded) or "no options"
 

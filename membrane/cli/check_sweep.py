@@ -13,15 +13,16 @@ def sweep_lines(study: Study) -> list[tuple[str, str]]:
     """
     if study.sweep is None:
         return []
-    from membrane.sweep.full import timed_sample
+    from membrane.sweep.solving import timed_sample
     from membrane.sweep.task import task_of
 
     points = task_of(study).points
     sample = timed_sample(study)
     seconds = points.meshes * sample.mesh + len(points) * sample.solve
     time = (
-        f"about {_lasting(seconds)} of one processor: {sample.mesh:.2g} s a mesh, "
-        f"{sample.solve:.2g} s a solve, both timed on the study's own values"
+        f"about {_lasting(seconds)} of one processor if all is solved in full: "
+        f"{sample.mesh:.2g} s a mesh, {sample.solve:.2g} s a solve, both timed on the study's own "
+        "values"
     )
     axes = [(f"axis {axis.key}", _axis(axis, study.sweep.pick)) for axis in study.sweep.axes]
     sizes = f"{len(points)} points, {points.meshes} different meshes"

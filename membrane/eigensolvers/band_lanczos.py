@@ -13,13 +13,13 @@ import numpy as np
 from membrane.cholesky import Solve
 from membrane.records.arrays import Floats
 
-CONVERGED = 1e-7
+CONVERGED = 1e-8
 """Residual of a vector over its eigenvalue; the error of the eigenvalue is of its square."""
 
 VANISHED = 1e-12
 """Length of a new direction, over the largest eigenvalue, from which it is only rounding."""
 
-CLEAN, QUIET = 2, 4
+CLEAN, QUIET = 2, 2
 """Rounds that are made orthogonal to the whole basis, and rounds between that are not."""
 
 START_SEED = 20240229
@@ -108,7 +108,8 @@ class _Basis:
         """w without its shares along the basis, and they.
 
         Nearly all of w lies along the vectors from ``first`` on. The others' share is rounding,
-        which grows up to a hundredfold with each round of the starts and may stay for a few.
+        which grows with each round of the starts by the ratio of the largest eigenvalue to the
+        smallest wanted: it may stay for two rounds, and not for more.
         """
         shares = np.zeros(self.size)
         quiet = first // self.starts % (CLEAN + QUIET) >= CLEAN

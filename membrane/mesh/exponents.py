@@ -29,6 +29,13 @@ The slope of u jumps by c u across a line with c = stiffness - lambda mass, like
 potential of a charge c u: that of a charged half line has r log r at its end.
 """
 
+NEAR = 1e-6
+"""How far off a line a vertex on it may be, in lengths of a segment beside it."""
+
+ON_HEAD = (Field.AREAL_DENSITY, Field.BEDDING)
+ON_EDGES = (Field.EDGE_STIFFNESS, Field.EDGE_MASS)
+ON_LINES = (Field.LINE_STIFFNESS, Field.LINE_MASS)
+
 
 class Exponents:
     """The terms of the modes near one vertex under a membrane; ``place`` is (2, 1)."""
@@ -41,7 +48,8 @@ class Exponents:
     def terms(self, fan: list[Wedge]) -> list[Term]:
         """What is not smooth in a run of wedges without an edge between them."""
         tensions = [self.tension(wedge) for wedge in fan]
-        if any(not alike(tensions[0], other) for other in tensions):
+        breaks = any(self._breaks(Field.TENSION, wedge.region, fan) for wedge in fan)
+        if breaks or any(not alike(tensions[0], other) for other in tensions):
             return [Term(TENSION_JUMP)]
         if not fan[0].first.parts:
             return self._inside(fan, tensions[0])
@@ -57,7 +65,11 @@ class Exponents:
         loads = [self.holds.loads(wedge.first) for wedge in fan]
         if not _balanced(loads, [wedge.first.tangent for wedge in fan], tension):
             return [Term(LOAD_ENDS)]
+        lines = {line for wedge in fan for line in wedge.first.lines}
+        if any(self._breaks(f, line, fan) for f in ON_LINES for line in lines):
+            return [Term(LOAD_ENDS)]
         jumps = not alike(densities[0], densities)
+        jumps = jumps or any(self._breaks(f, w.region, fan) for f in ON_HEAD for w in fan)
         return [Term(DENSITY_JUMP)] if jumps or np.any(loads) else []
 
     def _at_edge(self, fan: list[Wedge], tension: Floats) -> list[Term]:
@@ -71,7 +83,9 @@ class Exponents:
         springs = [self.holds.springs(edge) for edge in (first, last)]
         loads = [self.holds.loads(wedge.first) for wedge in fan[1:]]
         straight = abs(opening - pi) < WHOLE
-        if held == {False} and (np.any(loads) or (straight and springs[0] != springs[1])):
+        breaks = any(self._breaks(f, edge, fan) for f in ON_EDGES for edge in (first, last))
+        changing = straight and (breaks or springs[0] != springs[1])
+        if held == {False} and (np.any(loads) or changing):
             return [*terms, Term(LOAD_ENDS)]
         weaker_by = self._weaker_by(fan, bool(np.any(springs)))
         return [*terms, Term(leading + weaker_by)] if weaker_by < inf else terms
@@ -90,6 +104,11 @@ class Exponents:
             return 2.0
         others = (Field.AREAL_DENSITY, Field.BEDDING)
         return 3.0 if any(self.membrane.varies(field, region) for field in others) else inf
+
+    def _breaks(self, field: Field, name: str | None, fan: list[Wedge]) -> bool:
+        """Whether a field may jump or kink along a line through the vertex."""
+        x, y = self.place[:, 0].tolist()
+        return self.membrane.breaks_at(field, str(name), (x, y), NEAR * fan[0].first.length)
 
     def _here(self, field: Field, name: str | None) -> Floats:
         """A field of a region at the vertex, or its mean where it has no sound value there."""

@@ -23,7 +23,7 @@ Eigensolver = Callable[[Any, Any, int, float], tuple[Floats, Floats]]
 LOOSEST = 1e-5
 """Relative distance from which two eigenvalues are never taken for one."""
 
-EXTRAS = 3
+EXTRAS = 2
 """Modes asked for beyond the wanted ones, to see the end of the last cluster."""
 
 REPAIR = 30
@@ -49,7 +49,7 @@ def extract(pencil: Pencil, count: int, solver: Eigensolver, accuracy: float) ->
         values, vectors = _lowest(pencil, min(ask, size), solver)
         kept = whole_clusters(values, count, same)
         if kept == len(values) < size:
-            ask += EXTRAS  # the last cluster may go on
+            ask += 3 * EXTRAS  # a cluster so long is rare, and may go on
             continue
         missing = _count_below(pencil, values, kept) - kept
         if missing == 0:

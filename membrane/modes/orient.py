@@ -18,11 +18,14 @@ def oriented(pencil: Pencil, vectors: Floats, clusters: Ints) -> Floats:
     x, y = _unit_coordinates(pencil)
     chosen = vectors.copy()
     numbers, sizes = np.unique(clusters, return_counts=True)
+    together = np.isin(clusters, numbers[sizes > 1])
+    members = vectors[:, together]
+    weighted = np.asarray(pencil.M @ (np.exp(x)[:, None] * members))
     for number in numbers[sizes > 1]:
-        members = vectors[:, clusters == number]
-        weighted = members.T @ (pencil.M @ (np.exp(x)[:, None] * members))
-        _, turn = np.linalg.eigh(weighted + weighted.T)
-        chosen[:, clusters == number] = members @ turn[:, ::-1]
+        these = clusters[together] == number
+        energy = members[:, these].T @ weighted[:, these]
+        _, turn = np.linalg.eigh(energy + energy.T)
+        chosen[:, clusters == number] = members[:, these] @ turn[:, ::-1]
     means = (pencil.M @ np.exp(x + y / 3)) @ chosen
     return np.asarray(chosen * np.where(means < 0.0, -1.0, 1.0))
 

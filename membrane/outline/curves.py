@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Collection, Iterable, Mapping
 
 from membrane.errors import OutlineError
 from membrane.kernel import Kernel
@@ -10,6 +10,7 @@ from membrane.outline.copies import Copy, Probe, matching, probe, runs_along
 from membrane.outline.cut import Cut
 from membrane.outline.names import Names
 from membrane.records.outline import Curve
+from membrane.records.study import Study, Support
 
 
 def curves(kernel: Kernel, cut: Cut, names: Names) -> tuple[Curve, ...]:
@@ -119,6 +120,17 @@ def check_lines(kernel: Kernel, names: Names, found: Iterable[Curve]) -> None:
             )
             raise OutlineError(
                 f"The line load {name} lies {where}; move it onto the head or make it shorter."
+            )
+
+
+def check_loads(study: Study, found: Collection[Curve]) -> None:
+    """Raise OutlineError where a line load lies on fixed edges with all its length."""
+    for load in study.line_loads:
+        edges = {curve.edge for curve in found if load.name in curve.lines}
+        if all(edge and study.edge(edge).support is Support.FIXED for edge in edges):
+            raise OutlineError(
+                f"The line load {load.name} runs along the edge {min(map(str, edges))}, which is "
+                "fixed and does not move; leave it out or set another support."
             )
 
 

@@ -6,7 +6,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import replace
 
 from membrane.kernel import Kernel
-from membrane.outline.curves import check_lines, curves
+from membrane.outline.curves import check_lines, check_loads, curves
 from membrane.outline.cut import Cut, cut
 from membrane.outline.names import names
 from membrane.outline.place import Placed, place
@@ -28,10 +28,12 @@ def draw(kernel: Kernel, study: Study) -> Outline:
     pieces = cut(kernel, outline.surface, _faces(patches), _faces(holes), points, known.cuts)
     named = curves(kernel, pieces, known)
     check_lines(kernel, known, named)
+    check_loads(study, named)
     check_whole(kernel, named, pieces.patches)
     check_slivers(kernel, named, pieces.patches)
     kernel.keep_only(pieces.patches)
-    head = Outline(_regions(kernel, pieces), named, _notes(outline, patches, holes))
+    notes = (*_notes(outline, patches, holes), *_of_functions(study))
+    head = Outline(_regions(kernel, pieces, bool(known.breaks)), named, notes)
     return replace(head, samples=samples(kernel, head)) if study.functions or study.terms else head
 
 
@@ -49,17 +51,27 @@ def _notes(outline: Placed, *shapes: Mapping[str, Placed]) -> tuple[str, ...]:
     return tuple(dict.fromkeys(note for placed in every for note in placed.notes))
 
 
+def _of_functions(study: Study) -> tuple[str, ...]:
+    return tuple(dict.fromkeys(note for function in study.functions for note in function.notes))
+
+
 def _kinks(study: Study) -> tuple[tuple[float, float], ...]:
     """Where a coefficient is not smooth, (x, y), metres, each place once."""
     places = (place for f in study.functions for place in f.places_of_kinks.T)
     return tuple(dict.fromkeys((float(x), float(y)) for x, y in places))
 
 
-def _regions(kernel: Kernel, pieces: Cut) -> tuple[Region, ...]:
+def _regions(kernel: Kernel, pieces: Cut, apart: bool) -> tuple[Region, ...]:
+    """The regions, from the head up.
+
+    apart : each face is a region of its own, as a coefficient may jump from one to the next
+    """
     faces: dict[tuple[str, ...], list[int]] = {}
     for face, patches in sorted(pieces.patches.items(), key=lambda item: (len(item[1]), item[0])):
         faces.setdefault(patches, []).append(face)
-    return tuple(
-        Region("+".join(patches) or HEAD, patches, tuple(tags), sum(map(kernel.area, tags)))
-        for patches, tags in faces.items()
-    )
+    regions = []
+    for patches, tags in faces.items():
+        for k, some in enumerate([[tag] for tag in tags] if apart else [tags], 1):
+            name = ("+".join(patches) or HEAD) + (f".{k}" if k > 1 else "")
+            regions.append(Region(name, patches, tuple(some), sum(map(kernel.area, some))))
+    return tuple(regions)

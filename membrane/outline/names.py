@@ -6,6 +6,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
 
 from membrane.kernel import Kernel
+from membrane.outline.breaks import break_curves
 from membrane.outline.copies import Copy, copies
 from membrane.outline.parts import Split
 from membrane.outline.place import Placed, place
@@ -21,6 +22,7 @@ class Names:
     splits : name of an edge or of a hole -> how it is split
     lines : copies of the line loads
     slits : names of the left and the right lip -> copies of the slit
+    breaks : the kernel's curves along jumps and kinks of coefficients; nameless
     """
 
     edges: Sequence[Copy]
@@ -28,6 +30,7 @@ class Names:
     splits: Mapping[str, Split]
     lines: Sequence[Copy]
     slits: Mapping[tuple[str, str], Sequence[Copy]]
+    breaks: Sequence[int] = ()
 
     @property
     def order(self) -> dict[str, int]:
@@ -39,9 +42,9 @@ class Names:
 
     @property
     def cuts(self) -> list[int]:
-        """The copies that cut the head: line loads and slits."""
+        """The curves that cut the head: line loads, slits and breaks."""
         slits = (copy for found in self.slits.values() for copy in found)
-        return [copy.tag for copy in (*self.lines, *slits)]
+        return [copy.tag for copy in (*self.lines, *slits)] + [*self.breaks]
 
     @property
     def corners(self) -> list[tuple[float, float]]:
@@ -59,12 +62,14 @@ def names(kernel: Kernel, study: Study, outline: Placed, holes: Mapping[str, Pla
     cuts = {slit.lips: place(kernel, slit.line).border for slit in study.slits}
     kernel.synchronize()
     edges = [copy for name in outline.edges for copy in copies(kernel, name, outline.edges[name])]
+    breaks = list(break_curves(kernel, study.functions, edges))
+    kernel.synchronize()
     borders = {name: copies(kernel, name, hole.border) for name, hole in holes.items()}
     split = _splits(kernel, study.edge_parts, outline, edges, holes, borders)
     lines = [copy for name, tags in loads.items() for copy in copies(kernel, name, tags)]
     cuts = {**outline.slits, **cuts}
     slits = {lips: copies(kernel, "", tags) for lips, tags in cuts.items()}
-    return Names(edges, borders, split, lines, slits)
+    return Names(edges, borders, split, lines, slits, breaks)
 
 
 def _splits(

@@ -8,9 +8,10 @@ import numpy as np
 from skfem.mapping.mapping import Mapping
 
 from membrane.evaluate import invert
+from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
-from membrane.triangle import EDGES, nodes, shapes
+from membrane.triangle import EDGES, nodes
 
 
 class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
@@ -89,7 +90,7 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
 
     def _shapes(self, X: Floats) -> tuple[Floats, Floats]:
         if self._shaped is None or self._shaped[0] is not X:
-            values, slopes = shapes(np.reshape(X, (2, -1)), self.mesh.order)
+            values, slopes = tabulated(np.reshape(X, (2, -1)), self.mesh.order)
             points = X.shape[1:]
             self._shaped = (X, values.reshape(-1, *points), slopes.reshape(2, -1, *points))
         return self._shaped[1:]

@@ -8,42 +8,24 @@ from typing import Any
 
 import numpy as np
 
-from membrane.pencil.forms import WEAK_FORMS
 from membrane.records.function import Function
 from membrane.records.membrane import Contribution, Membrane, OwnForm
-from membrane.records.pencil import Part, Pencil
+from membrane.records.pencil import Pencil
 
 
 def rescaled(pencil: Pencil, old: Membrane, new: Membrane) -> Pencil | None:
-    """The pencil of ``new`` from that of ``old``, nothing assembled; None where more differs.
-
-    Parts stand in the order in which ``assemble`` makes them.
-    """
+    """The pencil of ``new`` from that of ``old``, nothing assembled; None where more differs."""
     pairs = zip_longest(_terms(old), _terms(new))
     if old.fixed_edges != new.fixed_edges or not all(_alike(*pair) for pair in pairs):
         return None
-    scales = {
-        side: [term.scale for term in _terms(new) if _side(term) == side]
-        for side in ("stiffness", "mass")
-    }
-    return replace(
-        pencil,
-        stiffness=_scaled(pencil.stiffness, scales["stiffness"]),
-        mass=_scaled(pencil.mass, scales["mass"]),
-        moves_rigidly=new.moves_rigidly,
-    )
+    numbers = {term.key: term.scale for term in _terms(new)}
+    if any(numbers[term.key] != term.scale for term in _terms(new)):
+        return None  # one key, two numbers
+    return pencil.at(numbers)
 
 
 def _terms(membrane: Membrane) -> tuple[Contribution | OwnForm, ...]:
     return (*membrane.contributions, *membrane.own_forms)
-
-
-def _side(term: Contribution | OwnForm) -> str:
-    return WEAK_FORMS[term.field].side if isinstance(term, Contribution) else term.side
-
-
-def _scaled(parts: tuple[Part, ...], scales: list[float]) -> tuple[Part, ...]:
-    return tuple(replace(part, scale=scale) for part, scale in zip(parts, scales, strict=True))
 
 
 def _alike(one: Contribution | OwnForm | None, other: Contribution | OwnForm | None) -> bool:

@@ -11,7 +11,7 @@ from platform import python_version
 from typing import Any
 
 from membrane.errors import OutputError
-from membrane.products.caution import CAUTION
+from membrane.products.caution import CAUTION, NOT_COVERED
 from membrane.products.rows import row
 from membrane.records.spectrum import Spectrum
 from membrane.schema import SUMMARY
@@ -43,7 +43,7 @@ def contents(spectrum: Spectrum) -> dict[str, Any]:
         "mesh": {**_facts(spectrum.mesh_facts), "regions": list(_regions(spectrum))},
         "timings": dict(spectrum.timings),
         "complete": bool(spectrum.complete),
-        "notes": list(spectrum.notes),
+        "notes": [*spectrum.notes, NOT_COVERED],
         "caution": CAUTION,
         "modes": [row(partial) for partial in spectrum.partials],
     }

@@ -8,7 +8,7 @@ from math import ceil
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from membrane.products.caution import CAUTION
+from membrane.products.caution import CAUTION, NOT_COVERED
 from membrane.records.spectrum import Partial, Spectrum
 
 if TYPE_CHECKING:
@@ -21,12 +21,8 @@ LEAST_SHOWN = 0.001
 LOWEST_HEARD, HIGHEST_HEARD = 16.0, 20_000.0
 """Hz, common practice, no source."""
 SAME_PITCH = {"first": "┐", "inner": "│", "last": "┘", "alone": ""}
-NOT_COVERED = (
-    "Not in these numbers: the air, unevenness of the head beyond what the study says, and "
-    "a rim that gives more than the study says."
-)
 BRACKETS = {
-    "guaranteed": "± is guaranteed.",
+    "guaranteed": "± is guaranteed for the study as written.",
     "estimated": "± is an estimate from a second, coarser solve, not a proof.",
     "none": "No ± was asked for.",
 }

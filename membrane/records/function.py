@@ -9,6 +9,7 @@ from typing import Any, TypeAlias
 import numpy as np
 
 from membrane.records.arrays import Bools, Floats
+from membrane.records.breaks import Break, Place
 from membrane.records.sign import Sign
 
 Rule = Callable[[Floats, Floats], Floats]
@@ -21,6 +22,8 @@ class Function:
     source : how it is given, in the study file's own keys
     rule : numbers (n,) at x (n,) and y (n,), metres from ``origin``
     kinks : points (x, y), metres from ``origin``, where the rule is not smooth
+    breaks : lines, about ``origin``, along which the rule has a jump or a kink
+    notes : sentences for the user on what is not known of the rule
     factor : SI units in one of the rule's
     unit, noun : the SI unit, and what the number is, such as "an areal density"
     sign : of its numbers
@@ -31,6 +34,8 @@ class Function:
     source: Mapping[str, Any]
     rule: Rule = field(compare=False, repr=False)
     kinks: tuple[tuple[float, float], ...] = ()
+    breaks: tuple[Break, ...] = ()
+    notes: tuple[str, ...] = ()
     factor: float = 1.0
     unit: str = ""
     noun: str = "a number"
@@ -60,6 +65,11 @@ class Function:
     def times(self, tensor: Floats) -> Function:
         """The same function, its numbers scaling a constant tensor (2, 2)."""
         return replace(self, tensor=tensor)
+
+    def breaks_at(self, place: Place, slack: float) -> bool:
+        """Whether a line of breaks passes a place (x, y), give or take ``slack`` metres."""
+        own = place[0] - self.origin[0], place[1] - self.origin[1]
+        return any(line.distance(own) <= slack for line in self.breaks)
 
     @property
     def places_of_kinks(self) -> Floats:

@@ -11,6 +11,7 @@ from typing import Any
 import numpy as np
 
 from membrane.records.arrays import Floats
+from membrane.records.breaks import Place
 from membrane.records.function import Function
 from membrane.records.outline import Samples
 
@@ -107,6 +108,11 @@ class Membrane:
         values = self.sampled(field, where)
         weights = self.samples[where].weights if self.varies(field, where) else np.ones(1)
         return np.tensordot(weights, values, 1)
+
+    def breaks_at(self, field: Field, where: str, place: Place, slack: float) -> bool:
+        """Whether a field on one region, edge or line load may jump or kink at a place."""
+        values = (c.value for c in self.parts(field, where))
+        return any(isinstance(v, Function) and v.breaks_at(place, slack) for v in values)
 
     @property
     def kinks(self) -> Floats:

@@ -49,7 +49,8 @@ class Drawing:
 class Region:
     """A part of the head under the same patches.
 
-    name : "head", or the patches from the lowest to the topmost joined by "+"
+    name : "head", or the patches from the lowest to the topmost joined by "+"; where lines
+        of breaks part it, every piece after the first has its number too, as in "head.2"
     patches : names of the patches that cover it, lowest first
     faces : tags of the kernel's surfaces
     area : square metres

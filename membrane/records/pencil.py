@@ -138,7 +138,16 @@ def _combine(parts: tuple[Part, ...]) -> Any:
     """The sum of all parts at once: one by one, many small ones would take long."""
     from scipy.sparse import coo_array, csc_array
 
+    first = parts[0].matrix
+    if all(_alike(part.matrix, first) for part in parts):
+        data = sum(part.scale * part.matrix.data for part in parts)
+        return csc_array((data, first.indices, first.indptr), shape=first.shape)
     entries = [coo_array(part.matrix) for part in parts]
     data = np.concatenate([p.scale * e.data for p, e in zip(parts, entries, strict=True)])
     rows, columns = (np.concatenate([e.coords[axis] for e in entries]) for axis in (0, 1))
     return csc_array((data, (rows, columns)), shape=parts[0].matrix.shape)
+
+
+def _alike(A: Any, B: Any) -> bool:
+    """Whether two symmetric matrices share one pattern, by rows or by columns."""
+    return A.format in ("csr", "csc") and getattr(B, "indices", None) is A.indices

@@ -15,6 +15,20 @@ from membrane.units import Angle, Point
 from membrane.wording import either, shown
 
 _OWN_KEYS = ("shape", "script", "at", "rotate")
+_HOLE = '"disc", with a hole in [[holes]]'
+_POLYGON = '"regular_polygon", with its number of sides'
+_CALLED = {
+    **dict.fromkeys(("circle", "circular", "round", "disk"), '"disc"'),
+    **dict.fromkeys(("square", "box", "oblong"), '"rectangle"'),
+    **dict.fromkeys(("annulus", "ring", "donut", "doughnut"), _HOLE),
+    **dict.fromkeys(("pentagon", "hexagon", "heptagon", "octagon", "decagon"), _POLYGON),
+    **dict.fromkeys(("triangle", "trapezoid", "trapezium", "l_shape"), '"polygon"'),
+    **dict.fromkeys(("oval", "elliptic", "elliptical"), '"ellipse"'),
+    **dict.fromkeys(("wedge", "pie", "semicircle", "half_disc"), '"sector"'),
+    **dict.fromkeys(("dxf", "svg", "drawing", "mesh"), '"file", with its path'),
+}
+"""What shapes of other names are called here."""
+
 _OPEN_SHAPES = ("polyline", "arc")
 
 
@@ -104,7 +118,12 @@ def _plugin(table: Table, which: _Which, base: Path) -> str | None:
     """Registered name, or whole path of the script."""
     if which.script is not None:
         return _script(table, which.script, base)
-    return which.shape or ""
+    name = which.shape or ""
+    called = _CALLED.get(name.lower())
+    if called is None or name in plugins.names("outline"):
+        return name
+    table.refuse("shape", f"there is no outline {shown(name)}; give shape = {called}.")
+    return None
 
 
 def _script(table: Table, script: str, base: Path) -> str | None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import logging
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from time import monotonic
 from uuid import uuid4
@@ -15,8 +15,8 @@ from distributed import (
     KilledWorker,
     LocalCluster,
     WorkerPlugin,
-    as_completed,
     get_worker,
+    wait,
 )
 from distributed.client import FutureCancelledError
 
@@ -29,6 +29,9 @@ AHEAD = 2
 
 PATIENCE = 10.0
 """Seconds after which the workers are counted again, and to wait for a scheduler."""
+
+NO_FIXED_PORT = "127.0.0.1:0"
+"""Where Dask's own pages are shown: several sweeps may run on one machine."""
 
 CORES: int = CPU_COUNT
 """Processors that this process may use."""
@@ -47,12 +50,13 @@ class Processes:
                 n_workers=self._count,
                 threads_per_worker=1,
                 memory_limit=0,
-                dashboard_address=None,
+                dashboard_address=NO_FIXED_PORT,
                 silence_logs=logging.CRITICAL,
             ) as cluster,
             Client(cluster) as client,
         ):
-            yield from _worked(client, answering, bundles)
+            # a worker that dies while it starts is given up by Dask: then another is wanted
+            yield from _worked(client, answering, bundles, lambda: cluster.scale(self._count))
 
 
 class Scheduler:
@@ -67,7 +71,7 @@ class Scheduler:
     def outcomes(self, answering: Answering, bundles: Iterator[Bundle]) -> Iterator[list[Outcome]]:
         """Some outcomes at a time, in any order. Raises EngineError where it is lost."""
         with _connected(self._address) as client:
-            yield from _worked(client, answering, bundles)
+            yield from _worked(client, answering, bundles, lambda: None)
 
 
 class _Keeper(WorkerPlugin):  # type: ignore[misc]
@@ -92,12 +96,16 @@ def _connected(address: str) -> Iterator[Client]:
 
 
 def _worked(
-    client: Client, answering: Answering, bundles: Iterator[Bundle]
+    client: Client, answering: Answering, bundles: Iterator[Bundle], revive: Callable[[], None]
 ) -> Iterator[list[Outcome]]:
+    """Outcomes as they come.
+
+    revive : called now and then, to bring back workers that are lost for good
+    """
     name = f"membrane-{uuid4().hex}"
     client.register_plugin(_Keeper(name, answering))
     try:
-        yield from _UnderWay(client, name, bundles).outcomes()
+        yield from _UnderWay(client, name, bundles, revive).outcomes()
     finally:
         if client.status == "running":
             client.unregister_worker_plugin(name)
@@ -106,26 +114,38 @@ def _worked(
 class _UnderWay:
     """The bundles that workers have been given, never more than they need."""
 
-    def __init__(self, client: Client, name: str, bundles: Iterator[Bundle]) -> None:
+    def __init__(
+        self, client: Client, name: str, bundles: Iterator[Bundle], revive: Callable[[], None]
+    ) -> None:
+        self._revive = revive
         self._client = client
         self._name = name
         self._bundles = bundles
         self._given: dict[Future, Bundle] = {}
-        self._running = as_completed()
         self._room, self._counted = 0, 0.0
 
     def outcomes(self) -> Iterator[list[Outcome]]:
         """The outcomes as they come."""
         self._fill()
-        for future in self._running:
-            bundle = self._given.pop(future)
-            found = self._result(future, bundle)
+        while self._given:
+            for future in self._finished():
+                found = self._result(future, self._given.pop(future))
+                self._fill()
+                if found:
+                    yield found
+
+    def _finished(self) -> list[Future]:
+        """Those that are done, or none after some time."""
+        try:
+            done, _ = wait(list(self._given), timeout=PATIENCE, return_when="FIRST_COMPLETED")
+        except TimeoutError:
             self._fill()
-            if found:
-                yield found
+            return []
+        return list(done)
 
     def _fill(self) -> None:
         if monotonic() >= self._counted:
+            self._revive()
             self._room = AHEAD * max(1, sum(self._client.nthreads().values()))
             self._counted = monotonic() + PATIENCE
         while len(self._given) < self._room:
@@ -137,7 +157,6 @@ class _UnderWay:
     def _give(self, bundle: Bundle) -> None:
         future = self._client.submit(_outcomes, self._name, bundle, pure=False)
         self._given[future] = bundle
-        self._running.add(future)
 
     def _result(self, future: Future, bundle: Bundle) -> list[Outcome]:
         """The outcomes of a bundle; none where its points are to be tried one by one."""

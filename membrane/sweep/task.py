@@ -8,9 +8,9 @@ from membrane.errors import StudyError
 from membrane.records.study import Study
 from membrane.records.sweep import Sweep
 from membrane.sweep.answer import Answering
-from membrane.sweep.full import FullSolves, shaping_axes
 from membrane.sweep.identity import point_name, study_name, sweep_name
 from membrane.sweep.points import Point, Points
+from membrane.sweep.solving import ReducedSolves, shaping_axes
 from membrane.sweep.store import Entry
 
 
@@ -32,16 +32,15 @@ class Task:
 
 
 def task_of(study: Study) -> Task:
-    """The sweep of a study, its points answered by full solves.
+    """The sweep of a study, its points answered by reduced models or full solves.
 
     Raises StudyError where the study has no sweep.
     """
     sweep = study.sweep
     if sweep is None:
         raise StudyError("the study has no sweep; give [[sweep.axes]] with a key and values.")
-    shaping = shaping_axes(study)
     name = study_name(study.source)
     keys = tuple(axis.key for axis in sweep.axes)
     entry = Entry(sweep_name(name, sweep), name, study.title, keys, sweep.size)
-    answering = FullSolves(study.source, sweep.axes, shaping, sweep.bracket)
-    return Task(entry, sweep, Points(sweep, shaping), answering)
+    points = Points(sweep, shaping_axes(study))
+    return Task(entry, sweep, points, ReducedSolves(study.source, points))

@@ -88,7 +88,11 @@ class Formula:
 
     def __call__(self, x: Floats, y: Floats) -> Floats:
         """Values (n,) at x (n,) and y (n,), metres; not finite where it has no value."""
-        places = {"x": x, "y": y, "r": np.hypot(x, y), "theta": np.arctan2(y, x)}
+        return self.at(x, y, 0.0)
+
+    def at(self, x: Floats, y: Floats, turned: float) -> Floats:
+        """The same with ``turned`` radians added to theta."""
+        places = {"x": x, "y": y, "r": np.hypot(x, y), "theta": np.arctan2(y, x) + turned}
         with np.errstate(all="ignore"):
             values = _value(self.tree, {**CONSTANTS, **places})
         return np.array(np.broadcast_to(values, x.shape), dtype=float)

@@ -9,13 +9,15 @@ from pathlib import Path
 from typing import Any
 
 from membrane.errors import StudyError
+from membrane.records.breaks import Break
 from membrane.records.function import Function, Rule
 from membrane.units import Point
+from membrane.varying.breaks import breaks_of
 from membrane.varying.formula import Formula
 from membrane.varying.scattered import through_points
 from membrane.varying.scripted import from_script
 from membrane.varying.smoothness import is_smooth_at_origin
-from membrane.wording import listed
+from membrane.wording import listed, shown
 
 KINDS = ("formula", "csv", "function")
 ORIGIN = (0.0, 0.0)
@@ -38,6 +40,16 @@ class Outside(Enum):
     NEAREST = "nearest"
 
 
+@dataclass(frozen=True)
+class _Found:
+    """A rule, and where it is known not to be smooth."""
+
+    rule: Rule
+    kinks: Points = ()
+    breaks: tuple[Break, ...] = ()
+    notes: tuple[str, ...] = ()
+
+
 @dataclass(frozen=True, kw_only=True)
 class _Varying:
     unit: str | None = None
@@ -48,9 +60,12 @@ class _Varying:
 class _Formula(_Varying):
     formula: str
 
-    def rule(self) -> tuple[Rule, Points]:
+    def rule(self) -> _Found:
         formula = Formula.parsed(self.formula)
-        return formula, () if is_smooth_at_origin(formula) else (ORIGIN,)
+        kinks = () if is_smooth_at_origin(formula) else (ORIGIN,)
+        breaks = breaks_of(formula)
+        notes = tuple(_not_followed(self.formula, line) for line in breaks.unknown)
+        return _Found(formula, kinks, breaks.known, notes)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -58,8 +73,8 @@ class _Csv(_Varying):
     csv: str
     outside: Outside = Outside.REFUSED
 
-    def rule(self) -> tuple[Rule, Points]:
-        return through_points(Path(self.csv), self.outside is Outside.NEAREST), ()
+    def rule(self) -> _Found:
+        return _Found(through_points(Path(self.csv), self.outside is Outside.NEAREST))
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -67,14 +82,14 @@ class _Scripted(_Varying):
     function: str
     script: str | None = None
 
-    def rule(self) -> tuple[Rule, Points]:
+    def rule(self) -> _Found:
         if self.script is None:
             sentence = 'is missing; give the script with the function, such as "my_fields.py".'
             raise KeyProblem("script", sentence)
         file = Path(self.script)
         if file.suffix != ".py" or not file.is_file():
             raise KeyProblem("script", f"there is no Python file {file}.")
-        return from_script(file, self.function), ()
+        return _Found(from_script(file, self.function))
 
 
 _READERS = {"formula": _Formula, "csv": _Csv, "function": _Scripted}
@@ -101,9 +116,17 @@ def read_function(value: Mapping[str, Any]) -> tuple[Function, str | None]:
         first = error.problems[0]
         raise KeyProblem(first.path, first.sentence) from None
     try:
-        rule, kinks = keys.rule()
+        found = keys.rule()
     except KeyProblem:
         raise
     except ValueError as failure:
         raise KeyProblem(kind, str(failure)) from None
-    return Function(plain(keys), rule, (*kinks, *keys.kinks)), keys.unit
+    kinks = (*found.kinks, *keys.kinks)
+    return Function(plain(keys), found.rule, kinks, found.breaks, found.notes), keys.unit
+
+
+def _not_followed(formula: str, line: str) -> str:
+    return (
+        f"The formula {shown(formula)} has a jump or a kink where {shown(line)}, which the mesh "
+        "does not follow; draw a patch whose border runs there, even one that adds nothing."
+    )

@@ -6,7 +6,7 @@ import argparse
 import subprocess
 import sys
 
-SECTIONS = ("accuracy", "eigen", "sweep")
+SECTIONS = ("accuracy", "assembly", "eigen", "growth", "sweep", "whole")
 
 
 def main() -> None:

@@ -23,15 +23,17 @@ QUICK = 3
 def measure(quick: bool) -> dict[str, list[Row]]:
     """One row for each number of modes and size."""
     chosen = slice(QUICK if quick else None)
-    rows = [_row(count, phase) for count in COUNTS for phase in PHASES[count][chosen]]
+    rows = [_row(count, phase, quick) for count in COUNTS for phase in PHASES[count][chosen]]
     return {"eigen stage": rows}
 
 
-def _row(count: int, phase: float) -> Row:
+def _row(count: int, phase: float, quick: bool) -> Row:
     pencil = ours.assembled(disc().keys, count, Resolution(DEGREE, phase, 1e-8))
     K, M = ours.summed_up(pencil)
     seconds = alternating(
-        {"ours": lambda: ours.modes(pencil, count), "floor": lambda: floor(K, M, count)}
+        {"ours": lambda: ours.modes(pencil, count), "floor": lambda: floor(K, M, count)},
+        rounds=3 if quick else 7,
+        budget=5.0 if quick else 20.0,
     )
     return {
         "modes": count,

@@ -242,6 +242,7 @@ def test_check_says_how_a_drawing_was_taken(tmp_path):
     )
     done = CliRunner().invoke(app, ["check", str(file)])
     assert done.exit_code == 0
+    assert "layers" not in done.stdout
     assert "note      head.svg: closed 1 gap in the contour, the widest 0.0005 mm" in done.stdout
 
 

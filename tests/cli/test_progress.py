@@ -7,7 +7,8 @@ import time
 import pytest
 
 from membrane.cli import progress
-from membrane.cli.progress import shown_progress
+from membrane.cli.progress import shown_count, shown_progress
+from membrane.sweep.work import Tally
 
 
 @pytest.fixture
@@ -60,3 +61,31 @@ def test_an_error_passes_through_and_ends_the_display(monkeypatch):
     monkeypatch.setattr(progress, "PATIENCE", 0.0)
     with pytest.raises(ZeroDivisionError), shown_progress(quiet=False):
         raise ZeroDivisionError
+
+
+def count(quiet: bool = False) -> None:
+    with shown_count(quiet) as tell:
+        for done in range(4):
+            tell(Tally(40, done, 2))
+            time.sleep(0.1)
+
+
+@pytest.mark.usefixtures("_terminal")
+def test_points_are_counted_with_their_rate(capsys):
+    count()
+    out, err = capsys.readouterr()
+    assert out == ""
+    assert "5/40" in err
+    assert "a second" in err
+
+
+@pytest.mark.usefixtures("_terminal")
+def test_points_are_not_counted_quietly(capsys):
+    count(quiet=True)
+    assert capsys.readouterr() == ("", "")
+
+
+def test_points_are_not_counted_where_there_is_no_terminal(monkeypatch, capsys):
+    monkeypatch.delenv("FORCE_COLOR", raising=False)
+    count()
+    assert capsys.readouterr() == ("", "")

@@ -6,7 +6,7 @@ import pytest
 from typer.testing import CliRunner
 
 from membrane.cli.app import app
-from membrane.sweep import full
+from membrane.sweep import solving
 
 STUDY = """
 [outline]
@@ -109,18 +109,18 @@ def test_ctrl_c_says_how_to_go_on(study, tmp_path, monkeypatch):
     def stop(self, point):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr(full.FullSolves, "answer", stop)
+    monkeypatch.setattr(solving.ReducedSolves, "answer", stop)
     done = sweep(study, tmp_path / "out")
     assert done.exit_code == 130
     assert done.stderr == "Stopped; the points so far are kept. Run it again to go on.\n"
 
 
 def test_check_says_how_large_a_sweep_is(study, monkeypatch):
-    monkeypatch.setattr(full, "timed_sample", lambda study: full.Sample(100.0, 3600.0))
+    monkeypatch.setattr(solving, "timed_sample", lambda study: solving.Sample(100.0, 3600.0))
     lines = invoke("check", study).stdout.splitlines()
     assert "sweep                  grid: 4 points, 2 different meshes" in lines
     assert "axis holes.port.at[1]  2 values from 0.1 to 0.177" in lines
     assert (
-        "time                   about 4.1 hours of one processor: 1e+02 s a mesh, 3.6e+03 s a "
-        "solve, both timed on the study's own values"
+        "time                   about 4.1 hours of one processor if all is solved in full: "
+        "1e+02 s a mesh, 3.6e+03 s a solve, both timed on the study's own values"
     ) in lines

@@ -7,6 +7,7 @@ import pytest
 
 from membrane.errors import MeshError
 from membrane.mesh.checks import check_mesh, jacobians
+from membrane.mesh.corner import Fan
 from tests import zoo
 
 
@@ -25,6 +26,26 @@ def test_folded(disc):
     nodes[:, -1, 0] += 10 * np.ptp(nodes[:, :, 0])
     with pytest.raises(MeshError, match="folds"):
         check_mesh(replace(disc.mesh, nodes=nodes), disc.outline)
+
+
+def test_a_triangle_may_come_to_nothing_at_the_corner_of_its_fan_alone():
+    corner = zoo.prepared(zoo.L_SHAPE)
+    fan = Fan(np.zeros(2), 3, np.eye(2))
+    check_mesh(corner.mesh, corner.outline, (fan,))
+    for others in ((), (replace(fan, place=np.ones(2)),)):
+        with pytest.raises(MeshError, match="folds"):
+            check_mesh(corner.mesh, corner.outline, others)
+
+
+def test_a_folded_fan():
+    corner = zoo.prepared(zoo.L_SHAPE)
+    triangle = int(np.nonzero((corner.mesh.vertices == 0).all(axis=0)[corner.mesh.triangles])[1][0])
+    nodes = corner.mesh.nodes.copy()
+    nodes[:, -1, triangle] += np.ptp(nodes[:, :, triangle])
+    with pytest.raises(MeshError, match="folds"):
+        check_mesh(
+            replace(corner.mesh, nodes=nodes), corner.outline, (Fan(np.zeros(2), 3, np.eye(2)),)
+        )
 
 
 def test_hole_in_the_mesh(disc):

@@ -45,7 +45,8 @@ PASTE = {"name": "paste", "shape": "disc", "diameter": 1.0, "added_density": 1.0
     ids=["within", "across", "on a border", "over a border", "on the rim", "closed", "arc"],
 )
 def test_a_line_load_keeps_its_length(load, length):
-    drawn = outline(patches=[PASTE], line_loads=[load])
+    free = {"rim": {"support": "free"}}
+    drawn = outline(patches=[PASTE], line_loads=[load], edges=free)
     assert drawn.line_length(load["name"]) == pytest.approx(length, rel=1e-12)
     assert drawn.area == pytest.approx(np.pi, rel=1e-12)
     assert {region.name for region in drawn.regions} == {"head", "paste"}
@@ -61,6 +62,7 @@ def test_two_loads_share_a_curve():
     [
         ({"line_loads": [wire("w", [-1.2, 0], [1, 0])]}, "w lies outside the head by 200 mm"),
         ({"line_loads": [wire("w", [-1, 2], [1, 2])]}, "w lies wholly outside the head"),
+        ({"line_loads": [hoop(2.0)]}, "hoop runs along the edge rim, which is fixed"),
         ({"line_loads": [hoop(1.0, 0.7, 0.0)]}, "hoop lies outside the head by 1.19e"),
         (
             {

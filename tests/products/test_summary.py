@@ -12,6 +12,7 @@ import pytest
 
 from membrane.errors import OutputError
 from membrane.products import summary
+from membrane.products.caution import NOT_COVERED
 from membrane.records.spectrum import Spectrum
 from membrane.schema import SUMMARY, load
 from tests.products.schema_checker import complaints
@@ -50,11 +51,9 @@ def test_the_schema_refuses_what_is_wrong(patched: Spectrum, change, complaint: 
     assert complaint in found[0]
 
 
-def test_notes_are_handed_on(patched: Spectrum) -> None:
-    assert summary.contents(patched)["notes"] == []
-    assert summary.contents(replace(patched, notes=("a.dxf: closed.",)))["notes"] == [
-        "a.dxf: closed."
-    ]
+def test_notes_are_handed_on_before_what_is_left_out(patched: Spectrum) -> None:
+    noted = replace(patched, notes=("a.dxf: closed.",))
+    assert summary.contents(noted)["notes"] == ["a.dxf: closed.", NOT_COVERED]
 
 
 def test_every_digit_is_written(spectrum: Spectrum, tmp_path: Path) -> None:

@@ -64,7 +64,14 @@ def test_a_rigid_mode_has_no_pitch(free: Spectrum) -> None:
 def test_it_says_how_far_it_can_be_trusted(patched: Spectrum, change: dict, words: str) -> None:
     text = " ".join(table_text(replace(patched, **change)).split())
     assert words in text
+    assert "± is guaranteed for the study as written." in text
+
+
+def test_an_estimate_is_called_one(patched: Spectrum) -> None:
+    rows = tuple(replace(partial, bracket="estimated") for partial in patched.partials)
+    text = " ".join(table_text(replace(patched, partials=rows)).split())
     assert "an estimate from a second, coarser solve, not a proof" in text
+    assert "guaranteed" not in text
 
 
 def test_it_says_what_is_left_out_and_warns(patched: Spectrum) -> None:

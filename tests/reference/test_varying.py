@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 import csv
+import json
 from itertools import pairwise
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -17,6 +19,7 @@ from tests.reference.cases import DISC, RECTANGLE, case
 
 pytestmark = pytest.mark.slow
 
+SPECTRA = json.loads(Path(__file__).with_name("spectra.json").read_text())["cases"]
 HEIGHT = 0.618
 COUNT = 20
 
@@ -40,6 +43,10 @@ def off(values, exact):
     return np.abs(values / exact[: len(values)] - 1).max()
 
 
+def one(x):
+    return np.ones_like(x)
+
+
 def of_rectangle(p, q, w, panels=(0.0, 1.0)):
     """Sine by sine in y, a string in x: q is multiplied by the sine's own curvature."""
     values = [
@@ -47,10 +54,6 @@ def of_rectangle(p, q, w, panels=(0.0, 1.0)):
         for k in range(1, 12)
     ]
     return np.sort(np.concatenate(values))
-
-
-def one(x):
-    return np.ones_like(x)
 
 
 def test_the_ritz_strings_and_discs_themselves():
@@ -61,8 +64,8 @@ def test_the_ritz_strings_and_discs_themselves():
     assert off(ritz.disc(one, one, COUNT), np.sort(zeros) ** 2) < 1e-11
 
 
-@pytest.mark.parametrize(("formula", "power"), [("r", 1.0), ("sqrt(r)", 0.5)])
-def test_density_with_a_cusp(formula, power):
+@pytest.mark.parametrize(("formula", "power"), [("r", 1.0), ("sqrt(r)", 0.5), ("1/sqrt(r)", -0.5)])
+def test_density_with_a_cusp_or_a_pole(formula, power):
     """rho = r^n: s = r^(n/2 + 1) makes Bessel's equation of order 2m/(n + 2), so that
     lambda = (n/2 + 1)^2 j_{2m/(n+2), k}^2; zeros by mpmath."""
     exact = []
@@ -107,12 +110,53 @@ def test_a_woven_tension_alike_both_ways_is_a_plain_one():
     assert off(one, other) < 1e-11
 
 
-def test_a_kink_along_the_border_of_a_patch():
-    """rho = 1 + |x - 0.3|; the border of a patch that adds nothing runs along the kink."""
-    marked = {"name": "left_of_the_kink", "shape": "rectangle", "width": 0.3, "height": HEIGHT}
-    keys = case(RECTANGLE, head(by("1 + abs(x - 0.3)")), patches=[{**marked, "added_density": 0.0}])
-    exact = of_rectangle(one, one, lambda x: 1 + np.abs(x - 0.3), (0.0, 0.3, 1.0))
-    assert off(found(keys), exact) < 1e-9
+def jumping(x, left, right):
+    return np.where(x < 0.3, left, right)
+
+
+@pytest.mark.parametrize(
+    ("given", "tension", "bedding", "density"),
+    [
+        ({"density": by("1 + abs(x - 0.3)")}, one, 0.0, lambda x: 1 + np.abs(x - 0.3)),
+        ({"density": by("where(x < 0.3, 4, 1)")}, one, 0.0, lambda x: jumping(x, 4.0, 1.0)),
+        ({"tension": by("max(1, 0.7 + x)")}, lambda x: np.maximum(1, 0.7 + x), 0.0, one),
+        ({"bedding": by("where(0.3 > x, 90, 0)")}, one, lambda x: jumping(x, 90.0, 0.0), one),
+    ],
+    ids=["kink", "jump", "tension", "bedding"],
+)
+def test_kinks_and_jumps_along_a_line(given, tension, bedding, density):
+    """Strings in x with a node at x = 0.3; the mesh has to follow that line."""
+    values = []
+    for k in range(1, 12):
+        wave = (k * np.pi / HEIGHT) ** 2
+
+        def stiffness(x, wave=wave):
+            return wave * tension(x) + (bedding(x) if bedding else 0.0)
+
+        values.append(ritz.string(tension, stiffness, density, (0.0, 0.3, 1.0))[:COUNT])
+    exact = np.sort(np.concatenate(values))
+    assert off(found(case(RECTANGLE, head(**given))), exact) < 1e-9
+
+
+def test_a_jump_along_a_circle_is_a_patch():
+    exact = [float(v) for v in SPECTRA["composite_patch_0p4_9p765625"]["values"]]
+    values = found(case(DISC, head(by("where(r < 0.4, 9.765625, 1)"))))
+    assert off(values, np.array(exact)[:COUNT]) < 1e-9
+
+
+def test_a_formula_that_breaks_along_another_line_says_so():
+    """Along the border of a patch the mesh follows it all the same."""
+    formula = by("where(x**2/4 + y**2 < 0.01, 2, 1)")
+    ellipse = {"name": "e", "shape": "ellipse", "width": 0.4, "height": 0.2}
+    marked = case(DISC, head(formula), patches=[{**ellipse, "added_density": 0.0}])
+    drawn = case(DISC, patches=[{**ellipse, "areal_density": 2.0}])
+    assert off(found(marked), found(drawn)) < 1e-10
+    alone = case(DISC, head(formula), modes={"count": 6}, products={"write": []})
+    spectrum = run(study_from(alone))
+    assert any("x ** 2 / 4 + y ** 2 = 0.01" in note for note in spectrum.notes)
+    assert not spectrum.mesh_facts["accuracy_met"]
+    exact = np.sqrt(found(drawn)[:6]) / (2 * np.pi)
+    assert all(p.low < f < p.high for p, f in zip(spectrum.partials, exact, strict=True))
 
 
 def test_places_count_from_the_outlines_own_origin():

@@ -64,7 +64,7 @@ def test_points_of_a_dead_process_go_to_another_and_one_that_kills_all_fails_alo
 def test_a_running_scheduler_is_used_and_a_missing_one_named(tmp_path, monkeypatch):
     from distributed import LocalCluster
 
-    options = {"n_workers": 1, "threads_per_worker": 1, "dashboard_address": None}
+    options = {"n_workers": 1, "threads_per_worker": 1, "dashboard_address": "127.0.0.1:0"}
     with LocalCluster(**options) as cluster:
         engine = Scheduler(cluster.scheduler_address)
         found = [o for some in engine.outcomes(Careless(tmp_path), bundles(5, [])) for o in some]

@@ -8,6 +8,7 @@ from scipy.special import jn_zeros
 
 from membrane import run, study_from
 from membrane.sweep.points import Point
+from membrane.sweep.solving import FullSolves
 from membrane.sweep.task import task_of
 
 from .demo import KEYS
@@ -97,3 +98,38 @@ def test_a_point_outside_all_shapes_says_why():
     task = task_of(study_from(LOADED))
     with pytest.raises(OutlineError, match="paste"):
         task.answering.answer(Point(1, (1.0, 1e5, 0.5)))
+
+
+@pytest.mark.slow
+def test_many_points_of_one_mesh_are_answered_by_a_reduced_model():
+    """Full solves of the same points differ by no more than both errors together."""
+    axes = [
+        {"key": "patches.paste.added_density", "from": 0.1, "to": 3.0},
+        {"key": "edges.rim.stiffness", "from": 1e4, "to": 1e6, "spacing": "logarithmic"},
+    ]
+    sweep = {"pick": "random", "count": 600, "axes": axes}
+    keys = LOADED | {"sweep": sweep, "modes": {"count": 4, "accuracy": "0.1 cent"}}
+    task = task_of(study_from(keys))
+    full = FullSolves(task.answering.source, task.points)
+    numbers = [1, 2, 3, 100, 600]
+    found = answers(task, numbers)
+    assert {answer.kind for answer in found.values()} == {"reduced"}
+    assert sum(answer.solves for answer in found.values()) < 20
+    for number, answer in found.items():
+        exact = full.answer(task.points.point(number))
+        off = 1200 * np.abs(np.log2(answer.frequencies / exact.frequencies))
+        assert np.all(answer.error_cents <= 0.05)
+        assert np.all(off <= answer.error_cents + exact.error_cents)
+    again = answers(task_of(study_from(keys)), [600])
+    assert np.array_equal(again[600].frequencies, found[600].frequencies)
+
+
+@pytest.mark.slow
+def test_a_number_that_does_more_than_scale_is_solved_in_full():
+    tension = {"along": 3e3, "across": 2e3, "angle": 0.1}
+    axes = [{"key": "head.tension.angle", "from": 0.0, "to": 1.0}]
+    keys = KEYS | {"head": {"areal_density": 0.262, "tension": tension}}
+    sweep = {"pick": "random", "count": 600, "axes": axes}
+    task = task_of(study_from(keys | {"sweep": sweep}))
+    assert task.points.meshes == 1
+    assert task.answering.answer(task.points.point(1)).kind == "estimated"
