@@ -21,7 +21,7 @@ def counted(keys, limit, step, **resolution):
     head = head_of(here.membrane, here.mesh)
     step /= np.sqrt(limit)
     leaf = leaves(head, step, longest_along(head, limit, step), 100_000)
-    return crouzeix_raviart(head, leaf).count(limit)
+    return None if leaf is None else crouzeix_raviart(head, leaf).count(limit)
 
 
 @pytest.mark.slow

@@ -25,7 +25,7 @@ ALL_FREE = {name for name in CASES if name.endswith("_free") and "hole" not in n
     name for name in CASES if name.endswith("inN_outN")
 }
 
-NOT_PROVEN = {"disc_ringmass_r0p5_mu0p3", "disc_rho_r2", "rect_linear_density_a1"}
+NOT_PROVEN = {"disc_rho_r2", "rect_linear_density_a1"}
 
 pytestmark = pytest.mark.slow
 
