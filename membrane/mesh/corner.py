@@ -2,9 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-
-import numpy as np
+from dataclasses import dataclass
 
 from membrane.records.arrays import Floats
 
@@ -26,12 +24,10 @@ class Corner:
     """A vertex near which modes are not smooth.
 
     terms : one for each part of the head that meets there
-    stretch : (2, 2), takes the plane to where the tension is the same both ways
     """
 
     vertex: int
     terms: tuple[Term, ...]
-    stretch: Floats = field(default_factory=lambda: np.eye(2))
 
     @property
     def exponent(self) -> float:
@@ -44,9 +40,7 @@ class Fan:
     """The triangles at a corner, drawn in by a power: z = w^power, w in straight triangles.
 
     place : (2,) of the corner, metres
-    stretch : of the plane of z, (2, 2)
     """
 
     place: Floats
     power: int
-    stretch: Floats

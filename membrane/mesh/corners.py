@@ -12,7 +12,6 @@ from membrane.mesh.exponents import Exponents, alike
 from membrane.mesh.holds import Holds, passes_smoothly
 from membrane.mesh.kinks import kinks
 from membrane.mesh.rays import Wedge, fans_of, rays_of, wedges_of
-from membrane.records.arrays import Floats
 from membrane.records.membrane import Membrane
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh
@@ -42,23 +41,13 @@ def corners(
 
 
 def _corner(vertex: int, exponents: Exponents, fans: list[list[Wedge]]) -> Corner:
-    """The terms of all fans, stretched as the weakest asks; others so tensed are bounds."""
-    each = [(exponents.tension(fan[0]), exponents.terms(fan)) for fan in fans]
-    each = [(tension, terms) for tension, terms in each if terms]
-    if not each:
-        return Corner(vertex, ())
-    tension, _ = min(each, key=lambda one: min(term.exponent for term in one[1]))
-    terms = [
-        term if alike(tension, own) else replace(term, exact=False)
-        for own, those in each
-        for term in those
-    ]
-    return Corner(vertex, tuple(terms), _stretch(tension))
-
-
-def _stretch(tension: Floats) -> Floats:
-    """Takes the plane to one where the tension is the same both ways."""
-    return np.asarray(np.linalg.inv(np.linalg.cholesky(tension)))
+    """The terms of all fans; bounds only where the tension is not the same both ways."""
+    terms = []
+    for fan in fans:
+        tension = exponents.tension(fan[0])
+        even = alike(tension, tension[0, 0] * np.eye(2))
+        terms += [term if even else replace(term, exact=False) for term in exponents.terms(fan)]
+    return Corner(vertex, tuple(terms))
 
 
 def _with_kinks(corners: list[Corner], kinks: tuple[Corner, ...]) -> tuple[Corner, ...]:

@@ -79,13 +79,13 @@ class FanNodes:
         curve = int(self.raw.segment_curve[segment])
         start, stop = self.raw.segment_parameters[:, segment][:: 1 if vertex < end else -1]
         fractions = np.concatenate([[0.0], s**fan.power, [1.0]])
-        x, y = fan.stretch @ self.kernel.evaluate(curve, start + fractions * (stop - start))
+        x, y = self.kernel.evaluate(curve, start + fractions * (stop - start))
         along = (x - x[0] + 1j * (y - y[0])) / (x[-1] - x[0] + 1j * (y[-1] - y[0]))
         return np.asarray(along[1:-1] ** (1 / fan.power) - s)
 
     def _complex(self, fan: Fan, vertex: int) -> complex:
-        """A vertex in the stretched plane around the corner."""
-        return complex(*(fan.stretch @ (self.raw.vertices[:, vertex] - fan.place)))
+        """A vertex in the plane around the corner."""
+        return complex(*(self.raw.vertices[:, vertex] - fan.place))
 
     def _back(self, fan: Fan, z: Complexes) -> Floats:
-        return fan.place[:, None] + np.linalg.solve(fan.stretch, np.array([z.real, z.imag]))
+        return np.asarray(fan.place[:, None] + np.array([z.real, z.imag]))

@@ -43,7 +43,7 @@ def graded(
         if corner.exponent < STRONG:
             growing.narrow(corner.vertex)
         if power > 1:
-            fans.append(Fan(raw.vertices[:, corner.vertex], power, corner.stretch))
+            fans.append(Fan(raw.vertices[:, corner.vertex], power))
         growing.grade(corner.vertex, layers)
     return growing.raw_mesh(), tuple(fans)
 

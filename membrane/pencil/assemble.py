@@ -42,10 +42,9 @@ def _parts(membrane: Membrane, discretisation: Discretisation) -> Iterator[tuple
     free = discretisation.space.free
     for c in membrane.contributions:
         weak = WEAK_FORMS[c.field]
-        basis = basis_on[weak.on](c.where, isinstance(c.value, Function))
-        yield (
-            weak.side,
-            Part(c.key, c.scale, integrated(weak.integrand(coefficient(c)), basis, free)),
-        )
+        varying = isinstance(c.value, Function)
+        basis = basis_on[weak.on](c.where, varying)
+        form = weak.integrand(coefficient(c))
+        yield weak.side, Part(c.key, c.scale, integrated(form, basis, free, even=not varying))
     for own in membrane.own_forms:
         yield own.side, Part(own.key, own.scale, integrated(own.form, on_regions(own.where), free))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from itertools import combinations_with_replacement
 from typing import Any
 
@@ -26,10 +26,12 @@ Coefficients = Mapping[tuple[int, int], Floats]
 """For each pair of unit fields, the first not after the second."""
 
 
-def integrated(form: Integrand, basis: Any, free: Ints) -> Any:
+def integrated(form: Integrand, basis: Any, free: Ints, even: bool = False) -> Any:
     """The symmetric matrix (n_free, n_free) of a form in u, v and their first derivatives.
 
     free : the dofs to keep, rising; those of a vertex, facet or triangle all or none
+    even : whether the form's own numbers are the same all over each triangle; where its sides
+        are straight, the form is then called at one point only
 
     Over triangles the form is called once for each pair of the three unit fields
     u = 1, u = xi and u = eta of the reference triangle. By linearity what it makes of them,
@@ -39,26 +41,31 @@ def integrated(form: Integrand, basis: Any, free: Ints) -> Any:
     if not isinstance(basis, RegionBasis):
         return BilinearForm(form).assemble(basis)[free][:, free]
     table = _Table(*tabulated(basis.X, basis.elem.maxdeg), basis.W)
-    known = basis.default_parameters()
     local = np.empty((basis.nelems, basis.Nbfun, basis.Nbfun))
-    step = max(1, CHUNK // basis.W.size)
-    for start in range(0, basis.nelems, step):
-        chosen = slice(start, start + step)
-        local[chosen] = table.matrices(_coefficients(form, basis, known, chosen))
+    for chosen, points in _batches(basis, even):
+        local[chosen] = table.matrices(_coefficients(form, basis, chosen, points))
     return basis.pattern(free).matrix(local)
 
 
-def _coefficients(
-    form: Integrand, basis: RegionBasis, known: Mapping[str, Any], chosen: slice
-) -> Coefficients:
+def _batches(basis: RegionBasis, even: bool) -> Iterator[tuple[Ints, slice]]:
+    """Triangles to be worked on at once, and at which points of the rule."""
+    simple = basis.straight if even else np.zeros(basis.nelems, dtype=bool)
+    for part, points in ((simple, slice(1)), (~simple, slice(None))):
+        numbers = np.nonzero(part)[0]
+        step = max(1, CHUNK // basis.W[points].size)
+        for start in range(0, len(numbers), step):
+            yield numbers[start : start + step], points
+
+
+def _coefficients(form: Integrand, basis: RegionBasis, chosen: Ints, points: slice) -> Coefficients:
     """What a form makes of each pair of unit fields, per reference area, where it is not 0."""
-    triangles = basis.tind[chosen]
-    area = basis.dx[chosen] / basis.W
-    inverse = basis.mapping.invDF(basis.X, triangles)
+    area = basis.dx[chosen, points] / basis.W[points]
+    inverse = basis.mapping.invDF(basis.X[:, points], basis.tind[chosen])
     one, none = np.ones_like(area), np.zeros_like(area)
     fields = [DiscreteField(one, np.zeros_like(inverse[0]))]
     fields += [DiscreteField(none, inverse[k]) for k in range(2)]
-    extra = FormExtraParams({name: value[..., chosen, :] for name, value in known.items()})
+    known = basis.known_at_points.items()
+    extra = FormExtraParams({name: value[..., chosen, points] for name, value in known})
     pairs = combinations_with_replacement(range(3), 2)
     made = {(a, b): form(fields[a], fields[b], extra) for a, b in pairs}
     return {ab: np.broadcast_to(c, area.shape) * area for ab, c in made.items() if np.any(c)}

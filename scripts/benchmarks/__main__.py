@@ -6,7 +6,7 @@ import argparse
 import subprocess
 import sys
 
-SECTIONS = ("accuracy", "assembly", "eigen", "growth", "whole")
+SECTIONS = ("accuracy", "assembly", "eigen", "growth", "sweep", "whole")
 
 
 def main() -> None:

@@ -78,7 +78,7 @@ def _ours(ready: Discretisation, basis: RegionBasis) -> None:
     basis = copy(basis)  # which has no pattern yet
     dofs = np.arange(ready.space.dofs)
     for form in (stiffness, mass):
-        integrated(form, basis, dofs)
+        integrated(form, basis, dofs, even=True)
 
 
 def _ours_from_mesh(mesh: Mesh, degree: int) -> None:

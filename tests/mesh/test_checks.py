@@ -30,7 +30,7 @@ def test_folded(disc):
 
 def test_a_triangle_may_come_to_nothing_at_the_corner_of_its_fan_alone():
     corner = zoo.prepared(zoo.L_SHAPE)
-    fan = Fan(np.zeros(2), 3, np.eye(2))
+    fan = Fan(np.zeros(2), 3)
     check_mesh(corner.mesh, corner.outline, (fan,))
     for others in ((), (replace(fan, place=np.ones(2)),)):
         with pytest.raises(MeshError, match="folds"):
@@ -43,9 +43,7 @@ def test_a_folded_fan():
     nodes = corner.mesh.nodes.copy()
     nodes[:, -1, triangle] += np.ptp(nodes[:, :, triangle])
     with pytest.raises(MeshError, match="folds"):
-        check_mesh(
-            replace(corner.mesh, nodes=nodes), corner.outline, (Fan(np.zeros(2), 3, np.eye(2)),)
-        )
+        check_mesh(replace(corner.mesh, nodes=nodes), corner.outline, (Fan(np.zeros(2), 3),))
 
 
 def test_hole_in_the_mesh(disc):

@@ -54,6 +54,17 @@ def test_few_points_at_a_time_make_no_difference(monkeypatch):
     assert abs(integrated(varying, basis, free) - whole).max() < 1e-13 * abs(whole).max()
 
 
+@pytest.mark.parametrize("keys", [zoo.DISC, zoo.L_SHAPE, zoo.SQUARE])
+def test_one_point_is_enough_on_straight_triangles(keys):
+    mesh = zoo.prepared(keys, 4).mesh
+    space = build_space(mesh, 4, ())
+    basis, dofs = space.on_regions(("head",)), np.arange(space.space.dofs)
+    assert 0 < np.count_nonzero(basis.straight) <= mesh.size
+    assert basis.straight.all() == (keys is zoo.SQUARE)
+    whole = integrated(tensor, basis, dofs)
+    assert abs(integrated(tensor, basis, dofs, even=True) - whole).max() < 1e-12 * abs(whole).max()
+
+
 def test_only_free_dofs_are_kept():
     mesh = zoo.prepared(zoo.DISC, 4).mesh
     space = build_space(mesh, 4, ("rim",))

@@ -33,16 +33,16 @@ accuracy = "1 cent"
 key = "patches.paste.added_density"
 from = "0.1 kg/m^2"
 to = "3 kg/m^2"
-steps = 24
+steps = 20
 [[sweep.axes]]
 key = "patches.paste.at[1]"
 from = "0 mm"
 to = "30 mm"
-steps = 4
+steps = 3
 """
 
-POINTS = 24 * 4
-DRIVER_KILLS, WORKER_KILLS = 4, 2
+POINTS = 20 * 3
+DRIVER_KILLS, WORKER_KILLS = 3, 2
 
 
 def start(study: Path, out: Path, workers: int) -> subprocess.Popen[bytes]:
