@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from itertools import count as counter
 
@@ -68,7 +68,8 @@ def follow_grid(
     """Modes followed along the first axis, from starts followed along the second.
 
     modes_at : gives ``count`` + 4 modes at places on both axes
-    returns : for each place on the second axis, the branches along the first
+    returns : for each place on the second axis, the branches along the first; what is lost on
+        the way to its start is lost there
     """
     first, second = np.asarray(first, dtype=float), np.asarray(second, dtype=float)
     along = lru_cache(REMEMBERED)(lambda place: modes_at(float(first[0]), place))
@@ -79,7 +80,7 @@ def follow_grid(
     rows = []
     for start in _stations(along, corner, second, count, same, fresh):
         across = lru_cache(REMEMBERED)(_fixed(modes_at, start.place))
-        beginning = Station(float(first[0]), start.shapes, start.branches)
+        beginning = replace(start, place=float(first[0]))
         rows.append(_gathered(_stations(across, beginning, first, count, same, fresh), count))
     return tuple(rows)
 

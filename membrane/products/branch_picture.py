@@ -53,7 +53,7 @@ def _laid_out(diagram: Diagram) -> tuple[Figure, list[Axes]]:
 
 
 def _draw(axes: Any, panel: Panel, diagram: Diagram) -> None:
-    for branch in np.unique(panel.branches):
+    for branch in np.unique(panel.branches[panel.branches > 0]):
         places, frequencies = curve(panel, diagram.places, int(branch))
         style: dict[str, Any] = {"color": _colour(int(branch)), "linestyle": _dash(int(branch))}
         axes.plot(places, frequencies, linewidth=1.2, marker=".", markersize=3, **style)

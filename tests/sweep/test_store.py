@@ -14,7 +14,8 @@ import pytest
 from membrane.errors import OutputError
 from membrane.sweep.answer import Answer, Outcome
 from membrane.sweep.points import Point
-from membrane.sweep.store import DONE, FAILED, MISSING, VERSION, Entry, Store
+from membrane.sweep.schema import VERSION
+from membrane.sweep.store import DONE, FAILED, MISSING, Entry, Store
 
 ENTRY = Entry("a", "s", "demo", ("head.tension",), 4)
 ANSWER = Answer(np.array([1 / 3, np.pi]), np.array([1e-17, 2.5]), "estimated", 2)
