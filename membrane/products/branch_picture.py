@@ -71,6 +71,7 @@ def _draw(axes: Any, panel: Panel, diagram: Diagram) -> None:
     for found, off, side in ((begins, -6, "right"), (ends, 6, "left")):
         for end in together(found, apart):
             _name(axes, end, off, side)
+    axes.margins(x=0.1)
     axes.set_title(panel.title, fontsize="medium")
     if diagram.logarithmic:
         axes.set_xscale("log")
@@ -116,7 +117,7 @@ def _name(axes: Any, end: End, off: float, side: str) -> None:
         ha=side,
         va="center",
         fontsize=7,
-        color=_colour(end.branches[0]),
+        color=_colour(max(end.branches)),  # the line on top
     )
 
 
