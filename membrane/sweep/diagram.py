@@ -13,25 +13,27 @@ from membrane.sweep.branched import in_order
 from membrane.sweep.results import SweepResults
 
 MOST_PANELS = 16
-"""Values of the second axis that are drawn, both ends among them."""
+"""Choices of values on the other axes that are drawn, the first and the last among them."""
 
 
 def diagram(title: str, sweep: Sweep, units: Sequence[str], results: SweepResults) -> Diagram:
-    """A panel for each value of the second axis; of very many, some that are spread evenly.
+    """A panel for each choice of values on the other axes; of very many, some spread evenly.
 
     units : of the axes, "" for a plain number
     """
     first, *others = sweep.axes
-    order = in_order(first)
-    places = np.array(first.values)[order]
-    titles = _titles(others[0], units[1]) if others else [""]
-    shown = np.unique(np.linspace(0, len(titles) - 1, MOST_PANELS).round().astype(np.int64))
-    columns = in_order(others[0])[shown] if others else shown
+    places = np.array(first.values)[in_order(first)]
+    shape = [len(axis.values) for axis in sweep.axes]
+    numbers = np.reshape(np.arange(1, sweep.size + 1), shape)[np.ix_(*map(in_order, sweep.axes))]
+    choices = list(np.ndindex(*shape[1:]))
+    shown = np.unique(np.linspace(0, len(choices) - 1, MOST_PANELS).round().astype(np.int64))
+    titles = [_title(others, units[1:], choices[n]) for n in shown]
+    walks = [numbers[(slice(None), *choices[n])] for n in shown]
     return Diagram(
         title,
         ", ".join(filter(None, (first.key, _raised(units[0])))),
         places,
-        tuple(_panel(titles[c], places, 1 + order * len(titles) + c, results) for c in columns),
+        tuple(_panel(t, places, w, results) for t, w in zip(titles, walks, strict=True)),
         logarithmic=first.spacing is Spacing.LOGARITHMIC,
     )
 
@@ -49,8 +51,10 @@ def _panel(title: str, places: Floats, numbers: Ints, results: SweepResults) -> 
     )
 
 
-def _titles(axis: Axis, unit: str) -> list[str]:
-    return [f"{axis.key} = {value:g} {_raised(unit)}".rstrip() for value in axis.values]
+def _title(axes: Sequence[Axis], units: Sequence[str], at: Sequence[int]) -> str:
+    values = (axis.values[in_order(axis)[place]] for axis, place in zip(axes, at, strict=True))
+    named = zip(axes, values, units, strict=True)
+    return "\n".join(f"{a.key} = {value:g} {_raised(unit)}".rstrip() for a, value, unit in named)
 
 
 def _raised(unit: str) -> str:

@@ -55,6 +55,14 @@ def test_the_second_axis_runs_fastest(monkeypatch):
     assert found.numbers.tolist() == [[1, 2, 3]] * 3 + [[2, 1, 3]] * 3
 
 
+def test_a_third_axis_runs_faster_still(monkeypatch):
+    axes = axis("a", 0.1, 1.6), axis("b", 7.0, 3.0, 5.0), axis("c", 3.0, 7.0)
+    found = branches_of(monkeypatch, leaving, *axes)
+    new = COUNT + following.GUARDS + 1
+    assert found.numbers[:, 1].tolist() == [2, new] * 6
+    assert found.lost == ((2, 2),)
+
+
 def test_a_lost_branch_is_lost_at_its_point(monkeypatch):
     found = branches_of(monkeypatch, leaving, axis("a", 1.0, 3.0, 7.0))
     assert found.lost == ((2, 3),)
@@ -74,7 +82,6 @@ def test_also_on_the_way_along_the_second_axis(monkeypatch):
         ([TENSION], {"pick": Pick.RANDOM, "count": 3}, 'not with pick = "random"'),
         ([TENSION], {"pick": Pick.TABLE}, 'not with pick = "table"'),
         ([DIAMETER], {"shaping": [True]}, "from mesh to mesh, as outline.diameter would"),
-        ([TENSION, axis("b", 1.0), axis("c", 1.0)], {}, "at most 2 axes, not 3"),
         ([TENSION, axis("b", 1.0)], {}, ""),
     ],
 )
