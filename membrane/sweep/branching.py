@@ -41,7 +41,7 @@ def _kept(task: Task, store: Store, say: Callable[[str], None]) -> Branches | No
     try:
         found = followed(task.answering, task.points, count)
     except MembraneError as failure:
-        say(f"No branches: there is no way from point to point. {sentence_of(failure)}")
+        say(f"No branches: on the way from point to point, {sentence_of(failure)}")
         return None
     store.keep_branches(task.entry, found)
     return found

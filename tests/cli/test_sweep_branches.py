@@ -43,6 +43,14 @@ TENSION = """
 key = "head.tension"
 values = [1.0, 4.0]
 """
+SHEAR = """
+[[sweep.axes]]
+key = "head.tension.xx"
+values = [3.0, 1.0]
+[[sweep.axes]]
+key = "head.tension.xy"
+values = [0.0, 1.5]
+"""
 RANDOM = """
 pick = "random"
 count = 2
@@ -92,7 +100,7 @@ def test_branches_bear_the_names_of_bessel_functions(study, tmp_path):
 
 @pytest.mark.slow
 def test_the_table_is_the_same_by_parts_and_when_followed_anew(study, tmp_path):
-    study.write_text(STUDY + DENSITY + TENSION)
+    study.write_text(STUDY + DENSITY.replace("1.0, 2.0, 4.0, ", "2.0, ") + TENSION)
     invoke(study, tmp_path / "out", "--workers", "1")
     table = (tmp_path / "out" / "points.csv").read_bytes()
     for part in ("1/2", "2/2"):
@@ -107,6 +115,7 @@ def test_the_table_is_the_same_by_parts_and_when_followed_anew(study, tmp_path):
     assert {row["branch"] for row in rows(tmp_path / "out")} == {""}
     invoke(study, tmp_path / "out", "--workers", "1")
     assert (tmp_path / "out" / "points.csv").read_bytes() == table
+    assert not {"1", "2", "9"} - {row["branch"] for row in rows(tmp_path / "out")}
     tight = [row["branch"] for row in rows(tmp_path / "out") if float(row["head.tension"]) > 1.0]
     loose = [row["branch"] for row in rows(tmp_path / "out") if float(row["head.tension"]) == 1.0]
     assert tight == loose  # nothing but the pitch changes with the tension
@@ -121,6 +130,16 @@ def test_random_points_have_no_branches(study, tmp_path):
     )
     assert {row["branch"] for row in rows(tmp_path / "out")} == {""}
     assert not (tmp_path / "out" / "branches.png").exists()
+
+
+@pytest.mark.slow
+def test_a_point_that_has_no_modes_is_in_the_way(study, tmp_path):
+    tension = "tension = {xx = 3.0, xy = 0.0, yy = 2.0}"
+    study.write_text(STUDY.replace("tension = 1.0", tension) + SHEAR)
+    said = invoke(study, tmp_path / "out", "--workers", "1").splitlines()
+    assert said[0] == "3 of 4 points are done."
+    assert said[-2].startswith("No branches: on the way from point to point, head.tension: a mem")
+    assert {row["branch"] for row in rows(tmp_path / "out")} == {""}
 
 
 @pytest.mark.slow
