@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass, replace
 from math import ceil, sqrt
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
@@ -21,6 +22,9 @@ ONE, MULTIPLE = (8.0, 6.0), (4.0, 3.2)
 COLOURS = "tab20"
 DASHES = ("-", "--", ":")
 """Branches beyond the colours take the next dash."""
+
+NEAR = 0.012
+"""Of the highest frequency: ends no further apart are named together."""
 
 DPI = 100
 
@@ -53,13 +57,21 @@ def _laid_out(diagram: Diagram) -> tuple[Figure, list[Axes]]:
 
 
 def _draw(axes: Any, panel: Panel, diagram: Diagram) -> None:
-    for branch in np.unique(panel.branches):
-        places, frequencies = curve(panel, diagram.places, int(branch))
-        style: dict[str, Any] = {"color": _colour(int(branch)), "linestyle": _dash(int(branch))}
+    begins, ends = [], []
+    for branch in np.unique(panel.branches[panel.branches > 0]).tolist():
+        places, frequencies = curve(panel, diagram.places, branch)
+        style: dict[str, Any] = {"color": _colour(branch), "linestyle": _dash(branch)}
         axes.plot(places, frequencies, linewidth=1.2, marker=".", markersize=3, **style)
-        _name(axes, int(branch), places, frequencies)
+        begins.append(End(places[0], frequencies[0], (branch,)))
+        if len(places) > 1:
+            ends.append(End(places[-1], frequencies[-1], (branch,)))
         if any(lost == branch for lost, _ in panel.lost):
-            axes.plot(places[-1], frequencies[-1], marker="x", color=_colour(int(branch)))
+            axes.plot(places[-1], frequencies[-1], marker="x", color=_colour(branch))
+    apart = NEAR * float(np.nanmax(panel.frequencies, initial=0.0))
+    for found, off, side in ((begins, -6, "right"), (ends, 6, "left")):
+        for end in together(found, apart):
+            _name(axes, end, off, side)
+    axes.margins(x=0.1)
     axes.set_title(panel.title, fontsize="medium")
     if diagram.logarithmic:
         axes.set_xscale("log")
@@ -74,20 +86,39 @@ def curve(panel: Panel, places: Floats, branch: int) -> tuple[Floats, Floats]:
     return places[first : last + 1], frequencies[first : last + 1]
 
 
-def _name(axes: Any, branch: int, places: Floats, frequencies: Floats) -> None:
-    """The branch's number at both its ends."""
-    ends = ((0, -6, "right"), (-1, 6, "left"))
-    for end, off, side in ends[: len(places)]:
-        axes.annotate(
-            str(branch),
-            (places[end], frequencies[end]),
-            (off, 0),
-            textcoords="offset points",
-            ha=side,
-            va="center",
-            fontsize=7,
-            color=_colour(branch),
-        )
+@dataclass(frozen=True)
+class End:
+    """Where the lines of some branches begin or end."""
+
+    place: float
+    frequency: float
+    branches: tuple[int, ...]
+
+
+def together(ends: list[End], apart: float) -> list[End]:
+    """One for those at one place whose frequencies are no further apart than that, Hz."""
+    merged: list[End] = []
+    for end in sorted(ends, key=lambda end: (end.place, end.frequency)):
+        last = merged[-1] if merged else None
+        if last and last.place == end.place and end.frequency - last.frequency <= apart:
+            merged[-1] = replace(last, branches=(*last.branches, *end.branches))
+        else:
+            merged.append(end)
+    return merged
+
+
+def _name(axes: Any, end: End, off: float, side: str) -> None:
+    """The branches' numbers beside an end."""
+    axes.annotate(
+        ", ".join(map(str, end.branches)),
+        (end.place, end.frequency),
+        (off, 0),
+        textcoords="offset points",
+        ha=side,
+        va="center",
+        fontsize=7,
+        color=_colour(max(end.branches)),  # the line on top
+    )
 
 
 def _colour(branch: int) -> Any:
