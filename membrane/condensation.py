@@ -98,16 +98,19 @@ def condensation(A: Any) -> Condensation:
     is_kept = ~np.isin(runs.of, chosen)
     if not is_kept.any():
         chosen, is_kept = chosen[:0], ~is_kept
-    columns = np.repeat(np.arange(len(runs.of)), np.diff(indptr))
-    is_low = (indices >= columns) & is_kept[indices] & is_kept[columns]
-    low = np.nonzero(is_low)[0]
+    lengths = np.diff(indptr)
+    low = np.nonzero(np.repeat(is_kept, lengths))[0]
+    columns = np.repeat(np.arange(len(lengths))[is_kept], lengths[is_kept])
+    is_low = (indices[low] >= columns) & is_kept[indices[low]]
+    low, columns = low[is_low], columns[is_low]
     number = np.cumsum(is_kept) - 1
-    place = np.append(np.cumsum(is_low) - 1, len(low))
+    place = np.full(len(indices) + 1, len(low))
+    place[low] = np.arange(len(low))
     return Condensation(
         kept=np.nonzero(is_kept)[0],
         low=low,
         rows=number[indices[low]],
-        columns=number[columns[low]],
+        columns=number[columns],
         batches=tuple(
             _batch(indptr, indices, runs, chosen[runs.sizes[chosen] == m], place)
             for m in np.unique(runs.sizes[chosen])
@@ -138,17 +141,11 @@ def _runs(indptr: Ints, indices: Ints) -> _Runs:
 
 def _like_the_one_before(indptr: Ints, indices: Ints) -> Bools:
     """(n_dofs,), whether a column has its entries where the one before has them."""
-    lengths = np.diff(indptr)
-    alike = np.diff(lengths, prepend=-1) == 0
-    alike &= lengths > 0
-    column = np.nonzero(alike)[0]
-    length = lengths[column]
-    start = np.cumsum(length) - length
-    entry = np.arange(length.sum()) + np.repeat(indptr[column] - start, length)
-    same = indices[entry] == indices[entry - np.repeat(length, length)]
-    if len(column):
-        alike[column] = np.logical_and.reduceat(same, start)
-    return np.asarray(alike)
+    # a column's entries are told by the sum of 64 random bits for each, which wraps around
+    bits = np.random.default_rng(0).integers(2**64, size=len(indptr) - 1, dtype=np.uint64)
+    sums = np.concatenate([np.zeros(1, np.uint64), np.cumsum(bits[indices])])
+    told = np.diff(sums[indptr])
+    return np.asarray(np.concatenate([[False], told[1:] == told[:-1]])[: len(told)])
 
 
 def _eliminated(runs: _Runs) -> Ints:
