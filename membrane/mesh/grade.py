@@ -20,6 +20,9 @@ STRONG = 0.6
 WIDEST = 1.1
 """Widest angle of a triangle at a strong corner, radians: a little over 60 degrees."""
 
+WIDEST_FAN = 1.4
+"""Widest of a fan, radians: its outer side is an arc, on which the triangle beyond may fold."""
+
 
 def graded(
     kernel: Kernel,
@@ -41,8 +44,9 @@ def graded(
         share = float(shares[corner.vertex])
         power, layers = treatment(corner.terms, share, tolerance, degree, powers)
         if corner.exponent < STRONG:
-            growing.narrow(corner.vertex)
+            growing.narrow(corner.vertex, WIDEST)
         if power > 1:
+            growing.narrow(corner.vertex, WIDEST_FAN)
             fans.append(Fan(raw.vertices[:, corner.vertex], power))
         growing.grade(corner.vertex, layers)
     return growing.raw_mesh(), tuple(fans)
@@ -75,12 +79,12 @@ class _Growing:
         for (tail, tip), curve, (start, stop) in sides:
             self._add_segment(int(tail), int(tip), int(curve), float(start), float(stop))
 
-    def narrow(self, vertex: int) -> None:
+    def narrow(self, vertex: int, widest: float) -> None:
         """Halve the triangles that are wide at a vertex, which follow r^a worst."""
         for number in sorted(self.touching[vertex]):
             here, left, right = (self.places[v] for v in self._turned(number, vertex))
             (ux, uy), (vx, vy) = left - here, right - here
-            if atan2(ux * vy - uy * vx, ux * vx + uy * vy) > WIDEST:
+            if atan2(ux * vy - uy * vx, ux * vx + uy * vy) > widest:
                 self._halve(*self._turned(number, vertex)[1:])
 
     def _halve(self, tail: int, tip: int) -> None:

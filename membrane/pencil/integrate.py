@@ -13,8 +13,8 @@ from skfem.element import DiscreteField
 
 from membrane.pencil.forms import Integrand
 from membrane.pencil.space import RegionBasis
-from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
+from membrane.triangle import tabulated
 
 CHUNK = 6_000
 """Quadrature points that are worked on at once, so that they stay within the cache."""

@@ -8,10 +8,9 @@ import numpy as np
 from skfem.mapping.mapping import Mapping
 
 from membrane.evaluate import invert
-from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
-from membrane.triangle import EDGES, nodes
+from membrane.triangle import EDGES, nodes, tabulated
 
 
 class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped

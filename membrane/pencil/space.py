@@ -16,11 +16,10 @@ from membrane.pencil.element import element, reference_element
 from membrane.pencil.mapping import CurvedMapping
 from membrane.pencil.pattern import Pattern, pattern
 from membrane.pencil.quadrature import line_rule, triangle_rule
-from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.pencil import Space
-from membrane.triangle import nodes
+from membrane.triangle import nodes, tabulated
 
 MOST_FOR_CURVES = 6
 """Quadrature orders beyond the shapes' own 2p. On triangles with sides of order g the mass would
