@@ -45,11 +45,6 @@ class RegionBasis(CellBasis):  # type: ignore[misc]  # scikit-fem is untyped
         rounding = STRAIGHT * np.abs(mesh.nodes).max()
         return (np.abs(bends).max(axis=(0, 1)) <= rounding)[self.tind]
 
-    @cached_property
-    def known_at_points(self) -> Any:
-        """What scikit-fem tells a form: places and triangles' sizes at the points of the rule."""
-        return self.default_parameters()
-
     def pattern(self, free: Ints) -> Pattern:
         """Where the entries between the dofs ``free`` lie."""
         if self._last is None or self._last[0] is not free:
