@@ -10,7 +10,7 @@ from membrane.mesh import grade
 from membrane.mesh.corner import Corner, Term
 from membrane.mesh.corners import corners
 from membrane.mesh.depth import RATIO
-from membrane.mesh.grade import WIDEST, WIDEST_FAN, graded
+from membrane.mesh.grade import WIDEST, WIDEST_STRONG, graded
 from membrane.mesh.resolution import region_sizes
 from tests import zoo
 
@@ -54,7 +54,7 @@ def test_area_is_kept(keys):
 @pytest.mark.parametrize("layers", [1, 3])
 def test_nearest_vertices_are_as_close_as_asked(layers, monkeypatch):
     monkeypatch.setattr(grade, "treatment", lambda *asked: (3, layers))
-    monkeypatch.setattr(grade, "WIDEST_FAN", np.pi)  # nothing is halved
+    monkeypatch.setattr(grade, "WIDEST", np.pi)  # nothing is halved
     before, (corner,), (after, (fan,)) = meshes(zoo.L_SHAPE)
 
     def nearest(raw):
@@ -69,8 +69,8 @@ def test_nearest_vertices_are_as_close_as_asked(layers, monkeypatch):
 def test_no_fan_is_so_wide_that_the_triangle_beyond_it_could_fold():
     before, (corner,), (after, (fan,)) = meshes(zoo.L_SHAPE)
     assert fan.power > 1
-    assert angles_at(before, corner.vertex).max() > WIDEST_FAN
-    assert angles_at(after, corner.vertex).max() <= WIDEST_FAN
+    assert angles_at(before, corner.vertex).max() > WIDEST
+    assert angles_at(after, corner.vertex).max() <= WIDEST
     assert angles_at(after, corner.vertex).sum() == pytest.approx(1.5 * np.pi)
 
 
@@ -111,4 +111,8 @@ def test_wide_triangles_at_a_strong_corner_are_halved():
     box = {"shape": "rectangle", "width": 2.0, "height": 0.8}
     before, singular, (after, _) = meshes({**zoo.SQUARE, "outline": box, "slits": [slit]})
     (corner,) = (c for c in singular if c.exponent == 0.5)
-    assert angles_at(after, corner.vertex).max() <= WIDEST < angles_at(before, corner.vertex).max()
+    assert (
+        angles_at(after, corner.vertex).max()
+        <= WIDEST_STRONG
+        < angles_at(before, corner.vertex).max()
+    )
