@@ -14,7 +14,7 @@ from membrane import plugins
 from membrane.accuracy import estimate, widened
 from membrane.bounds import SPARE, bracketed, check_provable
 from membrane.coefficients import coefficients
-from membrane.errors import BracketError, SolveError
+from membrane.errors import BracketError, MeshError, SolveError
 from membrane.kernel import Kernel
 from membrane.mesh import (
     Resolution,
@@ -30,7 +30,7 @@ from membrane.nodal import nodal_patterns
 from membrane.outline import draw
 from membrane.partials import partials
 from membrane.pencil import assemble
-from membrane.records.bracket import Bracket
+from membrane.records.bracket import GUARANTEED, Bracket
 from membrane.records.membrane import Membrane
 from membrane.records.mesh import Mesh
 from membrane.records.modes import Modes
@@ -156,14 +156,21 @@ def _solve(study: Study, clock: _Clock) -> _Solution:
 
 def _until_met(solved: Callable[[Resolution], _Solution], resolution: Resolution) -> _Solution:
     """The best solution, on a finer mesh each time until one is accurate enough."""
-    tried: list[_Solution] = []
-    for _ in range(MESHES):
-        found = solved(resolution)
-        tried.append(found)
-        if found.excess <= 1.0 or (tried[1:] and found.excess > WORTH * tried[-2].excess):
+    tried = [solved(resolution)]
+    while tried[-1].excess > 1.0 and len(tried) < MESHES:
+        resolution = resolution.finer(tried[-1].excess)
+        try:
+            tried.append(solved(resolution))
+        except (MeshError, SolveError):  # rounding ends the refinement: what is known stays
             break
-        resolution = resolution.finer(found.excess)
-    return min(tried, key=lambda solution: solution.excess)
+        if tried[-1].excess > WORTH * tried[-2].excess:
+            break
+    return min(tried, key=_worth)
+
+
+def _worth(solution: _Solution) -> tuple[bool, float]:
+    """The less, the better: a proof before the narrowest estimate."""
+    return solution.bracket.label != GUARANTEED, solution.excess
 
 
 def _across(

@@ -152,3 +152,21 @@ def test_all_eigensolvers_agree():
     ]
     np.testing.assert_allclose(spectra[1], spectra[0], rtol=1e-11)
     np.testing.assert_allclose(spectra[2], spectra[0], rtol=1e-11)
+
+
+def test_a_mesh_that_cannot_be_refined_keeps_its_result(monkeypatch):
+    make_mesh = pipeline.make_mesh
+    made = []
+
+    def once(*arguments, **keywords):
+        made.append(arguments)
+        if len(made) > 1:
+            raise MeshError("as if it folded")
+        return make_mesh(*arguments, **keywords)
+
+    monkeypatch.setattr(pipeline, "suited_resolution", lambda *_: Resolution(4, 3.0, 1e-3))
+    monkeypatch.setattr(pipeline, "make_mesh", once)
+    spectrum = solved(zoo.SQUARE, count=4, accuracy=1e-5)
+    assert len(made) == 2
+    assert not spectrum.mesh_facts["accuracy_met"]
+    assert {partial.bracket for partial in spectrum.partials} == {"guaranteed"}

@@ -30,6 +30,9 @@ SHIFT = 0.1
 FLUX_DEGREES = (-1, 0, 1)
 """Degrees of the fluxes tried in turn, from that of the modes up."""
 
+HIGH = 6
+"""Degree of the modes from which fluxes of one less are worth a try."""
+
 HOPELESS = 0.5
 """Share of the width that a degree must leave for the next one to be worth its while."""
 
@@ -71,7 +74,7 @@ class _Bounds:
         margin = ROUNDING / CENTS_PER_EIGENVALUE
         high = self.high[:count] * grow * (1 + margin)
         best = Bracket(np.zeros(count), high, GUARANTEED)
-        for more in FLUX_DEGREES:
+        for more in FLUX_DEGREES[self.space.degree < HIGH :]:
             low = self._low(self.space.degree + more)[:count] * shrink * (1 - margin)
             if rigid:
                 low[0] = high[0] = 0.0

@@ -27,6 +27,10 @@ from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
 from membrane.records.study import ModesWanted
 
+LEAST_ORDER = 8
+"""Order of the geometry where the elements' degree is lower: what sides miss of their curves
+widens every bracket, however little of the head they bound."""
+
 ATTEMPTS = 6
 """How often a mesh whose curved triangles fold is tried again, each time finer."""
 
@@ -77,6 +81,6 @@ def _attempt(
     powers = FAN_POWERS if fans else NO_FANS
     raw, drawn_in = graded(kernel, raw, found, resolution.tolerance, resolution.degree, powers)
     raw = opened(raw, [curve.tag for curve in outline.curves if curve.lips])
-    mesh = curved(kernel, outline, raw, resolution.degree, drawn_in)
+    mesh = curved(kernel, outline, raw, max(resolution.degree, LEAST_ORDER), drawn_in)
     check_mesh(mesh, outline, drawn_in)
     return replace(mesh, departure=inf if drawn_in else departure(kernel, raw, mesh))

@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import logging
+import signal
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from time import monotonic
+from typing import Any
 from uuid import uuid4
 
 import dask
@@ -70,6 +72,7 @@ class Processes:
             ) as cluster,
             Client(cluster) as client,
         ):
+            client.register_plugin(_Deaf())
             # a worker that dies while it starts is given up by Dask: then another is wanted
             yield from _worked(client, answering, bundles, lambda: cluster.scale(self._count))
 
@@ -95,6 +98,16 @@ class _Keeper(WorkerPlugin):  # type: ignore[misc]
     def __init__(self, name: str, answering: Answering) -> None:
         self.name = name
         self.answering = answering
+
+
+class _Deaf(WorkerPlugin):  # type: ignore[misc]
+    """Leaves Ctrl-C to the process that started the workers; it ends them in good order."""
+
+    name = "deaf"
+
+    def setup(self, worker: Any) -> None:
+        """Called in the main thread of each worker as it starts."""
+        signal.signal(signal.SIGINT, signal.SIG_IGN)
 
 
 @contextmanager
