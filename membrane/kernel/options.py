@@ -11,6 +11,6 @@ MESH_OPTIONS = {
     "Mesh.RandomSeed": 1,
     "Mesh.ElementOrder": 1,
     "Mesh.Optimize": 1,
-    "Mesh.Smoothing": 5,
+    "Mesh.Smoothing": 0,  # smooth.py does it: gmsh would take ten times as long as for the mesh
     "General.NumThreads": 1,
 }

@@ -19,6 +19,7 @@ from membrane.kernel.options import MESH_OPTIONS
 from membrane.kernel.raw_checks import check_raw
 from membrane.kernel.size_map import SizeMap
 from membrane.kernel.sizes import USUAL, Bend, size_map
+from membrane.kernel.smooth import smoothed
 from membrane.records.arrays import Floats, Ints
 from membrane.records.outline import Outline
 from membrane.records.raw_mesh import RawMesh, signed_areas
@@ -277,14 +278,11 @@ class Kernel:
         triangles, face = self._triangles(outline)
         segments, curve, parameters = self._segments(outline)
         used, corners = np.unique(triangles, return_inverse=True)
-        raw = RawMesh(
-            self._places(used),
-            corners.reshape(3, -1),
-            face,
-            np.searchsorted(used, segments),
-            curve,
-            parameters,
-        )
+        corners = corners.reshape(3, -1)
+        fixed = np.isin(used, segments) | np.isin(used, self._gmsh.model.mesh.getNodes(0)[0])
+        places = smoothed(self._places(used), corners, ~fixed)
+        along = np.searchsorted(used, segments)
+        raw = RawMesh(places, corners, face, along, curve, parameters)
         if not np.isin(segments, used).all():
             raise MeshError("gmsh left a curve of the outline without triangles.")
         check_raw(self, raw, outline)
@@ -317,7 +315,8 @@ class Kernel:
     ) -> SizeMap:
         longest = self._longest(outline, sizes)
         longest = {curve: min(most, along.get(curve, inf)) for curve, most in longest.items()}
-        return size_map(self, longest, self._joined(longest), bend)
+        most = max(sizes.values())
+        return size_map(self, longest, self._joined(longest), bend, most)
 
     def _longest(self, outline: Outline, sizes: Mapping[str, float]) -> dict[int, float]:
         """Longest wanted edge along each curve, metres."""

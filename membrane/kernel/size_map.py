@@ -2,15 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
 from functools import cached_property
-from math import hypot
+from math import hypot, inf
 
 import numpy as np
 
 from membrane.records.arrays import Floats, Ints
 
-_FEW = 20
+_FEW = 40
 """Samples that are looked through one by one."""
 
 _DEEPEST = 40
@@ -19,25 +18,32 @@ _OVERRULED = 1e-6
 
 
 class SizeMap:
-    """Edge length = the least of size + growth x distance over all samples.
+    """Edge length = the least of size + growth x distance over all samples, and of ``most``.
 
     points : (2, n), metres
     sizes : (n,), metres
     growth : how much longer an edge may be per length away from a sample
+    most : metres
     """
 
-    def __init__(self, points: Floats, sizes: Floats, growth: float) -> None:
-        self.points, self.sizes, self.growth = points, sizes, growth
+    def __init__(self, points: Floats, sizes: Floats, growth: float, most: float = inf) -> None:
+        self.points, self.sizes, self.growth, self.most = points, sizes, growth, most
 
     def at(self, x: float, y: float) -> float:
         """Longest edge, metres, at a point."""
-        return self._root.least(x, y)
+        return min(self.most, self._root.least(x, y)) if self.sizes.size else self.most
+
+    def capped(self, most: float) -> SizeMap:
+        """The map with no edge longer than ``most``, without the samples that this overrules."""
+        kept = self.sizes < most
+        return SizeMap(self.points[:, kept], self.sizes[kept], self.growth, most)
 
     def shortened(self, places: Floats, factor: float) -> SizeMap:
         """The map with edges shorter by a factor at ``places`` (2, n)."""
         shorter = [factor * self.at(x, y) for x, y in places.T]
         points = np.hstack([self.points, places])
-        return SizeMap(points, np.concatenate([self.sizes, shorter]), self.growth)
+        sizes = np.concatenate([self.sizes, shorter])
+        return SizeMap(points, sizes, self.growth, self.most)
 
     @cached_property
     def _root(self) -> _Square:
@@ -53,7 +59,7 @@ class SizeMap:
             for k, (x, y) in enumerate(self.points.T)
             if self.at(x, y) > (1 - _OVERRULED) * self.sizes[k]
         ]
-        return SizeMap(self.points[:, kept], self.sizes[kept], self.growth)
+        return SizeMap(self.points[:, kept], self.sizes[kept], self.growth, self.most)
 
 
 class _Square:
@@ -78,7 +84,8 @@ class _Square:
             if square.samples.size <= _FEW:
                 break
             square = square._quarter(x > square.x, y > square.y)
-        return min(square._each(x, y))
+        growth = self.sizes.growth
+        return min([s + growth * hypot(px - x, py - y) for px, py, s in square._listed])
 
     def _quarter(self, right: bool, up: bool) -> _Square:
         quarter = self.quarters.get((right, up))
@@ -95,7 +102,3 @@ class _Square:
         return list(
             zip(x.tolist(), y.tolist(), self.sizes.sizes[self.samples].tolist(), strict=True)
         )
-
-    def _each(self, x: float, y: float) -> Iterator[float]:
-        growth = self.sizes.growth
-        return (s + growth * hypot(px - x, py - y) for px, py, s in self._listed)

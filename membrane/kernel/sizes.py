@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
+from math import inf
 from typing import Protocol
 
 import numpy as np
@@ -56,11 +57,13 @@ def size_map(
     targets: Mapping[int, float],
     joined: Mapping[int, Sequence[int]],
     bend: Bend,
+    most: float = inf,
 ) -> SizeMap:
     """Sizes along curves from their bends, the gaps between them and the targets.
 
     targets : curve -> longest edge wanted along it, metres
     joined : curve -> curves that share an end with it, between which no gap is sought
+    most : longest edge anywhere, metres
     """
     parameters = {c: np.linspace(*kernel.bounds(c), _FIRST_SAMPLES) for c in targets}
     for _ in range(_ROUNDS):
@@ -71,7 +74,8 @@ def size_map(
             break
         parameters = finer
     points = np.hstack([one.points for one in sampled])
-    return SizeMap(points, np.hstack([one.sizes for one in sampled]), bend.growth).thinned()
+    sizes = np.hstack([one.sizes for one in sampled])
+    return SizeMap(points, sizes, bend.growth).capped(most).thinned()
 
 
 def _sample(kernel: Curves, curve: int, parameters: Floats, target: float, bend: Bend) -> _Sampled:

@@ -11,7 +11,7 @@ from membrane.mesh.corner import Fan
 from membrane.records.arrays import Floats
 from membrane.records.mesh import Mesh
 from membrane.records.outline import Outline
-from membrane.triangle import gauss, lattice, shapes
+from membrane.triangle import gauss, lattice, tabulated
 
 FLATTEST = 0.02
 """Least jacobian allowed, relative to the triangle's own mean."""
@@ -52,7 +52,7 @@ def jacobians(mesh: Mesh) -> Floats:
 
     Signed so that a triangle that does not fold has no negative value.
     """
-    _, slopes = shapes(lattice(2 * mesh.order).points, mesh.order)
+    _, slopes = tabulated(lattice(2 * mesh.order).points, mesh.order)
     return _oriented(mesh, slopes)
 
 
@@ -82,7 +82,7 @@ def _areas(mesh: Mesh) -> Floats:
     directions = np.array([[1.0, 0.0], [-1.0, 1.0], [0.0, -1.0]])
     total = np.zeros(mesh.size)
     for loop, direction in zip(loops, directions, strict=True):
-        values, slopes = shapes(loop, mesh.order)
+        values, slopes = tabulated(loop, mesh.order)
         x, y = np.tensordot(values, mesh.nodes, (0, 1)).transpose(1, 0, 2)
         along = np.tensordot(direction, slopes, 1)
         dx, dy = np.tensordot(along, mesh.nodes, (0, 1)).transpose(1, 0, 2)

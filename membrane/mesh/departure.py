@@ -10,7 +10,7 @@ from membrane.mesh.curve import from_chord, segment_sides
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.raw_mesh import RawMesh
-from membrane.triangle import lattice, lobatto, shapes
+from membrane.triangle import lattice, lobatto, tabulated
 
 SAMPLES = 8
 """Points for each degree of a polynomial; between them it rises by less than 2 percent."""
@@ -77,7 +77,7 @@ def _missed(kernel: Kernel, raw: RawMesh, curve: int, on: Ints, order: int, s: F
 
 def _steepness(mesh: Mesh) -> Floats:
     """(n_triangles,), per metre: the largest |dX/dx| on a lattice of each triangle."""
-    _, slopes = shapes(lattice(mesh.order).points, mesh.order)
+    _, slopes = tabulated(lattice(mesh.order).points, mesh.order)
     (a, b), (c, d) = np.einsum("dit,kin->dktn", mesh.nodes, slopes, optimize=True)
     squares, determinant = a**2 + b**2 + c**2 + d**2, np.abs(a * d - b * c)
     least = squares - np.sqrt(np.maximum(squares**2 - 4 * determinant**2, 0.0))

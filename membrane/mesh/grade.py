@@ -15,10 +15,12 @@ from membrane.records.arrays import Floats
 from membrane.records.raw_mesh import RawMesh
 
 STRONG = 0.6
-"""Exponent up to which wide triangles at a corner are halved."""
+"""Exponent below which a corner is strong."""
 
-WIDEST = 1.1
-"""Widest angle of a triangle at a strong corner, radians: a little over 60 degrees."""
+WIDEST, WIDEST_STRONG = 1.4, 1.1
+"""Widest angle of a triangle at a corner and at a strong one, radians: wider ones are halved.
+They follow r^a worst, and a wide fan's outer side is an arc on which the triangle beyond may
+fold."""
 
 
 def graded(
@@ -40,8 +42,8 @@ def graded(
     for corner in corners:
         share = float(shares[corner.vertex])
         power, layers = treatment(corner.terms, share, tolerance, degree, powers)
-        if corner.exponent < STRONG:
-            growing.narrow(corner.vertex)
+        if power > 1 or layers > 0:
+            growing.narrow(corner.vertex, WIDEST_STRONG if corner.exponent < STRONG else WIDEST)
         if power > 1:
             fans.append(Fan(raw.vertices[:, corner.vertex], power))
         growing.grade(corner.vertex, layers)
@@ -75,12 +77,12 @@ class _Growing:
         for (tail, tip), curve, (start, stop) in sides:
             self._add_segment(int(tail), int(tip), int(curve), float(start), float(stop))
 
-    def narrow(self, vertex: int) -> None:
-        """Halve the triangles that are wide at a vertex, which follow r^a worst."""
+    def narrow(self, vertex: int, widest: float) -> None:
+        """Halve the triangles that are wider than that at a vertex."""
         for number in sorted(self.touching[vertex]):
             here, left, right = (self.places[v] for v in self._turned(number, vertex))
             (ux, uy), (vx, vy) = left - here, right - here
-            if atan2(ux * vy - uy * vx, ux * vx + uy * vy) > WIDEST:
+            if atan2(ux * vy - uy * vx, ux * vx + uy * vy) > widest:
                 self._halve(*self._turned(number, vertex)[1:])
 
     def _halve(self, tail: int, tip: int) -> None:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from math import pi
 
 import numpy as np
@@ -23,9 +24,11 @@ def curve_sizes(
     T a = mu w^2 at an edge, and has k^2 = w^2 rho/T + a^2: put exp(i k s - a d) into the
     equation and into the line's jump of slope. An edge is ``phase`` over (k^2 + a^2)^(1/2).
     """
-    waves = _Waves(outline, membrane)
-    if not waves.decays:
+    masses = {curve.tag: _mass(membrane, curve) for curve in outline.curves}
+    masses = {tag: mass for tag, mass in masses.items() if mass > 0.0}
+    if not masses:
         return {}
+    waves = _Waves(outline, membrane, masses)
     omega = highest(outline, membrane, wanted)
     if not wanted.up_to:
         omega = waves.lowered(omega, wanted.count)
@@ -35,13 +38,12 @@ def curve_sizes(
 class _Waves:
     """Wave numbers along the curves of a head that bear mass."""
 
-    def __init__(self, outline: Outline, membrane: Membrane) -> None:
+    def __init__(self, outline: Outline, membrane: Membrane, masses: Mapping[int, float]) -> None:
         names = [region.name for region in outline.regions]
         self.slowest = max(slowness(membrane, name) for name in names)
         tensions = [np.linalg.eigvalsh(membrane.total(Field.TENSION, name)) for name in names]
         softest = float(np.min(tensions))
-        masses = {curve.tag: _mass(membrane, curve) for curve in outline.curves}
-        self.decays = {tag: mass / softest for tag, mass in masses.items() if mass > 0.0}
+        self.decays = {tag: mass / softest for tag, mass in masses.items()}
         self.lengths = {c.tag: c.length for c in outline.curves if c.tag in self.decays}
 
     def number(self, tag: int, omega: float) -> float:

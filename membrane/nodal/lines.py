@@ -22,7 +22,7 @@ from membrane.triangle import EDGES, shapes
 SAME = 1e-9
 """Points of a line nearer than this share of their triangle's size are one point."""
 
-SPECK = 0.03
+SPECK = 0.06
 """Lines shorter than this share of the size of a domain, the root of the head's area over the
 mode's number, are dropped. Round a corner, where the mode is small and least well known, its
 error draws such specks; a mode hardly can, as each of its domains needs room for its

@@ -13,8 +13,8 @@ from skfem.element import DiscreteField
 
 from membrane.pencil.forms import Integrand
 from membrane.pencil.space import RegionBasis
-from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
+from membrane.triangle import tabulated
 
 CHUNK = 6_000
 """Quadrature points that are worked on at once, so that they stay within the cache."""
@@ -59,13 +59,15 @@ def _batches(basis: RegionBasis, even: bool) -> Iterator[tuple[Ints, slice]]:
 
 def _coefficients(form: Integrand, basis: RegionBasis, chosen: Ints, points: slice) -> Coefficients:
     """What a form makes of each pair of unit fields, per reference area, where it is not 0."""
-    area = basis.dx[chosen, points] / basis.W[points]
-    inverse = basis.mapping.invDF(basis.X[:, points], basis.tind[chosen])
+    at, triangles = basis.X[:, points], basis.tind[chosen]
+    area = np.abs(basis.mapping.detDF(at, triangles))
+    inverse = basis.mapping.invDF(at, triangles)
     one, none = np.ones_like(area), np.zeros_like(area)
     fields = [DiscreteField(one, np.zeros_like(inverse[0]))]
     fields += [DiscreteField(none, inverse[k]) for k in range(2)]
-    known = basis.known_at_points.items()
-    extra = FormExtraParams({name: value[..., chosen, points] for name, value in known})
+    # what scikit-fem tells a form too: places and the triangles' sizes
+    places = DiscreteField(basis.mapping.F(at, triangles))
+    extra = FormExtraParams({"x": places, "h": DiscreteField(np.sqrt(area))})
     pairs = combinations_with_replacement(range(3), 2)
     made = {(a, b): form(fields[a], fields[b], extra) for a, b in pairs}
     return {ab: np.broadcast_to(c, area.shape) * area for ab, c in made.items() if np.any(c)}
@@ -83,6 +85,8 @@ class _Table:
         """(n, n_local, n_local) matrices of triangles with coefficients (n, n_points)."""
         if not coefficients:
             return 0.0
+        if next(iter(coefficients.values())).shape[1] == 1:
+            return self._even({ab: c[:, 0] for ab, c in coefficients.items()})
         uneven = np.any([_uneven(c) for c in coefficients.values()], axis=0)
         local = np.empty((len(uneven), *self.shares.shape[1:2] * 2))
         if not uneven.all():

@@ -8,10 +8,9 @@ import numpy as np
 from skfem.mapping.mapping import Mapping
 
 from membrane.evaluate import invert
-from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
-from membrane.triangle import EDGES, nodes
+from membrane.triangle import EDGES, nodes, tabulated
 
 
 class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
@@ -29,16 +28,15 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
     def F(self, X: Floats, tind: Ints | None = None) -> Floats:
         """Points (2, n_triangles, n) of the head, metres."""
         values, _ = self._shapes(X)
-        form = "dit,in->dtn" if X.ndim == 2 else "dit,itn->dtn"
-        return np.asarray(np.einsum(form, self._nodes(tind), values))
+        return _summed(self._nodes(tind), values)
 
     def DF(self, X: Floats, tind: Ints | None = None) -> Floats:
         """Jacobian dx_d/dX_k, (2, 2, n_triangles, n)."""
         # scikit-fem asks for it once a shape function, always with the same arrays
         if self._last is None or self._last[0] is not X or self._last[1] is not tind:
             _, slopes = self._shapes(X)
-            form = "dit,kin->dktn" if X.ndim == 2 else "dit,kitn->dktn"
-            self._last = (X, tind, np.einsum(form, self._nodes(tind), slopes, optimize=True))
+            both = [_summed(self._nodes(tind), along) for along in slopes]
+            self._last = (X, tind, np.stack(both, axis=1))
         return np.asarray(self._last[2])
 
     def detDF(self, X: Floats, tind: Ints | None = None) -> Floats:
@@ -94,3 +92,13 @@ class CurvedMapping(Mapping):  # type: ignore[misc]  # scikit-fem is untyped
             points = X.shape[1:]
             self._shaped = (X, values.reshape(-1, *points), slopes.reshape(2, -1, *points))
         return self._shaped[1:]
+
+
+def _summed(nodes: Floats, shapes: Floats) -> Floats:
+    """(2, n_triangles, n): the sum of nodes (2, n_nodes, n_triangles) times shapes.
+
+    shapes : (n_nodes, n), or (n_nodes, n_triangles, n) where each triangle has its own
+    """
+    if shapes.ndim == 3:
+        return np.asarray(np.einsum("dit,itn->dtn", nodes, shapes))
+    return np.asarray(np.matmul(nodes.transpose(0, 2, 1), shapes))

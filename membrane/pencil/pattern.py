@@ -54,9 +54,8 @@ def pattern(basis: CellBasis, free: Ints) -> Pattern:
     """
     blocks = _blocks(basis, free)
     count = len(blocks.sizes)
-    own, other = blocks.of[:, None], blocks.of[None, :]
-    pairs, number = np.unique((own * count + other).ravel(), return_inverse=True)
-    rows, columns = np.divmod(pairs, count)
+    own, other = np.broadcast_arrays(blocks.of[:, None], blocks.of[None, :])
+    rows, columns, number = pairs_of(own.ravel(), other.ravel())
     offsets, widths = _along_rows(rows, blocks.sizes[columns], count)
     indptr = np.concatenate([[0], np.cumsum(np.repeat(widths, blocks.sizes))])
     indices = _indices(blocks.sizes, rows, columns, widths)
@@ -65,9 +64,13 @@ def pattern(basis: CellBasis, free: Ints) -> Pattern:
     first = np.concatenate([[0], np.cumsum(blocks.sizes)])[blocks.of]
     held = (blocks.sizes == 0)[blocks.of][block].T
     starts = indptr[np.where(held, 0, first[block].T + within)]
-    jumps = offsets[number].reshape(7, 7, -1).transpose(2, 0, 1)
-    slots = starts[:, :, None] + (jumps[:, block[:, None], block] + within)
-    slots[held[:, :, None] | held[:, None, :]] = len(indices)
+    jumps = offsets[number].reshape(49, -1).T
+    slots = np.take(jumps, 7 * block[:, None] + block, axis=1)
+    slots += within
+    slots += starts[:, :, None]
+    touched = np.flatnonzero(held.any(axis=1))
+    left_out = held[touched, :, None] | held[touched, None, :]
+    slots[touched] = np.where(left_out, len(indices), slots[touched])
     return Pattern(indptr.astype(np.int32), indices.astype(np.int32), slots)
 
 
@@ -87,6 +90,26 @@ def _blocks(basis: CellBasis, free: Ints) -> _Blocks:
         local += [numbers.shape[0]] * len(places)
         before += count
     return _Blocks(np.vstack(of), np.concatenate(sizes), np.array(local))
+
+
+def pairs_of(own: Ints, other: Ints) -> tuple[Ints, Ints, Ints]:
+    """Each pair of blocks once, rising, and of the pairs given which of them each is.
+
+    By digits of 16 bits, which numpy sorts several times as fast as whole numbers.
+    """
+    digits = [key.astype(np.uint16) for half in (other, own) for key in _halves(half)]
+    order = np.lexsort(digits)
+    rows, columns = own[order], other[order]
+    first = np.ones(order.size, dtype=bool)
+    first[1:] = (np.diff(rows) != 0) | (np.diff(columns) != 0)
+    number = np.empty_like(order)
+    number[order] = np.cumsum(first) - 1
+    return rows[first], columns[first], number
+
+
+def _halves(key: Ints) -> tuple[Ints, ...]:
+    low, high = key & 0xFFFF, key >> 16
+    return (low, high) if high.any() else (low,)
 
 
 def _along_rows(rows: Ints, widths: Ints, count: int) -> tuple[Ints, Ints]:

@@ -16,11 +16,10 @@ from membrane.pencil.element import element, reference_element
 from membrane.pencil.mapping import CurvedMapping
 from membrane.pencil.pattern import Pattern, pattern
 from membrane.pencil.quadrature import line_rule, triangle_rule
-from membrane.pencil.tabulated import tabulated
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.pencil import Space
-from membrane.triangle import nodes
+from membrane.triangle import nodes, tabulated
 
 MOST_FOR_CURVES = 6
 """Quadrature orders beyond the shapes' own 2p. On triangles with sides of order g the mass would
@@ -45,11 +44,6 @@ class RegionBasis(CellBasis):  # type: ignore[misc]  # scikit-fem is untyped
         bends = mesh.nodes - np.matmul(linear.T, mesh.nodes[:, :3])
         rounding = STRAIGHT * np.abs(mesh.nodes).max()
         return (np.abs(bends).max(axis=(0, 1)) <= rounding)[self.tind]
-
-    @cached_property
-    def known_at_points(self) -> Any:
-        """What scikit-fem tells a form: places and triangles' sizes at the points of the rule."""
-        return self.default_parameters()
 
     def pattern(self, free: Ints) -> Pattern:
         """Where the entries between the dofs ``free`` lie."""

@@ -10,6 +10,7 @@ from membrane.triangle.lattice import Lattice, lattice
 from membrane.triangle.nodes import EDGES, lobatto, nodes
 from membrane.triangle.rule import collapsed_rule
 from membrane.triangle.shapes import shapes
+from membrane.triangle.tabulated import tabulated
 
 __all__ = [
     "EDGES",
@@ -22,4 +23,5 @@ __all__ = [
     "lobatto",
     "nodes",
     "shapes",
+    "tabulated",
 ]

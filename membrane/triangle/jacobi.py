@@ -5,6 +5,7 @@ In place of scipy.special, which takes longer to load than a small head to solve
 
 from __future__ import annotations
 
+from functools import cache
 from math import factorial
 
 import numpy as np
@@ -33,6 +34,7 @@ def jacobi(degree: int, alpha: int, beta: int, x: Floats) -> tuple[Floats, Float
     return values, slopes
 
 
+@cache
 def gauss(count: int, alpha: int, beta: int) -> tuple[Floats, Floats]:
     """Points (count,) and weights of Gauss's rule on [-1, 1] for (1-x)^alpha (1+x)^beta.
 
@@ -51,7 +53,9 @@ def gauss(count: int, alpha: int, beta: int) -> tuple[Floats, Floats]:
         points = points - values[-1] / slopes[-1]
     _, slopes = jacobi(count, alpha, beta, points)
     weights = 1 / ((1 - points**2) * slopes[-1] ** 2)
-    return points, weights * _mass(alpha, beta) / weights.sum()
+    weights = weights * _mass(alpha, beta) / weights.sum()
+    points.flags.writeable = weights.flags.writeable = False
+    return points, weights
 
 
 def _mass(alpha: int, beta: int) -> float:

@@ -43,3 +43,12 @@ def test_sizes_are_shorter_in_one_place_and_nowhere_else():
     assert shorter.at(2.0, 0.0) == pytest.approx(1.4)
     assert shorter.at(-2.0, 0.0) == pytest.approx(2.0)
     assert shorter.at(0.0, 0.0) == 1.0
+
+
+def test_a_cap_overrules_what_is_longer_and_nothing_else():
+    whole = scattered(300)
+    capped = whole.capped(0.05)
+    assert 0 < capped.sizes.size < 300
+    for x, y in np.random.default_rng(5).uniform(-1, 1, (200, 2)):
+        assert capped.at(x, y) == pytest.approx(min(0.05, least(whole, x, y)), rel=1e-12)
+    assert whole.capped(1e-9).at(0.0, 0.0) == 1e-9

@@ -10,7 +10,7 @@ from membrane.mesh import grade
 from membrane.mesh.corner import Corner, Term
 from membrane.mesh.corners import corners
 from membrane.mesh.depth import RATIO
-from membrane.mesh.grade import WIDEST, graded
+from membrane.mesh.grade import WIDEST, WIDEST_STRONG, graded
 from membrane.mesh.resolution import region_sizes
 from tests import zoo
 
@@ -20,6 +20,15 @@ def meshes(keys, tolerance=1e-6):
         raw = kernel.triangulate(outline, region_sizes(outline, membrane, study.modes, 3.0))
         singular = corners(kernel, outline, membrane, raw)
         return raw, singular, graded(kernel, raw, singular, tolerance, 8)
+
+
+def angles_at(raw, vertex):
+    """Angles of the triangles at a vertex, radians."""
+    touching = raw.triangles[:, (raw.triangles == vertex).any(axis=0)]
+    arms = raw.vertices[:, touching] - raw.vertices[:, vertex, None, None]
+    directions = np.angle(arms[0] + 1j * arms[1])
+    ends = directions.T[(touching != vertex).T].reshape(-1, 2)
+    return np.abs((np.diff(ends, axis=1) + np.pi) % (2 * np.pi) - np.pi)
 
 
 @pytest.mark.slow
@@ -45,6 +54,7 @@ def test_area_is_kept(keys):
 @pytest.mark.parametrize("layers", [1, 3])
 def test_nearest_vertices_are_as_close_as_asked(layers, monkeypatch):
     monkeypatch.setattr(grade, "treatment", lambda *asked: (3, layers))
+    monkeypatch.setattr(grade, "WIDEST", np.pi)  # nothing is halved
     before, (corner,), (after, (fan,)) = meshes(zoo.L_SHAPE)
 
     def nearest(raw):
@@ -54,6 +64,14 @@ def test_nearest_vertices_are_as_close_as_asked(layers, monkeypatch):
 
     assert fan.power == 3
     assert abs(nearest(after) / (nearest(before) * RATIO**layers) - 1) < 1e-9
+
+
+def test_no_fan_is_so_wide_that_the_triangle_beyond_it_could_fold():
+    before, (corner,), (after, (fan,)) = meshes(zoo.L_SHAPE)
+    assert fan.power > 1
+    assert angles_at(before, corner.vertex).max() > WIDEST
+    assert angles_at(after, corner.vertex).max() <= WIDEST
+    assert angles_at(after, corner.vertex).sum() == pytest.approx(1.5 * np.pi)
 
 
 def test_every_side_is_shared_by_two_triangles_or_on_an_edge():
@@ -93,14 +111,8 @@ def test_wide_triangles_at_a_strong_corner_are_halved():
     box = {"shape": "rectangle", "width": 2.0, "height": 0.8}
     before, singular, (after, _) = meshes({**zoo.SQUARE, "outline": box, "slits": [slit]})
     (corner,) = (c for c in singular if c.exponent == 0.5)
-    place = before.vertices[:, corner.vertex]
-
-    def widest(raw):
-        touching = raw.triangles[:, (raw.triangles == corner.vertex).any(axis=0)]
-        arms = raw.vertices[:, touching] - place[:, None, None]
-        directions = np.angle(arms[0] + 1j * arms[1])
-        away = touching != corner.vertex
-        ends = directions.T[away.T].reshape(-1, 2)
-        return np.abs((np.diff(ends, axis=1) + np.pi) % (2 * np.pi) - np.pi).max()
-
-    assert widest(after) <= WIDEST < widest(before)
+    assert (
+        angles_at(after, corner.vertex).max()
+        <= WIDEST_STRONG
+        < angles_at(before, corner.vertex).max()
+    )

@@ -5,6 +5,7 @@ import pytest
 from scipy.sparse import coo_array
 
 from membrane.pencil import build_space
+from membrane.pencil.pattern import pairs_of
 from tests import zoo
 
 
@@ -32,3 +33,12 @@ def test_worked_out_once():
     ready = build_space(zoo.straight_square(), 3, ())
     basis, free = ready.on_regions(("head",)), ready.space.free
     assert basis.pattern(free) is basis.pattern(free)
+
+
+@pytest.mark.parametrize("count", [40, 3_000_000])
+def test_pairs_are_those_that_numpy_finds(count):
+    own, other = np.random.default_rng(6).integers(0, count, (2, 4000))
+    rows, columns, number = pairs_of(own, other)
+    known, places = np.unique(own * count + other, return_inverse=True)
+    assert np.array_equal(rows * count + columns, known)
+    assert np.array_equal(number, places)

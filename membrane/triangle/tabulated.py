@@ -1,4 +1,4 @@
-"""The shapes at the points of a rule, worked out once for all triangles and matrices."""
+"""The shapes at points that come up again, worked out once for all meshes and matrices."""
 
 from __future__ import annotations
 
@@ -7,7 +7,7 @@ from functools import lru_cache
 import numpy as np
 
 from membrane.records.arrays import Floats
-from membrane.triangle import shapes
+from membrane.triangle.shapes import shapes
 
 
 def tabulated(points: Floats, degree: int) -> tuple[Floats, Floats]:
@@ -15,6 +15,9 @@ def tabulated(points: Floats, degree: int) -> tuple[Floats, Floats]:
     return _tabulated(points.tobytes(), degree)
 
 
-@lru_cache(maxsize=16)
+@lru_cache(maxsize=32)
 def _tabulated(points: bytes, degree: int) -> tuple[Floats, Floats]:
-    return shapes(np.frombuffer(points).reshape(2, -1), degree)
+    tables = shapes(np.frombuffer(points).reshape(2, -1), degree)
+    for table in tables:
+        table.flags.writeable = False
+    return tables
