@@ -19,12 +19,15 @@ if TYPE_CHECKING:
 ONE, MULTIPLE = (8.0, 6.0), (4.0, 3.2)
 """Inches of a panel that stands alone, and of one among several."""
 
-COLOURS = "tab20"
+COLOURS = "tab10"
 DASHES = ("-", "--", ":")
 """Branches beyond the colours take the next dash."""
 
 NEAR = 0.012
 """Of the highest frequency: ends no further apart are named together."""
+
+MARGIN = 0.16
+"""Of a panel's width, on either side, for the branches' numbers."""
 
 DPI = 100
 
@@ -51,6 +54,8 @@ def _laid_out(diagram: Diagram) -> tuple[Figure, list[Axes]]:
     grid = figure.subplots(rows, columns, sharex=True, sharey=True, squeeze=False).ravel()
     for axes in grid[count:]:
         axes.axis("off")
+    for axes in grid[max(count - columns, 0) : count]:  # the lowest of each column
+        axes.tick_params(labelbottom=True)
     figure.supxlabel(diagram.label)
     figure.supylabel("frequency, Hz")
     return figure, list(grid[:count])
@@ -71,10 +76,19 @@ def _draw(axes: Any, panel: Panel, diagram: Diagram) -> None:
     for found, off, side in ((begins, -6, "right"), (ends, 6, "left")):
         for end in together(found, apart):
             _name(axes, end, off, side)
-    axes.margins(x=0.1)
+    axes.margins(x=MARGIN)
     axes.set_title(panel.title, fontsize="medium")
     if diagram.logarithmic:
-        axes.set_xscale("log")
+        _logarithmic(axes)
+
+
+def _logarithmic(axes: Any) -> None:
+    from matplotlib.ticker import LogLocator, NullFormatter, StrMethodFormatter
+
+    axes.set_xscale("log")
+    axes.xaxis.set_major_locator(LogLocator(subs=(1.0, 2.0, 5.0)))
+    axes.xaxis.set_major_formatter(StrMethodFormatter("{x:g}"))
+    axes.xaxis.set_minor_formatter(NullFormatter())
 
 
 def curve(panel: Panel, places: Floats, branch: int) -> tuple[Floats, Floats]:
@@ -110,7 +124,7 @@ def together(ends: list[End], apart: float) -> list[End]:
 def _name(axes: Any, end: End, off: float, side: str) -> None:
     """The branches' numbers beside an end."""
     axes.annotate(
-        ", ".join(map(str, end.branches)),
+        numbers(end.branches),
         (end.place, end.frequency),
         (off, 0),
         textcoords="offset points",
@@ -121,11 +135,23 @@ def _name(axes: Any, end: End, off: float, side: str) -> None:
     )
 
 
+def numbers(branches: tuple[int, ...]) -> str:
+    """Numbers in rising order, those that follow each other as from-to: "2, 3", "7–10"."""
+    runs: list[list[int]] = []
+    for branch in sorted(branches):
+        if runs and branch == runs[-1][-1] + 1:
+            runs[-1].append(branch)
+        else:
+            runs.append([branch])
+    words = [[f"{run[0]}–{run[-1]}"] if len(run) > 2 else map(str, run) for run in runs]
+    return ", ".join(word for run in words for word in run)
+
+
 def _colour(branch: int) -> Any:
     from matplotlib import colormaps
 
-    return colormaps[COLOURS]((branch - 1) % 20)
+    return colormaps[COLOURS]((branch - 1) % 10)
 
 
 def _dash(branch: int) -> str:
-    return DASHES[(branch - 1) // 20 % len(DASHES)]
+    return DASHES[(branch - 1) // 10 % len(DASHES)]

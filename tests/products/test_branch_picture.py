@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from membrane.products.branch_picture import End, curve, together, write_branches
+from membrane.products.branch_picture import End, curve, numbers, together, write_branches
 from membrane.records.diagram import Diagram, Panel
 
 PLACES = np.array([1.0, 2.0, 3.0, 4.0])
@@ -32,6 +32,11 @@ def test_ends_that_would_hide_each_other_are_named_together():
     ends = [End(1.0, 20.0, (3,)), End(1.0, 10.0, (1,)), End(1.0, 10.1, (2,)), End(2.0, 20.1, (4,))]
     named = [end.branches for end in together(ends, 0.2)]
     assert named == [(1, 2), (3,), (4,)]
+
+
+def test_numbers_that_follow_each_other_are_named_by_their_ends():
+    assert numbers((3, 2)) == "2, 3"
+    assert numbers((10, 7, 8, 9, 12)) == "7–10, 12"
 
 
 @pytest.mark.parametrize(
