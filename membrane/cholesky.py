@@ -14,8 +14,10 @@ from typing import Any
 
 import numpy as np
 
+from membrane.condensation import Condensation, condensation
+from membrane.condensed import Condensed, condensed
 from membrane.errors import SolveError
-from membrane.records.arrays import Bools, Floats
+from membrane.records.arrays import Floats
 
 Solve = Callable[[Floats], Floats]
 
@@ -46,7 +48,10 @@ def negative_count(A: Any) -> int:
     By Sylvester's law of inertia they are as many as the negative pivots of L D L^T.
     Raises SolveError where a pivot is zero.
     """
-    pivots = _cholmod_pivots(A) if _cholmod() else _superlu_pivots(A)
+    return _cholmod_negative(A) if _cholmod() else _negative_of(_superlu_pivots(A))
+
+
+def _negative_of(pivots: Floats) -> int:
     if not np.all(np.isfinite(pivots)) or np.any(pivots == 0.0):
         raise SolveError(_ZERO_PIVOT)
     return int(np.count_nonzero(pivots < 0.0))
@@ -72,14 +77,14 @@ class _Pattern:
     """Where a matrix has entries, ready for CHOLMOD.
 
     indptr, indices : the columns of the whole matrix
-    kept : which of its entries are in the lower triangle
-    lower : cvxopt's matrix of ones there
-    order : the elimination order
+    plan : what is eliminated before CHOLMOD
+    lower : cvxopt's matrix of ones at the lower triangle of what is left
+    order : the elimination order there
     """
 
     indptr: Any
     indices: Any
-    kept: Bools
+    plan: Condensation
     lower: Any
     order: Any
 
@@ -87,12 +92,12 @@ class _Pattern:
         """Whether a matrix has its entries just here."""
         return np.array_equal(A.indptr, self.indptr) and np.array_equal(A.indices, self.indices)
 
-    def filled(self, A: Any) -> Any:
-        """The lower triangle of a matrix, for CHOLMOD."""
+    def filled(self, low: Floats) -> Any:
+        """The lower triangle with these entries, for CHOLMOD."""
         from cvxopt import matrix
 
         lower = +self.lower
-        lower.V = matrix(A.data[self.kept])
+        lower.V = matrix(low)
         return lower
 
 
@@ -110,11 +115,10 @@ def _pattern(A: Any) -> _Pattern:
 def _new_pattern(A: Any) -> _Pattern:
     from cvxopt import amd, matrix, spmatrix
 
-    columns = np.repeat(np.arange(A.shape[0]), np.diff(A.indptr))
-    kept = A.indices >= columns
-    rows = A.indices[kept].astype(np.int64)
-    lower = spmatrix(1.0, matrix(rows), matrix(columns[kept]), A.shape)
-    return _Pattern(A.indptr, A.indices, kept, lower, amd.order(lower))
+    plan = condensation(A)
+    size = len(plan.kept)
+    lower = spmatrix(1.0, matrix(plan.rows), matrix(plan.columns), (size, size))
+    return _Pattern(A.indptr, A.indices, plan, lower, amd.order(lower))
 
 
 @contextmanager
@@ -130,40 +134,44 @@ def _options(**chosen: Any) -> Iterator[None]:
         options.update(before)
 
 
-def _cholmod_factor(A: Any, kind: int) -> Any:
+def _cholmod_factor(A: Any, kind: int) -> tuple[Condensed, Any]:
+    """A without the dofs that are eliminated in bulk, and CHOLMOD's factor of what is left."""
     A = A.tocsc()
     A.sum_duplicates()  # and sorts each column
     cholmod, pattern = _cholmod(), _pattern(A)
-    lower = pattern.filled(A)
     try:
+        reduced = condensed(pattern.plan, A.data)
+        if kind == SUPERNODAL and reduced.negative:
+            raise SolveError(_NOT_FACTORED[kind])
+        lower = pattern.filled(reduced.low)
         with _options(supernodal=kind, nmethods=1):
             factor = cholmod.symbolic(lower, p=pattern.order)
             cholmod.numeric(lower, factor)
-    except ArithmeticError as failure:
+    except (ArithmeticError, np.linalg.LinAlgError) as failure:
         raise SolveError(_NOT_FACTORED[kind]) from failure
-    return factor
+    return reduced, factor
 
 
 def _cholmod_solve(A: Any) -> Solve:
     from cvxopt import matrix
 
-    cholmod, factor = _cholmod(), _cholmod_factor(A, SUPERNODAL)
+    cholmod, (reduced, factor) = _cholmod(), _cholmod_factor(A, SUPERNODAL)
 
-    def solve(b: Floats) -> Floats:
-        x = matrix(np.asfortranarray(b, dtype=float))
+    def solve_kept(b: Floats) -> Floats:
+        x = matrix(b)
         cholmod.solve(factor, x)
-        return np.array(x).reshape(b.shape)
+        return np.array(x).ravel()
 
-    return solve
+    return reduced.solver(solve_kept)
 
 
-def _cholmod_pivots(A: Any) -> Floats:
+def _cholmod_negative(A: Any) -> int:
     from cvxopt import matrix
 
-    factor = _cholmod_factor(A, SIMPLICIAL)
-    ones = matrix(1.0, (A.shape[0], 1))
+    reduced, factor = _cholmod_factor(A, SIMPLICIAL)
+    ones = matrix(1.0, (len(reduced.plan.kept), 1))
     _cholmod().solve(factor, ones, sys=DIAGONAL)
-    return np.array(ones).ravel()
+    return reduced.negative + _negative_of(np.array(ones).ravel())
 
 
 def _superlu(A: Any) -> Any:

@@ -244,6 +244,15 @@ _CENTS = Quantity("an interval", "cent", "0.01 cent")
 _DENSITY = Quantity("a density", "kg/m^3", "1390 kg/m^3", Sign.NOT_NEGATIVE)
 _PRESSURE = Quantity("a pressure", "Pa", "101 kPa")
 
+SI_UNITS = tuple(
+    quantity.unit
+    for quantity in (
+        *(_LENGTH, _ANGLE, _AREAL_DENSITY, _LINE_TENSION, _BEDDING, _LINE_STIFFNESS),
+        *(_LINE_DENSITY, _FREQUENCY, _CENTS, _DENSITY, _PRESSURE),
+    )
+)
+"""The units of all quantities of a study."""
+
 Length: TypeAlias = Annotated[float, _LENGTH]
 UnitOfLength: TypeAlias = Annotated[float, _Unit("a unit of length", "m", "mm", Sign.POSITIVE)]
 PositiveLength: TypeAlias = Annotated[float, _positive(_LENGTH)]

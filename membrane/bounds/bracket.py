@@ -6,14 +6,14 @@ import numpy as np
 
 from membrane.bounds.fluxes import best_fluxes
 from membrane.bounds.gap import proven_limit, widest_gap
-from membrane.bounds.geometry import stretches
+from membrane.bounds.geometry import above, below
 from membrane.bounds.goerisch import flux_form, lower_bounds
 from membrane.bounds.head import Head, head_of
 from membrane.bounds.local_fluxes import Sources
 from membrane.bounds.pieces import pieces
 from membrane.bounds.provable import check_provable
 from membrane.bounds.rims import rims
-from membrane.bounds.ritz import forms
+from membrane.bounds.ritz import Forms, forms
 from membrane.errors import BracketError, SolveError
 from membrane.pitch import CENTS_PER_EIGENVALUE
 from membrane.records.arrays import Floats
@@ -57,25 +57,24 @@ class _Bounds:
     """The bounds on the ``kept`` lowest modes of a head."""
 
     def __init__(self, head: Head, modes: Modes, kept: int) -> None:
-        self.head, self.space = head, modes.space
+        self.head, self.space = below(head), modes.space
         self.vectors = modes.vectors[:, :kept]
         degree = 2 * (self.space.degree + max(FLUX_DEGREES))
-        self.pieces, self.rims = pieces(head, degree), list(rims(head, degree))
-        doubts = [piece.doubt for piece in self.pieces] + [rim.doubt for rim in self.rims]
-        if not np.isfinite(doubts).all():
+        self.pieces, self.rims = pieces(head, degree), list(rims(self.head, degree))
+        doubts = [*(piece.doubt for piece in self.pieces), *(rim.doubt for rim in self.rims)]
+        if not np.isfinite(np.concatenate(doubts)).all():
             raise BracketError("the mesh's triangles are bent too much")
-        self.forms = forms(head, self.space, self.vectors, self.pieces, self.rims)
-        self.high = self.forms.values
+        self.forms = self._forms(self.head)
+        self.high = self._forms(above(head)).values
         following = float(modes.eigenvalues[kept])
-        self.limit = proven_limit(head, float(self.high[-1]), following, kept)
+        self.limit = proven_limit(self.head, float(self.high[-1]), following, kept)
 
     def bracket(self, count: int, accuracy: float, rigid: bool) -> Bracket:
-        shrink, grow = stretches(self.head)
         margin = ROUNDING / CENTS_PER_EIGENVALUE
-        high = self.high[:count] * grow * (1 + margin)
+        high = self.high[:count] * (1 + margin)
         best = Bracket(np.zeros(count), high, GUARANTEED)
         for more in FLUX_DEGREES[self.space.degree < HIGH :]:
-            low = self._low(self.space.degree + more)[:count] * shrink * (1 - margin)
+            low = self._low(self.space.degree + more)[:count] * (1 - margin)
             if rigid:
                 low[0] = high[0] = 0.0
             before, best = best.widest, Bracket(np.maximum(best.low, low), high, GUARANTEED)
@@ -84,6 +83,10 @@ class _Bounds:
         if not np.isfinite(best.widest):
             raise BracketError("the lower bounds do not close")
         return best
+
+    def _forms(self, head: Head) -> Forms:
+        degree = 2 * (self.space.degree + max(FLUX_DEGREES))
+        return forms(head, self.space, self.vectors, self.pieces, rims(head, degree))
 
     def _low(self, degree: int) -> Floats:
         gamma = SHIFT * self.limit

@@ -76,8 +76,9 @@ def flux_form(
             s = np.stack([_at(value, local) for value in values])
             spread = _at(divergences, local) / piece.jacobian[..., None]
             over_k = piece.areas / stiff[piece.triangles, None]
-            c += (1 + piece.doubt) * quadratic(metric(head, piece) * piece.weights, s)
-            c += piece.doubt * weighted(over_k, spread, spread) if piece.doubt else 0.0
+            doubt = piece.doubt[:, None]
+            c += quadratic((1 + doubt) * metric(head, piece) * piece.weights, s)
+            c += weighted(doubt * over_k, spread, spread) if doubt.any() else 0.0
             rest = head.density[piece.triangles, None, None] * u + spread
             c += weighted(over_k, rest, rest)
     for rim in rims:
@@ -95,8 +96,9 @@ def _along(rim: Rim, u: Floats, across: Floats, gamma: float) -> Floats:
     per_metre = rim.weights / (rim.stiff(gamma) * rim.speed)
     borne = rim.mass[:, None, None] * u * rim.speed[..., None]
     found = weighted(per_metre, borne - across, borne - across)
-    each = weighted(per_metre, borne, borne) + weighted(per_metre, across, across)
-    return np.asarray(found + rim.doubt * each)
+    doubted = rim.doubt[:, None] * per_metre
+    each = weighted(doubted, borne, borne) + weighted(doubted, across, across)
+    return np.asarray(found + each)
 
 
 def _at(shape: Floats, local: Floats) -> Floats:

@@ -13,8 +13,9 @@ from membrane.records.membrane import Field, Membrane
 from membrane.records.mesh import Mesh
 from membrane.triangle import EDGES, nodes, shapes
 
-STRAIGHT = 1e-13
-"""Departure of a straight side's nodes from the chord, relative to the side: rounding."""
+STRAIGHT, ROUNDING = 1e-13, 1e-15
+"""Departure of a straight side's nodes from the chord, relative to the side and to the vertices'
+coordinates: rounding, which would make the smallest triangles seem bent."""
 
 
 @dataclass(frozen=True)
@@ -58,19 +59,31 @@ class Head:
     @cached_property
     def bent(self) -> Bools:
         """(n_facets,): which sides are not straight."""
+        away, size = self._sides
+        rounding = ROUNDING * np.abs(self.mesh.vertices).max()
         bent = np.zeros(self.facets.size, dtype=bool)
+        bent[self.facets.of_triangle[away > np.maximum(STRAIGHT * size, rounding)]] = True
+        return bent
+
+    @cached_property
+    def flattened(self) -> Floats:
+        """(n_triangles,): how far sides that are taken for straight are not, over their lengths."""
+        away, size = self._sides
+        return np.asarray((away / size * ~self.bent[self.facets.of_triangle]).max(axis=0))
+
+    @cached_property
+    def _sides(self) -> tuple[Floats, Floats]:
+        """(3, n_triangles) each: departures of the sides' nodes from their chords, and lengths."""
         places = self.mesh.nodes
         x, y = nodes(self.mesh.order)
-        along = np.array([1 - x - y, x, y])
+        along = np.array([1 - x - y, x, y])[..., None]
+        away, size = np.empty((2, 3, self.mesh.size))
         for side, (low, high) in enumerate(EDGES):
-            on = np.abs(along[low] + along[high] - 1) < 1e-12
-            chord = (
-                places[:, [low]] * along[low][:, None] + places[:, [high]] * along[high][:, None]
-            )
-            away = np.abs((places - chord)[:, on]).max(axis=(0, 1))
-            size = np.abs(places[:, high] - places[:, low]).max(axis=0)
-            bent[self.facets.of_triangle[side][away > STRAIGHT * size]] = True
-        return bent
+            on = np.abs(along[low, :, 0] + along[high, :, 0] - 1) < 1e-12
+            chord = places[:, [low]] * along[low] + places[:, [high]] * along[high]
+            away[side] = np.abs((places - chord)[:, on]).max(axis=(0, 1))
+            size[side] = np.abs(places[:, high] - places[:, low]).max(axis=0)
+        return away, size
 
     @cached_property
     def curved(self) -> Bools:

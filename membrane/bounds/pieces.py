@@ -40,7 +40,7 @@ class Piece:
     weights : (m,), of the reference triangle
     slope : (2, 2, n, m or 1), dx_d / dX_k
     jacobian : (n, m or 1), the determinant, negative where the vertices run clockwise
-    doubt : how far a form that is rational there may be off, relative; 0 on straight triangles
+    doubt : (n,), how far a form that is rational there may be off, relative; 0 on straight ones
     """
 
     triangles: Ints
@@ -48,7 +48,7 @@ class Piece:
     weights: Floats
     slope: Floats
     jacobian: Floats
-    doubt: float
+    doubt: Floats
 
     @property
     def areas(self) -> Floats:
@@ -72,7 +72,7 @@ class Piece:
                 self.weights,
                 self.slope[:, :, some],
                 self.jacobian[some],
-                self.doubt,
+                self.doubt[some],
             )
 
 
@@ -97,20 +97,24 @@ def _straight(mesh: Mesh, triangles: Ints, order: int) -> Piece:
     points, weights = collapsed_rule(order)
     a, b, c = (mesh.nodes[:, vertex, triangles] for vertex in range(3))
     slope = np.stack([b - a, c - a], axis=1)[..., None]
-    return Piece(triangles, points, weights, slope, _determinant(slope), 0.0)
+    return Piece(triangles, points, weights, slope, _determinant(slope), np.zeros(triangles.size))
 
 
 def _curved(mesh: Mesh, triangles: Ints, order: int, extra: int) -> Piece:
     points, weights = collapsed_rule(order)
     slope = _slope(mesh, triangles, points)
     jacobian = _determinant(slope)
-    off = departure(mesh, triangles, extra) if extra else np.inf
-    doubt = (1 + off) / (1 - off) - 1 if off < 1.0 else np.inf
-    return Piece(triangles, points, weights, slope, jacobian, doubt)
+    off = departure(mesh, triangles, extra) if extra else np.full(triangles.size, np.inf)
+    return Piece(triangles, points, weights, slope, jacobian, doubt(off))
 
 
-def departure(mesh: Mesh, triangles: Ints, degree: int) -> float:
-    """The largest |1 - r J| over some triangles, r the best polynomial of a degree on each.
+def doubt(off: Floats) -> Floats:
+    """(1 + d) / (1 - d) - 1; infinite where d is 1 or more."""
+    return np.asarray(np.where(off < 1.0, 2 * off / np.maximum(1 - off, 1e-300), np.inf))
+
+
+def departure(mesh: Mesh, triangles: Ints, degree: int) -> Floats:
+    """(n,): the largest |1 - r J| on each of some triangles, r the best polynomial of a degree.
 
     1 - r J is a polynomial of degree D in each coordinate of the square that the triangle is
     collapsed from, and between 2 D Chebyshev points no polynomial rises above sqrt(2) times
@@ -122,10 +126,10 @@ def departure(mesh: Mesh, triangles: Ints, degree: int) -> float:
     inverse = 1 / _determinant(_slope(mesh, triangles, points))
     fitted = (inverse * weights) @ basis.T
     dense, polynomials = _dense(degree, 2 * (mesh.order - 1))
-    off = 0.0
+    off = np.zeros(triangles.size)
     for some in np.array_split(np.arange(triangles.size), 1 + triangles.size // 20):
         jacobian = _determinant(_slope(mesh, triangles[some], dense))
-        off = max(off, float(np.abs(1 - (fitted[some] @ polynomials) * jacobian).max()))
+        off[some] = np.abs(1 - (fitted[some] @ polynomials) * jacobian).max(axis=1)
     return 2 * off
 
 

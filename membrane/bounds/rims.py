@@ -9,6 +9,7 @@ import numpy as np
 from numpy.polynomial.legendre import legvander
 
 from membrane.bounds.head import Head
+from membrane.bounds.pieces import doubt
 from membrane.records.arrays import Floats, Ints
 from membrane.triangle import EDGES, gauss, nodes, shapes
 
@@ -29,7 +30,7 @@ class Rim:
     points : (2, m), on the reference triangle
     weights : (m,), of the side's parameter from 0 to 1
     speed : (n, m), metres per unit of the parameter
-    doubt : how far integrals may be off, relative
+    doubt : (n,), how far integrals may be off, relative
     """
 
     edge: int
@@ -41,7 +42,7 @@ class Rim:
     points: Floats
     weights: Floats
     speed: Floats
-    doubt: float
+    doubt: Floats
 
     def legendre(self, degree: int) -> Floats:
         """(degree, m): the Legendre polynomials below a degree, along the sides."""
@@ -65,10 +66,9 @@ def rims(head: Head, degree: int) -> Iterator[Rim]:
         places = (1 + x) / 2
         points = _along(edge, places)
         speed = _speed(head, triangles, edge, points)
-        off = _departure(head, triangles, edge)
-        doubt = (1 + off) / (1 - off) - 1 if off < 1.0 else np.inf
+        off = doubt(_departure(head, triangles, edge))
         loads = head.spring[facets], head.mass[facets]
-        yield Rim(edge, triangles, facets, *loads, places, points, weights / 2, speed, doubt)
+        yield Rim(edge, triangles, facets, *loads, places, points, weights / 2, speed, off)
 
 
 def _along(edge: int, s: Floats) -> Floats:
@@ -84,8 +84,8 @@ def _speed(head: Head, triangles: Ints, edge: int, points: Floats) -> Floats:
     return np.asarray(np.hypot(*np.einsum("dit,in->dtn", head.mesh.nodes[:, :, triangles], along)))
 
 
-def _departure(head: Head, triangles: Ints, edge: int) -> float:
-    """How far polynomials of degree ``EXTRA`` miss a side's speed and its inverse, relative.
+def _departure(head: Head, triangles: Ints, edge: int) -> Floats:
+    """(n,): how far polynomials of degree ``EXTRA`` miss sides' speeds and inverses, relative.
 
     If r follows the speed v to within d, so does a rule that is exact to the degree of an
     integrand f >= 0 plus that of r with f v, as over triangles; and f / v likewise. The two are
@@ -97,8 +97,8 @@ def _departure(head: Head, triangles: Ints, edge: int) -> float:
     basis, there = (np.polynomial.chebyshev.chebvander(at, EXTRA) for at in (x, dense))
     speed = _speed(head, triangles, edge, _along(edge, (1 + x) / 2))
     exact = _speed(head, triangles, edge, _along(edge, (1 + dense) / 2))
-    off = 0.0
+    off = np.zeros(triangles.size)
     for power in (1, -1):
         fitted = np.linalg.solve(basis, (speed**power).T)
-        off = max(off, float(np.abs(1 - there @ fitted / exact.T**power).max()))
+        off = np.maximum(off, np.abs(1 - there @ fitted / exact.T**power).max(axis=0))
     return 2 * off

@@ -49,14 +49,15 @@ def forms(
         for piece in whole.parts(vectors.shape[1]):
             local = vectors[space.element_dofs[:, piece.triangles]]
             u, slopes = on_piece(piece, space.degree, local)
-            a += (1 + piece.doubt) * _stiffness(head, piece, slopes)
+            a += _stiffness(head, piece, slopes)
             a += weighted(head.bedding[piece.triangles, None] * piece.areas, u, u)
             b += weighted(head.density[piece.triangles, None] * piece.areas, u, u)
     for rim in rims:
         u = on_rim(rim, space.degree, vectors[space.element_dofs[:, rim.triangles]])
         length = rim.speed * rim.weights
-        a += (1 + rim.doubt) * weighted(rim.spring[:, None] * length, u, u)
-        b += weighted(rim.mass[:, None] * length, u, u) / (1 + rim.doubt)
+        doubt = rim.doubt[:, None]
+        a += weighted((1 + doubt) * rim.spring[:, None] * length, u, u)
+        b += weighted(rim.mass[:, None] * length / (1 + doubt), u, u)
     return Forms((a + a.T) / 2, (b + b.T) / 2)
 
 
@@ -83,11 +84,11 @@ def weighted(weights: Floats, f: Floats, g: Floats) -> Floats:
 
 
 def _stiffness(head: Head, piece: Piece, slopes: Floats) -> Floats:
-    """Integral of T grad u . grad v; grad u = slope^-T x reference slopes."""
+    """Integral of T grad u . grad v, or above; grad u = slope^-T x reference slopes."""
     inverse = piece.inverse
     T = head.tension[piece.triangles]
     metric = np.einsum("kdtm,tde,letm->kltm", inverse, T, inverse) * piece.areas
-    return quadratic(metric, slopes)
+    return quadratic((1 + piece.doubt[:, None]) * metric, slopes)
 
 
 def quadratic(metric: Floats, fields: Floats) -> Floats:

@@ -1,9 +1,9 @@
-"""Branch numbers for every mode of a path, or of a grid of two axes."""
+"""Branch numbers for every mode of a path, or of a grid."""
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator
-from dataclasses import dataclass
+from collections.abc import Callable, Iterator, Sequence
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from itertools import count as counter
 
@@ -59,33 +59,57 @@ def follow(modes_at: ModesAt, places: Floats, count: int, same: float = SAME) ->
 
 
 def follow_grid(
-    modes_at: Callable[[float, float], Shapes],
-    first: Floats,
-    second: Floats,
-    count: int,
-    same: float = SAME,
-) -> tuple[Followed, ...]:
-    """Modes followed along the first axis, from starts followed along the second.
+    modes_at: Callable[..., Shapes], axes: Sequence[Floats], count: int, same: float = SAME
+) -> dict[tuple[int, ...], Followed]:
+    """Modes followed along the first axis, from starts followed along the second, and so on.
 
-    modes_at : gives ``count`` + 4 modes at places on both axes
-    returns : for each place on the second axis, the branches along the first
+    modes_at : gives ``count`` + 4 modes at a place on each axis
+    axes : places (n,) on each, rising or falling
+    returns : for every choice of places on the other axes, counted from 0, the branches along
+        the first; what is lost on the way to its start is lost there
     """
-    first, second = np.asarray(first, dtype=float), np.asarray(second, dtype=float)
-    along = lru_cache(REMEMBERED)(lambda place: modes_at(float(first[0]), place))
-    modes = along(float(second[0]))
-    numbers = np.arange(1, len(modes.eigenvalues) + 1)
-    fresh = counter(len(numbers) + 1).__next__
-    corner = Station(float(second[0]), modes, numbers)
-    rows = []
-    for start in _stations(along, corner, second, count, same, fresh):
-        across = lru_cache(REMEMBERED)(_fixed(modes_at, start.place))
-        beginning = Station(float(first[0]), start.shapes, start.branches)
-        rows.append(_gathered(_stations(across, beginning, first, count, same, fresh), count))
-    return tuple(rows)
+    grid = _Grid(modes_at, [np.asarray(axis, dtype=float) for axis in axes], count, same)
+    return {at: _gathered(grid.along(0, at, start), count) for at, start in grid.starts(1)}
 
 
-def _fixed(modes_at: Callable[[float, float], Shapes], place: float) -> ModesAt:
-    return lambda other: modes_at(other, place)
+class _Grid:
+    """Ways through a grid that all come from one corner."""
+
+    def __init__(
+        self, modes_at: Callable[..., Shapes], axes: Sequence[Floats], count: int, same: float
+    ) -> None:
+        self._modes_at = modes_at
+        self._axes = axes
+        self._count = count
+        self._same = same
+        modes = modes_at(*self._begins(len(axes)))
+        numbers = np.arange(1, len(modes.eigenvalues) + 1)
+        self._corner = Station(0.0, modes, numbers)
+        self._fresh = counter(len(numbers) + 1).__next__
+
+    def starts(self, first: int) -> Iterator[tuple[tuple[int, ...], Station]]:
+        """Where the axes before ``first`` begin, at every choice of places on the others."""
+        if first == len(self._axes):
+            yield (), self._corner
+            return
+        for others, start in self.starts(first + 1):
+            for place, station in enumerate(self.along(first, others, start)):
+                yield (place, *others), station
+
+    def along(self, axis: int, others: tuple[int, ...], start: Station) -> Iterator[Station]:
+        """Stations along an axis, those after it at some places, those before where they begin."""
+        before, places = self._begins(axis), self._axes[axis]
+        after = [float(a[i]) for a, i in zip(self._axes[axis + 1 :], others, strict=True)]
+
+        def modes_at(place: float) -> Shapes:
+            return self._modes_at(*before, place, *after)
+
+        beginning = replace(start, place=float(places[0]))
+        remembered = lru_cache(REMEMBERED)(modes_at)
+        return _stations(remembered, beginning, places, self._count, self._same, self._fresh)
+
+    def _begins(self, axes: int) -> list[float]:
+        return [float(places[0]) for places in self._axes[:axes]]
 
 
 def _stations(

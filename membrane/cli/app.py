@@ -92,13 +92,18 @@ def sweep(
     ] = False,
     retry: Annotated[bool, typer.Option("--retry", help="Try failed points again.")] = False,
     parquet: Annotated[bool, typer.Option("--parquet", help="Write points.parquet too.")] = False,
+    branches: Annotated[
+        bool, typer.Option("--branches/--no-branches", help="Follow modes from point to point.")
+    ] = True,
     quiet: Annotated[bool, typer.Option("--quiet", help="Print nothing but errors.")] = False,
 ) -> None:
     """Solve every point of a study's sweep; go on where it was stopped."""
     from membrane.cli.sweep import Wanted, run_sweep
 
     with failures_told(ctx, study):
-        run_sweep(study, Wanted(out, workers, scheduler, part, merge, retry, parquet, quiet))
+        run_sweep(
+            study, Wanted(out, workers, scheduler, part, merge, retry, parquet, branches, quiet)
+        )
 
 
 @app.command()

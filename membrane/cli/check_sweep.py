@@ -13,7 +13,7 @@ def sweep_lines(study: Study) -> list[tuple[str, str]]:
     """
     if study.sweep is None:
         return []
-    from membrane.sweep.solving import timed_sample
+    from membrane.sweep.solving import LEAST, pays, timed_sample
     from membrane.sweep.task import task_of
 
     points = task_of(study).points
@@ -24,6 +24,8 @@ def sweep_lines(study: Study) -> list[tuple[str, str]]:
         f"{sample.mesh:.2g} s a mesh, {sample.solve:.2g} s a solve, both timed on the study's own "
         "values"
     )
+    if pays(points, study.modes):
+        time += f"; far less where a reduced model answers, as from {LEAST} points on one mesh on"
     axes = [(f"axis {axis.key}", _axis(axis, study.sweep.pick)) for axis in study.sweep.axes]
     sizes = f"{len(points)} points, {points.meshes} different meshes"
     return [("sweep", f"{_pick(study.sweep)}: {sizes}"), *axes, ("time", time)]

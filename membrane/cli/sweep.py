@@ -11,6 +11,7 @@ import typer
 
 from membrane.cli.failures import INTERRUPTED
 from membrane.cli.progress import shown_count
+from membrane.cli.sweep_branches import draw_branches, follow_branches
 from membrane.errors import StudyError
 from membrane.study import read_study
 from membrane.wording import listed
@@ -32,6 +33,7 @@ class Wanted:
     merge: bool
     retry: bool
     parquet: bool
+    branches: bool
     quiet: bool
 
 
@@ -43,13 +45,25 @@ def run_sweep(file: Path, wanted: Wanted) -> None:
 
     task = task_of(study)
     say = _nothing if wanted.quiet else typer.echo
-    if wanted.merge:
-        _check_alone(wanted)
-        merge(task, wanted.out, say)
-    else:
-        _work(task, wanted, say)
+    notes: list[str] = []
+    try:
+        if wanted.merge:
+            _check_alone(wanted)
+            merge(task, wanted.out, say)
+        else:
+            _work(task, wanted, say)
+        if wanted.part is None and wanted.branches:
+            follow_branches(task, wanted.out, wanted.quiet, notes.append)
+    except KeyboardInterrupt:
+        typer.echo("Stopped; the points so far are kept. Run it again to go on.", err=True)
+        raise typer.Exit(INTERRUPTED) from None
     if wanted.part is None:
         _write(task, wanted, say)
+        if wanted.branches:
+            draw_branches(study, task, wanted.out)
+        for note in notes:
+            say(note)
+        say(f"The tables are in {wanted.out}.")
 
 
 def _work(task: Task, wanted: Wanted, say: Callable[[str], None]) -> None:
@@ -58,12 +72,8 @@ def _work(task: Task, wanted: Wanted, say: Callable[[str], None]) -> None:
 
     part = WHOLE if wanted.part is None else Part.read(wanted.part)
     engine = _engine(wanted, task.entry.size)
-    try:
-        with shown_count(wanted.quiet) as progress:
-            tally = work(task, wanted.out, engine, part, wanted.retry, progress, say)
-    except KeyboardInterrupt:
-        typer.echo("Stopped; the points so far are kept. Run it again to go on.", err=True)
-        raise typer.Exit(INTERRUPTED) from None
+    with shown_count(wanted.quiet) as progress:
+        tally = work(task, wanted.out, engine, part, wanted.retry, progress, say)
     if part != WHOLE:
         done = f"{tally.done} of {tally.wanted} points are done, {tally.failed} failed"
         say(f"Part {wanted.part}: {done}. When all parts are, run it with --merge.")
@@ -85,7 +95,6 @@ def _write(task: Task, wanted: Wanted, say: Callable[[str], None]) -> None:
         write_parquet(read_sweep(wanted.out), wanted.out)
     for line in _summed_up(totals, task.entry.size):
         say(line)
-    say(f"The tables are in {wanted.out}.")
 
 
 def _summed_up(totals: Totals, size: int) -> list[str]:

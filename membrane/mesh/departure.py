@@ -22,8 +22,8 @@ SAFETY = 2.0
 """For that rise, and for the map's steepness, which is looked at on a lattice."""
 
 
-def departure(kernel: Kernel, raw: RawMesh, mesh: Mesh) -> float:
-    """The largest stretch or shrinkage, less 1, of a map from the mesh onto the true outline.
+def departure(kernel: Kernel, raw: RawMesh, mesh: Mesh) -> Floats:
+    """(n_triangles,): the stretch or shrinkage, less 1, of a map from the mesh onto the outline.
 
     A side departs from its curve by E(s), which is 0 at its ends. The map moves a point of the
     triangles beside it by l_a l_b q(s), q = E/(s (1 - s)), s = (1 + l_b - l_a)/2, with the
@@ -35,12 +35,12 @@ def departure(kernel: Kernel, raw: RawMesh, mesh: Mesh) -> float:
     cannot rise much: H. Ehlich & K. Zeller, Math. Z. 86 (1964) 41 (from memory).
     """
     if mesh.order == 1:
-        return 0.0
+        return np.zeros(mesh.size)
     segment, triangle, _ = segment_sides(raw, mesh.triangles)
     q, slope = _steepest(kernel, raw, mesh.order)
     stretch = (np.sqrt(2) * q + np.sqrt(5) / 8 * slope)[segment]
     together = np.bincount(triangle, stretch, mesh.size)
-    return SAFETY * float((together * _steepness(mesh)).max())
+    return np.asarray(SAFETY * together * _steepness(mesh))
 
 
 def _steepest(kernel: Kernel, raw: RawMesh, order: int) -> tuple[Floats, Floats]:

@@ -17,7 +17,7 @@ from membrane.records.study import ModesWanted
 LOWEST_DEGREE, HIGHEST_DEGREE = 4, 12
 """Degrees that are chosen where the user sets none."""
 
-PROOFS = 1000.0
+PROOFS = 300.0
 """How much more than in the modes corners may leave in the brackets around them."""
 
 MOST_UNKNOWNS = 1_000_000

@@ -20,11 +20,10 @@ def oriented(pencil: Pencil, vectors: Floats, clusters: Ints) -> Floats:
     numbers, sizes = np.unique(clusters, return_counts=True)
     together = np.isin(clusters, numbers[sizes > 1])
     members = vectors[:, together]
-    weighted = np.asarray(pencil.M @ (np.exp(x)[:, None] * members))
+    energy = members.T @ (pencil.M @ (np.exp(x)[:, None] * members))
     for number in numbers[sizes > 1]:
-        these = clusters[together] == number
-        energy = members[:, these].T @ weighted[:, these]
-        _, turn = np.linalg.eigh(energy + energy.T)
+        these = np.nonzero(clusters[together] == number)[0]
+        _, turn = np.linalg.eigh((energy + energy.T)[np.ix_(these, these)])
         chosen[:, clusters == number] = members[:, these] @ turn[:, ::-1]
     means = (pencil.M @ np.exp(x + y / 3)) @ chosen
     return np.asarray(chosen * np.where(means < 0.0, -1.0, 1.0))

@@ -12,8 +12,8 @@ class Panel:
     """One walk along the axis.
 
     title : what is the same all along it, "" where nothing else is swept
-    frequencies : (n_places, count), Hz, rising at each place
-    branches : (n_places, count), the branch of each of them, from 1
+    frequencies : (n_places, count), Hz, rising at each place; NaN where there is none
+    branches : (n_places, count), the branch of each of them, from 1; 0 for none
     lost : (branch, place) where a branch could not be followed on
     """
 

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from math import inf
+
+import numpy as np
 
 from membrane.records.arrays import Floats, Ints
 
@@ -22,8 +23,9 @@ class Mesh:
     region : (n_triangles,), index into ``region_names``
     edges : edge name -> (2, n), the vertex pairs of its facets, lower number first
     lines : the same for the line loads, whose facets lie within the head or on edges
-    departure : a map of the mesh onto the true outline stretches by no less than 1 - departure
-        and no more than 1 + departure; infinite with fans, of which nothing is proven
+    departure : (n_triangles,) or one number; a map of the mesh onto the true outline stretches
+        a triangle by no less than 1 - departure and no more than 1 + departure; infinite with
+        fans, of which nothing is proven
     """
 
     vertices: Floats
@@ -34,12 +36,12 @@ class Mesh:
     region: Ints
     edges: Mapping[str, Ints]
     lines: Mapping[str, Ints] = field(default_factory=dict)
-    departure: float = 0.0
+    departure: Floats | float = 0.0
 
     @property
     def has_fans(self) -> bool:
         """Whether triangles at corners are drawn in, so that their jacobian is 0 there."""
-        return self.departure == inf
+        return bool(np.isinf(self.departure).any())
 
     @property
     def size(self) -> int:

@@ -56,7 +56,7 @@ def outcome_of(point: Point, answering: Answering) -> Outcome:
     try:
         answer = answering.answer(point)
     except MembraneError as failure:
-        sentence = _sentence(failure)
+        sentence = sentence_of(failure)
     except Exception as failure:  # one point of thousands must not end the others
         sentence = f"internal error ({type(failure).__name__}: {failure})."
     return Outcome(point, answer, sentence, perf_counter() - start)
@@ -67,6 +67,7 @@ def outcomes_of(points: Sequence[Point], answering: Answering) -> list[Outcome]:
     return [outcome_of(point, answering) for point in points]
 
 
-def _sentence(failure: MembraneError) -> str:
+def sentence_of(failure: MembraneError) -> str:
+    """All that a failure has to say, in one line."""
     told = failure.problems if isinstance(failure, StudyError) else (failure,)
     return " ".join(str(sentence) for sentence in told)

@@ -27,6 +27,8 @@ def frame(results: SweepResults) -> Any:
     columns["mode"] = np.tile(np.arange(1, modes + 1), len(results.numbers))
     columns["frequency_hz"] = results.frequencies.ravel()
     columns["error_cents"] = results.error_cents.ravel()
+    branches = results.branches.ravel()
+    columns["branch"] = pandas.arrays.IntegerArray(branches, branches == 0)
     columns["kind_of_error"] = pandas.Categorical(np.repeat(np.array(results.kinds), modes))
     rows = pandas.DataFrame(columns)
     return rows[rows["frequency_hz"].notna()].reset_index(drop=True)

@@ -22,24 +22,13 @@ import numpy as np
 from membrane.errors import OutputError
 from membrane.records.arrays import Floats, Ints
 from membrane.sweep.answer import Answer, Outcome
+from membrane.sweep.branched import Branches
 from membrane.sweep.points import Point
-
-VERSION = 1
-"""Of the schema. A later one is refused."""
+from membrane.sweep.schema import check, prepare
 
 MISSING, DONE, FAILED = 0, 1, 2
 """States of a point."""
 
-_SCHEMA = """
-CREATE TABLE sweeps (
-    name TEXT PRIMARY KEY, study TEXT NOT NULL, title TEXT NOT NULL, axes TEXT NOT NULL,
-    size INTEGER NOT NULL, turn INTEGER NOT NULL);
-CREATE TABLE points (
-    sweep TEXT NOT NULL, number INTEGER NOT NULL, name TEXT NOT NULL, point TEXT NOT NULL,
-    sentence TEXT NOT NULL, seconds REAL NOT NULL, frequencies BLOB, error_cents BLOB,
-    kind TEXT, solves INTEGER, worst_cents REAL, PRIMARY KEY (sweep, number)) WITHOUT ROWID;
-CREATE INDEX by_name ON points (name);
-"""
 _COLUMNS = "point, sentence, seconds, frequencies, error_cents, kind, solves"
 
 
@@ -90,7 +79,7 @@ class Store:
         with _failures(file), _lock(file), _connected(f"file:{_quoted(file)}") as connection:
             connection.execute("PRAGMA journal_mode = WAL")
             connection.execute("PRAGMA synchronous = FULL")
-            _prepare(file, connection)
+            prepare(file, connection)
             yield cls(file, connection)
 
     @classmethod
@@ -100,7 +89,7 @@ class Store:
         if not file.is_file():
             raise OutputError(f"there is no sweep in {file.parent}; run membrane sweep first.")
         with _failures(file), _connected(f"file:{_quoted(file)}?mode=rw") as connection:
-            _check_version(file, connection)
+            check(file, connection)
             yield cls(file, connection)
 
     def sweeps(self) -> list[Entry]:
@@ -156,6 +145,27 @@ class Store:
         """Every outcome of a sweep, in the order of the numbers."""
         yield from (outcome for _, outcome in self.named_outcomes(entry))
 
+    def most_modes(self, entry: Entry) -> int:
+        """The largest count of modes among the points of a sweep."""
+        query = "SELECT ifnull(max(length(frequencies)), 0) / 8 FROM points WHERE sweep = ?"
+        return int(next(self._read(query, (entry.name,)))[0])
+
+    def branches(self, entry: Entry) -> Branches | None:
+        """The branches of a sweep; None where they have not been followed."""
+        query = "SELECT numbers, lost FROM branches WHERE sweep = ?"
+        found = next(self._read(query, (entry.name,)), None)
+        if found is None:
+            return None
+        numbers = np.frombuffer(found[0], dtype="<i4").reshape(entry.size, -1)
+        lost = tuple((branch, point) for branch, point in json.loads(found[1]))
+        return Branches(numbers.astype(np.int64), lost)
+
+    def keep_branches(self, entry: Entry, branches: Branches) -> None:
+        """Write the branches of a sweep, all at once."""
+        blob = branches.numbers.astype("<i4").tobytes()
+        row = (entry.name, blob, json.dumps(branches.lost))
+        self._write("INSERT OR REPLACE INTO branches VALUES (?, ?, ?)", [row])
+
     def _read(self, query: str, values: tuple[Any, ...] = ()) -> Iterator[Any]:
         yield from self._connection.execute(query, values)
 
@@ -204,33 +214,6 @@ def _connected(uri: str) -> Iterator[sqlite3.Connection]:
     finally:
         with suppress(sqlite3.Error):  # what could not be written has been told already
             connection.close()
-
-
-def _prepare(file: Path, connection: sqlite3.Connection) -> None:
-    """Make the tables of a new store; check the version of one that is there."""
-    if _version(connection) == 0 and not _tables(connection):
-        script = f"BEGIN; {_SCHEMA} PRAGMA user_version = {VERSION}; COMMIT;"
-        connection.executescript(script)
-    _check_version(file, connection)
-
-
-def _version(connection: sqlite3.Connection) -> int:
-    return int(connection.execute("PRAGMA user_version").fetchone()[0])
-
-
-def _tables(connection: sqlite3.Connection) -> int:
-    return int(connection.execute("SELECT count(*) FROM sqlite_master").fetchone()[0])
-
-
-def _check_version(file: Path, connection: sqlite3.Connection) -> None:
-    found = _version(connection)
-    if found > VERSION:
-        raise OutputError(
-            f"{file} was written by a later version of membrane; "
-            "use that version, or choose another folder."
-        )
-    if found != VERSION:
-        raise OutputError(f"{file} is not the store of a sweep; choose another folder.")
 
 
 @contextmanager

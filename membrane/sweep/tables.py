@@ -10,18 +10,21 @@ from typing import Any
 
 from membrane.errors import OutputError
 from membrane.sweep.answer import Outcome
+from membrane.sweep.branched import Branches
 from membrane.sweep.store import Entry, Store
 
 POINTS, FAILURES = "points.csv", "failures.csv"
-_MODE_COLUMNS = ("mode", "frequency_hz", "error_cents", "kind_of_error")
+_MODE_COLUMNS = ("mode", "frequency_hz", "error_cents", "branch", "kind_of_error")
 
 
 def write_tables(folder: Path, store: Store, entry: Entry) -> None:
     """Write both tables anew; the one of failures only where there are any.
 
-    Numbers have all their digits, keys are in SI units. Raises OutputError.
+    Numbers have all their digits, keys are in SI units; a mode that is not followed has no
+    branch. Raises OutputError.
     """
-    points = (row for outcome in store.outcomes(entry) for row in _modes(outcome))
+    branches = store.branches(entry)
+    points = (row for outcome in store.outcomes(entry) for row in _modes(outcome, branches))
     failures = [_failure(o) for o in store.outcomes(entry) if o.answer is None]
     try:
         _write(folder / POINTS, ("point", *entry.axes, *_MODE_COLUMNS), points)
@@ -36,13 +39,14 @@ def write_tables(folder: Path, store: Store, entry: Entry) -> None:
         ) from failure
 
 
-def _modes(outcome: Outcome) -> Iterator[tuple[Any, ...]]:
+def _modes(outcome: Outcome, branches: Branches | None) -> Iterator[tuple[Any, ...]]:
     point, answer = outcome.point, outcome.answer
     if answer is None:
         return
     pairs = zip(answer.frequencies.tolist(), answer.error_cents.tolist(), strict=True)
     for mode, (frequency, error) in enumerate(pairs, 1):
-        yield (point.number, *point.values, mode, frequency, error, answer.kind)
+        branch = branches.of(point.number, mode) if branches else None
+        yield (point.number, *point.values, mode, frequency, error, branch, answer.kind)
 
 
 def _failure(outcome: Outcome) -> tuple[Any, ...]:

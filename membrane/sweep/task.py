@@ -7,7 +7,6 @@ from dataclasses import dataclass
 from membrane.errors import StudyError
 from membrane.records.study import Study
 from membrane.records.sweep import Sweep
-from membrane.sweep.answer import Answering
 from membrane.sweep.identity import point_name, study_name, sweep_name
 from membrane.sweep.points import Point, Points
 from membrane.sweep.solving import ReducedSolves, shaping_axes
@@ -24,7 +23,7 @@ class Task:
     entry: Entry
     sweep: Sweep
     points: Points
-    answering: Answering
+    answering: ReducedSolves
 
     def name_of(self, point: Point) -> str:
         """The name of a point by its content."""

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
+from membrane import cholesky
 from membrane.coefficients import coefficients
 from membrane.eigensolvers import shift_invert
 from membrane.kernel import Kernel
@@ -46,7 +47,8 @@ def summed_up(pencil: Pencil) -> tuple[Any, Any]:
 
 
 def modes(pencil: Pencil, count: int) -> Modes:
-    """The modes with their closed count."""
+    """The modes with their closed count; nothing is left from an earlier run."""
+    cholesky._last.clear()
     found = extract(pencil, count, shift_invert.solve, FINE)
     assert found.complete
     return found
@@ -63,5 +65,6 @@ def run(keys: dict[str, Any], count: int, cents: float) -> Floats:
 
     With its check by a second solve and its nodal lines, which nobody else computes here.
     """
+    cholesky._last.clear()
     wanted = {"count": count, "accuracy": cents}
     return run_study(study_from({**keys, "modes": wanted})).modes.eigenvalues[:count]

@@ -156,7 +156,8 @@ def test_a_grid_by_a_reduced_model():
     def modes_at(aspect, density):
         return Shapes(*model.modes_at(np.array([1 / aspect, aspect, density]), 8 + GUARDS))
 
-    light, heavy = follow_grid(modes_at, first, second, 8)
+    found = follow_grid(modes_at, [first, second], 8)
+    light, heavy = found[(0,)], found[(1,)]
     np.testing.assert_array_equal(light.branches, heavy.branches)
     assert (
         wrong_names(

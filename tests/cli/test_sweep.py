@@ -56,11 +56,14 @@ def test_a_sweep_with_impossible_points(study, tmp_path):
     out = tmp_path / "out"
     done = sweep(study, out)
     assert (done.exit_code, done.stderr) == (0, "")
-    first, failed, worst, where = done.stdout.splitlines()
+    first, failed, worst, branches, where = done.stdout.splitlines()
     assert first == "2 of 4 points are done."
     assert failed == "2 failed; failures.csv says why, --retry tries them again."
     assert worst.startswith("No frequency is off by more than ")
     assert worst.endswith("2 full solves.")
+    assert branches == (
+        "No branches: modes cannot be followed from mesh to mesh, as holes.port.at[1] would need."
+    )
     assert where == f"The tables are in {out}."
     table = (out / "points.csv").read_text().splitlines()
     assert len(table) == 1 + 2 * 2
@@ -124,3 +127,12 @@ def test_check_says_how_large_a_sweep_is(study, monkeypatch):
         "time                   about 4.1 hours of one processor if all is solved in full: "
         "1e+02 s a mesh, 3.6e+03 s a solve, both timed on the study's own values"
     ) in lines
+
+
+def test_check_says_where_a_reduced_model_will_answer(study, monkeypatch):
+    monkeypatch.setattr(solving, "timed_sample", lambda study: solving.Sample(1.0, 1.0))
+    study.write_text(STUDY.replace("steps = 2", "steps = 500"))
+    (time,) = (line for line in invoke("check", study).stdout.splitlines() if "time" in line)
+    assert time.endswith(
+        "; far less where a reduced model answers, as from 500 points on one mesh on"
+    )

@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from membrane.products.branch_picture import curve, write_branches
+from membrane.products.branch_picture import End, curve, numbers, together, write_branches
 from membrane.records.diagram import Diagram, Panel
 
 PLACES = np.array([1.0, 2.0, 3.0, 4.0])
@@ -26,6 +26,17 @@ def test_a_branch_ends_where_it_is_lost_and_begins_where_it_comes_in():
 def test_no_line_where_a_branch_is_away():
     away = Panel("", FREQUENCIES, np.array([[1, 2], [1, 2], [1, 3], [1, 2]]))
     np.testing.assert_array_equal(curve(away, PLACES, 2)[1], [20.0, 15.0, np.nan, 13.0])
+
+
+def test_ends_that_would_hide_each_other_are_named_together():
+    ends = [End(1.0, 20.0, (3,)), End(1.0, 10.0, (1,)), End(1.0, 10.1, (2,)), End(2.0, 20.1, (4,))]
+    named = [end.branches for end in together(ends, 0.2)]
+    assert named == [(1, 2), (3,), (4,)]
+
+
+def test_numbers_that_follow_each_other_are_named_by_their_ends():
+    assert numbers((3, 2)) == "2, 3"
+    assert numbers((10, 7, 8, 9, 12)) == "7–10, 12"
 
 
 @pytest.mark.parametrize(

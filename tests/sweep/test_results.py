@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 
 from membrane.errors import OutputError
+from membrane.sweep.branched import Branches
 from membrane.sweep.engine import Serial
 from membrane.sweep.frame import write_parquet
 from membrane.sweep.part import WHOLE
@@ -31,6 +32,17 @@ def folder(tmp_path):
     return tmp_path
 
 
+@pytest.fixture
+def followed(folder):
+    """The same, with branches of the first mode alone, that of the last two points lost."""
+    entry = task(TENSION, BELOW).entry
+    numbers = np.array([[1]] * 7 + [[5]] * 2)
+    with Store.writing(WHOLE.file(folder)) as store:
+        store.keep_branches(entry, Branches(numbers, ((1, 8),)))
+        write_tables(folder, store, entry)
+    return folder
+
+
 def test_arrays(folder):
     results = read_sweep(folder)
     assert results.numbers.tolist() == [2, 3, 5, 6, 8, 9]
@@ -40,28 +52,40 @@ def test_arrays(folder):
     assert np.array_equal(results.error_cents, results.frequencies / 7.0)
     assert results.kinds == ("estimated",) * 6
     assert list(results.failures) == [1, 4, 7]
+    assert not results.branches.any()
+    assert results.lost == ()
 
 
-def test_a_frame_is_the_table(folder):
+def test_branches(followed):
+    results = read_sweep(followed)
+    assert results.branches.tolist() == [[1, 0]] * 4 + [[5, 0]] * 2
+    assert results.lost == ((1, 8),)
+
+
+def test_a_frame_is_the_table(followed):
     pytest.importorskip("pandas")
-    frame = read_sweep(folder).frame()
-    rows = list(csv.DictReader((folder / POINTS).read_text().splitlines()))
+    frame = read_sweep(followed).frame()
+    rows = list(csv.DictReader((followed / POINTS).read_text().splitlines()))
     assert list(frame.columns) == list(rows[0])
     for name in rows[0]:
         column = [row[name] for row in rows]
-        numeric = name != "kind_of_error"
-        assert frame[name].tolist() == ([float(text) for text in column] if numeric else column)
+        if name == "branch":
+            assert frame[name].fillna(0).tolist() == [int(text or 0) for text in column]
+        elif name == "kind_of_error":
+            assert frame[name].tolist() == column
+        else:
+            assert frame[name].tolist() == [float(text) for text in column]
 
 
-def test_parquet_is_the_table(folder):
+def test_parquet_is_the_table(followed):
     pandas = pytest.importorskip("pandas")
     pytest.importorskip("pyarrow")
-    results = read_sweep(folder)
-    write_parquet(results, folder)
+    results = read_sweep(followed)
+    write_parquet(results, followed)
     pandas.testing.assert_frame_equal(
-        pandas.read_parquet(folder / "points.parquet"), results.frame(), check_exact=True
+        pandas.read_parquet(followed / "points.parquet"), results.frame(), check_exact=True
     )
-    assert not list(folder.glob("*.partial"))
+    assert not list(followed.glob("*.partial"))
 
 
 def test_points_with_fewer_modes_have_gaps_at_the_end(tmp_path):

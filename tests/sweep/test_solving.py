@@ -8,7 +8,7 @@ from scipy.special import jn_zeros
 
 from membrane import run, study_from
 from membrane.sweep.points import Point
-from membrane.sweep.solving import FullSolves
+from membrane.sweep.solving import FullSolves, units_of
 from membrane.sweep.task import task_of
 
 from .demo import KEYS
@@ -90,6 +90,18 @@ def test_points_agree_with_runs_of_their_own():
         alone = run(study_from({k: v for k, v in keys.items() if k != "sweep"}))
         found = task.answering.answer(task.points.point(number))
         assert found.frequencies == pytest.approx(alone.frequencies[:3], rel=1e-9)
+
+
+def test_axes_have_units():
+    axes = [
+        {"key": "patches.paste.at[2]", "values": [0.0]},
+        {"key": "patches.paste.added_density", "values": [1.0]},
+        {"key": "head.tension", "values": [1.0]},
+        {"key": "edges.rim.stiffness", "values": [1.0]},
+        {"key": "modes.count", "values": [2]},
+    ]
+    found = units_of(study_from(LOADED | {"sweep": {"axes": axes}}))
+    assert found == ["m", "kg/m^2", "N/m", "N/m^2", ""]
 
 
 def test_a_point_outside_all_shapes_says_why():

@@ -13,8 +13,10 @@ import pytest
 
 from membrane.errors import OutputError
 from membrane.sweep.answer import Answer, Outcome
+from membrane.sweep.branched import Branches
 from membrane.sweep.points import Point
-from membrane.sweep.store import DONE, FAILED, MISSING, VERSION, Entry, Store
+from membrane.sweep.schema import VERSION
+from membrane.sweep.store import DONE, FAILED, MISSING, Entry, Store
 
 ENTRY = Entry("a", "s", "demo", ("head.tension",), 4)
 ANSWER = Answer(np.array([1 / 3, np.pi]), np.array([1e-17, 2.5]), "estimated", 2)
@@ -49,6 +51,29 @@ def test_a_point_is_known_by_its_name_if_it_has_an_answer(file):
         assert store.known("two").answer.frequencies[1] == np.pi
         assert store.known("four") is None
         assert store.known("five") is None
+
+
+def test_branches_come_back(file):
+    branches = Branches(np.array([[1, 2], [2, 1], [2, 7], [2, 7]]), ((1, 3),))
+    with Store.writing(file) as store:
+        assert store.branches(ENTRY) is None
+        assert store.most_modes(ENTRY) == 2
+        store.keep_branches(ENTRY, Branches(branches.numbers[:, :1], ()))
+        store.keep_branches(ENTRY, branches)
+    with Store.reading(file) as store:
+        found = store.branches(ENTRY)
+    assert np.array_equal(found.numbers, branches.numbers)
+    assert found.lost == branches.lost
+
+
+@pytest.mark.parametrize("way", [Store.writing, Store.reading])
+def test_a_store_from_before_there_were_branches(file, way):
+    connection = sqlite3.connect(file)
+    connection.executescript("DROP TABLE branches; PRAGMA user_version = 1;")
+    connection.close()
+    with way(file) as store:
+        assert store.branches(ENTRY) is None
+        assert len(list(store.outcomes(ENTRY))) == 2
 
 
 def test_the_sweep_last_worked_on_comes_last(file):

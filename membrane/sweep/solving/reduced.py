@@ -57,30 +57,32 @@ class ReducedSolves:
 
     def __init__(self, source: Mapping[str, Any], points: Points) -> None:
         self.source = source
-        self._full = FullSolves(source, points)
+        self.full = FullSolves(source, points)
         self._points = points
         self._models: OrderedDict[str, ReducedModel | None] = OrderedDict()
 
     def answer(self, point: Point) -> Answer:
         """The modes of a point. Raises MembraneError where there are none."""
-        wanted = self._full.study(point).modes
-        if not self._pays(wanted):
-            return self._full.answer(point)
+        wanted = self.full.study(point).modes
         with threadpool_limits(limits=1, user_api="blas"):
-            model, solves = self._model(self._full.own_head(point))
-            answer = None if model is None else _answer(model, self._numbers(point), wanted, solves)
-        return answer or self._full.answer(point)
+            model, solves = self.model(point)
+            answer = None if model is None else _answer(model, self.numbers(point), wanted, solves)
+        return answer or self.full.answer(point)
 
-    def _pays(self, wanted: ModesWanted) -> bool:
-        points = self._points
-        enough = len(points) >= LEAST * points.meshes and not all(points.shaping)
-        return enough and wanted.up_to is None and not points.sweep.bracket
+    def model(self, point: Point) -> tuple[ReducedModel | None, int]:
+        """The model of a point's mesh, and the full solves made just now.
+
+        None where there can be no model, or where it would not pay.
+        """
+        own = self.full.own_head(point)
+        return self._model(own) if pays(self._points, own.modes) else (None, 0)
+
+    def numbers(self, point: Point) -> Floats:
+        """(n_keys,) the numbers of a point that its model takes."""
+        pairs = zip(point.values, self._points.shaping, strict=True)
+        return np.array([value for value, shapes in pairs if not shapes], dtype=float)
 
     def _model(self, own: Study) -> tuple[ReducedModel | None, int]:
-        """The model of the mesh of a study's own head, and the full solves made just now.
-
-        None where there can be no model.
-        """
         name, solves = shape_of(own), 0
         if name not in self._models:
             model = self._models[name] = self._made(own)
@@ -93,7 +95,7 @@ class ReducedSolves:
     def _made(self, own: Study) -> ReducedModel | None:
         points, wanted = self._sample(), own.modes
         for place in range(MESHES):
-            rung = self._full.ladders.rung(own, place)
+            rung = self.full.ladders.rung(own, place)
             if not self._scales(own, rung, points):
                 return None
             accuracy = SHARE * wanted.accuracy / 2
@@ -112,14 +114,10 @@ class ReducedSolves:
         pairs = zip(self._points.sweep.axes, self._points.shaping, strict=True)
         return [axis.key for axis, shapes in pairs if not shapes]
 
-    def _numbers(self, point: Point) -> Floats:
-        pairs = zip(point.values, self._points.shaping, strict=True)
-        return np.array([value for value, shapes in pairs if not shapes], dtype=float)
-
     def _sample(self) -> Floats:
         """(n, n_keys) numbers of some points, and both ends of all axes."""
         chosen = np.random.default_rng(SEED).permutation(len(self._points))[:SAMPLE]
-        rows = [self._numbers(self._points.point(1 + int(place))) for place in chosen]
+        rows = [self.numbers(self._points.point(1 + int(place))) for place in chosen]
         pairs = zip(self._points.sweep.axes, self._points.shaping, strict=True)
         axes = [axis.values for axis, shapes in pairs if not shapes]
         ends = [[end(values) for values in axes] for end in (min, max)]
@@ -141,6 +139,12 @@ class ReducedSolves:
             if found is None or _scales_of(found) != _scales_of(wanted):
                 return False
         return True
+
+
+def pays(points: Points, wanted: ModesWanted) -> bool:
+    """Whether models cost less than the full solves that they save, if there can be any."""
+    enough = len(points) >= LEAST * points.meshes and not all(points.shaping)
+    return enough and wanted.up_to is None and not points.sweep.bracket
 
 
 def _scales_of(pencil: Pencil) -> list[float]:
