@@ -328,10 +328,12 @@ class Kernel:
 
     def _set_sizes(self, outline: Outline, sizes: Mapping[str, float], nearby: SizeMap) -> None:
         wanted = _by_face(outline, sizes)
+        least = nearby.least
 
         def size(dim: int, tag: int, x: float, y: float, z: float, default: float) -> float:
             try:
-                return min(nearby.at(x, y), wanted[tag] if dim == 2 else default)
+                longest = wanted[tag] if dim == 2 else default
+                return longest if longest <= least else min(longest, nearby.at(x, y))
             except KeyboardInterrupt as stop:  # which gmsh would swallow
                 self._stop = stop
                 return default

@@ -33,6 +33,11 @@ class SizeMap:
         """Longest edge, metres, at a point."""
         return min(self.most, self._root.least(x, y)) if self.sizes.size else self.most
 
+    @property
+    def least(self) -> float:
+        """No edge need be shorter, metres."""
+        return min(self.most, float(self.sizes.min(initial=inf)))
+
     def capped(self, most: float) -> SizeMap:
         """The map with no edge longer than ``most``, without the samples that this overrules."""
         kept = self.sizes < most

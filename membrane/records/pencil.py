@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
-from functools import cached_property
+from functools import cached_property, reduce
+from operator import add
 from typing import Any
 
 import numpy as np
@@ -13,6 +14,9 @@ from membrane.errors import SolveError
 from membrane.records.arrays import Floats, Ints
 from membrane.records.mesh import Mesh
 from membrane.records.pattern import Pattern
+
+FEW = 4
+"""Parts that are summed up one by one, each time going through all that is there."""
 
 AT_REST = 1e-10
 """Forces on a constant shape, over the largest entry, below which they are rounding."""
@@ -135,13 +139,16 @@ def _balanced(A: Any) -> bool:
 
 
 def _combine(parts: tuple[Part, ...]) -> Any:
-    """The sum of all parts at once: one by one, many small ones would take long."""
+    """The sum of all parts, at once where they are many: one by one they would take long."""
     from scipy.sparse import coo_array, csc_array
 
     first = parts[0].matrix
     if all(_alike(part.matrix, first) for part in parts):
         data = sum(part.scale * part.matrix.data for part in parts)
         return csc_array((data, first.indices, first.indptr), shape=first.shape)
+    if len(parts) <= FEW:
+        total = reduce(add, (part.scale * part.matrix.tocsc() for part in parts))
+        return csc_array(total)
     entries = [coo_array(part.matrix) for part in parts]
     data = np.concatenate([p.scale * e.data for p, e in zip(parts, entries, strict=True)])
     rows, columns = (np.concatenate([e.coords[axis] for e in entries]) for axis in (0, 1))

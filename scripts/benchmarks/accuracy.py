@@ -90,7 +90,7 @@ def _error(head: Head, values: Floats) -> float:
 
 def _ours(head: Head, count: int, quick: bool) -> list[dict[str, Solve]]:
     tolerances = (1e-6, 1e-8, 1e-10) if head.name == "L-shape" else (1e-8,)
-    phases = (6.0, 4.5, 3.0) if quick else (8.0, 6.0, 4.5, 3.7, 3.0)
+    phases = (6.0, 4.5, 3.0) if quick else (8.0, 6.0, 5.4, 4.5, 3.7, 3.0)
     degrees = (6, 8) if quick else (5, 6, 7, 8, 9, 10)
     return [
         {

@@ -52,3 +52,8 @@ def test_a_cap_overrules_what_is_longer_and_nothing_else():
     for x, y in np.random.default_rng(5).uniform(-1, 1, (200, 2)):
         assert capped.at(x, y) == pytest.approx(min(0.05, least(whole, x, y)), rel=1e-12)
     assert whole.capped(1e-9).at(0.0, 0.0) == 1e-9
+
+
+def test_the_least_of_all_sizes():
+    assert scattered(300).least == scattered(300).sizes.min()
+    assert scattered(300).capped(1e-9).least == 1e-9
