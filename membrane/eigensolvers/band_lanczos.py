@@ -13,7 +13,7 @@ import numpy as np
 from membrane.cholesky import Solve
 from membrane.records.arrays import Floats
 
-CONVERGED = 3e-9
+CONVERGED = 1e-8
 """Residual of a vector over its eigenvalue; the error of the eigenvalue is of its square."""
 
 VANISHED = 1e-12
