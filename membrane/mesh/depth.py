@@ -7,7 +7,7 @@ from math import ceil, log
 
 from membrane.mesh.corner import Term
 
-RATIO = 0.45
+RATIO = 0.4
 """Size of each layer to the one around it."""
 
 FAN_POWERS, NO_FANS = range(1, 5), range(1, 2)

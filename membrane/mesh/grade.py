@@ -17,7 +17,7 @@ from membrane.records.raw_mesh import RawMesh
 STRONG = 0.6
 """Exponent below which a corner is strong."""
 
-WIDEST, WIDEST_STRONG = 1.4, 1.1
+WIDEST, WIDEST_STRONG = 1.4, 1.0
 """Widest angle of a triangle at a corner and at a strong one, radians: wider ones are halved.
 They follow r^a worst, and a wide fan's outer side is an arc on which the triangle beyond may
 fold."""
