@@ -27,7 +27,8 @@ def sweep_lines(study: Study) -> list[tuple[str, str]]:
     if pays(points, study.modes):
         time += f"; far less where a reduced model answers, as from {LEAST} points on one mesh on"
     axes = [(f"axis {axis.key}", _axis(axis, study.sweep.pick)) for axis in study.sweep.axes]
-    sizes = f"{len(points)} points, {points.meshes} different meshes"
+    meshes = "one mesh" if points.meshes == 1 else f"{points.meshes} different meshes"
+    sizes = f"{len(points)} points, {meshes}"
     return [("sweep", f"{_pick(study.sweep)}: {sizes}"), *axes, ("time", time)]
 
 
