@@ -198,10 +198,7 @@ def _solve_on(
     with clock.stage("assembly"):
         pencil = assemble(membrane, mesh, resolution.degree)
     with clock.stage("modes"):
-        count = wanted_count(pencil, wanted)
-        spare = min(SPARE, pencil.M.shape[0] - 1 - count) if wanted.bracket else 0
-        more = extract(pencil, count + max(spare, 0), solver, wanted.accuracy)
-        modes = lowest(more, count)
+        more, modes = modes_of(pencil, wanted, solver, wanted.bracket)
 
     def provable() -> Modes:
         """The same modes on a mesh that the proofs cover."""
@@ -247,7 +244,20 @@ def _why(bracket: Bracket) -> tuple[str, ...]:
     return (f"Brackets are estimates, since {bracket.reason}.",) if bracket.reason else ()
 
 
-def wanted_count(pencil: Pencil, wanted: ModesWanted) -> int:
+def modes_of(
+    pencil: Pencil, wanted: ModesWanted, solver: Eigensolver, spare: bool
+) -> tuple[Modes, Modes]:
+    """All modes found and the wanted ones; if ``spare``, more, so that brackets find a gap.
+
+    Raises SolveError where the count of modes does not close.
+    """
+    count = _wanted_count(pencil, wanted)
+    beyond = min(SPARE, pencil.M.shape[0] - 1 - count) if spare else 0
+    more = extract(pencil, count + max(beyond, 0), solver, wanted.accuracy)
+    return more, lowest(more, count)
+
+
+def _wanted_count(pencil: Pencil, wanted: ModesWanted) -> int:
     """How many modes are wanted. Raises SolveError where none lies below ``up_to``."""
     if wanted.up_to is None:
         return wanted.count

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
+
 import numpy as np
 
 from membrane.bounds.fluxes import best_fluxes
@@ -12,7 +14,7 @@ from membrane.bounds.head import Head, head_of
 from membrane.bounds.local_fluxes import Sources
 from membrane.bounds.pieces import pieces
 from membrane.bounds.provable import check_provable
-from membrane.bounds.rims import rims
+from membrane.bounds.rims import Rim, rims
 from membrane.bounds.ritz import Forms, forms
 from membrane.errors import BracketError, SolveError
 from membrane.pitch import CENTS_PER_EIGENVALUE
@@ -64,8 +66,8 @@ class _Bounds:
         doubts = [*(piece.doubt for piece in self.pieces), *(rim.doubt for rim in self.rims)]
         if not np.isfinite(np.concatenate(doubts)).all():
             raise BracketError("the mesh's triangles are bent too much")
-        self.forms = self._forms(self.head)
-        self.high = self._forms(above(head)).values
+        self.forms = self._forms(self.head, self.rims)
+        self.high = self._forms(above(head), rims(above(head), degree)).values
         following = float(modes.eigenvalues[kept])
         self.limit = proven_limit(self.head, float(self.high[-1]), following, kept)
 
@@ -84,9 +86,8 @@ class _Bounds:
             raise BracketError("the lower bounds do not close")
         return best
 
-    def _forms(self, head: Head) -> Forms:
-        degree = 2 * (self.space.degree + max(FLUX_DEGREES))
-        return forms(head, self.space, self.vectors, self.pieces, rims(head, degree))
+    def _forms(self, head: Head, along: Iterable[Rim]) -> Forms:
+        return forms(head, self.space, self.vectors, self.pieces, along)
 
     def _low(self, degree: int) -> Floats:
         gamma = SHIFT * self.limit

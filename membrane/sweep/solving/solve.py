@@ -6,12 +6,12 @@ import numpy as np
 
 from membrane import plugins
 from membrane.accuracy import estimate
-from membrane.bounds import SPARE, bracketed, check_provable
+from membrane.bounds import bracketed, check_provable
 from membrane.coefficients import coefficients
 from membrane.errors import BracketError
-from membrane.modes import coarser_modes, extract, lowest
+from membrane.modes import coarser_modes
 from membrane.pencil import assemble, rescaled
-from membrane.pipeline import wanted_count
+from membrane.pipeline import modes_of
 from membrane.pitch import CENTS_PER_EIGENVALUE
 from membrane.records.arrays import Floats
 from membrane.records.bracket import Bracket
@@ -30,10 +30,7 @@ def solved(study: Study, rung: Rung, guaranteed: bool) -> tuple[Modes, Bracket]:
     wanted, membrane = study.modes, coefficients(study, rung.outline)
     fine = pencil_of(membrane, rung, rung.fine)
     solver = plugins.load("eigensolver", wanted.eigensolver).solve
-    count = wanted_count(fine, wanted)
-    spare = min(SPARE, fine.M.shape[0] - 1 - count) if guaranteed else 0
-    more = extract(fine, count + max(spare, 0), solver, wanted.accuracy)
-    modes = lowest(more, count)
+    more, modes = modes_of(fine, wanted, solver, guaranteed)
     reason = ""
     if guaranteed:
         try:
